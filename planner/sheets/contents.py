@@ -1,0 +1,137 @@
+"""What stands on each sheet: plain data, filled from a plan, drawn by the builders."""
+
+from dataclasses import dataclass
+from datetime import date
+from decimal import Decimal
+
+from patterns.drawing import Drawing
+
+
+@dataclass(frozen=True)
+class SheetHead:
+    """What every page says about itself: whose sheet, for which market, from which plan."""
+
+    workshop: str
+    batch: str
+    market_date: date | None
+    plan_label: str
+    plan_date: date
+
+
+@dataclass(frozen=True)
+class PurchaseRow:
+    """One shade in one put-up to buy."""
+
+    shade_code: str
+    shade_name: str
+    shade_colour: str
+    put_up: str
+    length_mm: int
+    count: int
+    unit_price: Decimal
+    cost: Decimal
+    proof: str
+
+
+@dataclass(frozen=True)
+class SupplierOrder:
+    """Everything to buy from one supplier."""
+
+    supplier: str
+    rows: tuple[PurchaseRow, ...]
+    cost: Decimal
+
+
+@dataclass(frozen=True)
+class PurchaseSheet:
+    """What to buy, by supplier."""
+
+    head: SheetHead
+    currency: str
+    suppliers: tuple[SupplierOrder, ...]
+    cost: Decimal
+
+
+@dataclass(frozen=True)
+class SheetCut:
+    """One piece on the cutting sheet: whose tag, which strands, how long, where to fold."""
+
+    tag_number: int
+    strands: tuple[int, ...]
+    slot: str
+    cut_mm: int
+    fold_mm: int | None
+    is_sliding: bool = False
+
+
+@dataclass(frozen=True)
+class StockCut:
+    """One skein or remnant and its cuts in order; `left_mm` goes back or is waste."""
+
+    source: str
+    is_new: bool
+    reckoned_mm: int
+    cuts: tuple[SheetCut, ...]
+    left_mm: int
+    goes_back: bool
+
+
+@dataclass(frozen=True)
+class ShadeCuts:
+    """All cuts of one shade, lot by lot."""
+
+    shade_code: str
+    shade_name: str
+    shade_colour: str
+    stock: tuple[StockCut, ...]
+
+
+@dataclass(frozen=True)
+class CuttingSheet:
+    """What to cut, skein by skein."""
+
+    head: SheetHead
+    unit: str
+    shades: tuple[ShadeCuts, ...]
+
+
+@dataclass(frozen=True)
+class TagPiece:
+    """A piece as the tag shows it; two strands where the piece is folded."""
+
+    strands: tuple[int, ...]
+    slot: str
+    shade_code: str
+    shade_name: str
+    shade_colour: str
+    cut_mm: int
+    fold_mm: int | None
+    is_sliding: bool = False
+
+
+@dataclass(frozen=True)
+class Tag:
+    """One bracelet's tag."""
+
+    number: int
+    code_text: str
+    pattern: str
+    colourway: str
+    size: str
+    ending: str
+    for_whom: str
+    due: date | None
+    pieces: tuple[TagPiece, ...]
+    rows: int
+    knotted_length_mm: int
+    drawing: Drawing
+    cautions: tuple[str, ...]
+
+
+@dataclass(frozen=True)
+class TagSheet:
+    """All tags of a plan."""
+
+    head: SheetHead
+    unit: str
+    tags: tuple[Tag, ...]
