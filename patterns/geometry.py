@@ -1,0 +1,226 @@
+"""From counted knots to millimetres of thread: gauge, rows, width and strand lengths."""
+
+from dataclasses import dataclass
+from math import ceil, isfinite, pi, sqrt
+
+from patterns.knots import DiagonalPattern, Finish, StrandCount, count_strands
+
+MIN_KNOTTED_LENGTH_MM = 1
+MAX_KNOTTED_LENGTH_MM = 5000
+MAX_ROWS = 20_000
+# Without it 150.0000000001 mm of exactly 118 rows would ask for a 119th.
+_ROW_NOISE = 1e-9
+
+
+class GaugeError(ValueError):
+    """A gauge that no thread has."""
+
+
+class LengthError(ValueError):
+    """A knotted length that cannot be tied."""
+
+
+@dataclass(frozen=True)
+class Gauge:
+    """How a maker's thread lies in the knot.
+
+    Parameters
+    ----------
+    thread_diameter_mm : thread diameter as it lies in the knot [mm], 0.1 to 10.
+    loop_ratio : centre-line diameter of a loop round the base strand [thread diameters],
+        0.5 to 5; the maker's tightness.
+    idle_run : thread a strand runs along the edge in a row it sits out [thread diameters],
+        0 to 5; sqrt 2 is the straight chord.
+
+    Raises
+    ------
+    GaugeError
+        When a value is not a number or outside its range.
+
+    Notes
+    -----
+    Knotting strand, a knot: (2 + 2 pi c) d with c the loop ratio and d the diameter.
+    Base strand, a knot: 2 d. A row adds sqrt(2) d: knots tile as squares of side 2 d that
+    stand on a corner, and a row is half a diagonal.
+    """
+
+    thread_diameter_mm: float = 0.9
+    loop_ratio: float = 1.5
+    idle_run: float = sqrt(2)
+
+    def __post_init__(self) -> None:
+        _check_range("thread diameter", self.thread_diameter_mm, 0.1, 10, " mm")
+        _check_range("loop ratio", self.loop_ratio, 0.5, 5, "")
+        _check_range("idle run", self.idle_run, 0, 5, " thread diameters")
+
+    @property
+    def knotting_mm(self) -> float:
+        """Thread the tying strand spends on a knot [mm]."""
+        return (2 + 2 * pi * self.loop_ratio) * self.thread_diameter_mm
+
+    @property
+    def base_mm(self) -> float:
+        """Thread the base strand spends on a knot [mm]."""
+        return 2 * self.thread_diameter_mm
+
+    @property
+    def idle_mm(self) -> float:
+        """Thread a strand spends on a row it sits out [mm]."""
+        return self.idle_run * self.thread_diameter_mm
+
+    @property
+    def row_mm(self) -> float:
+        """Length a row adds to the band [mm]."""
+        return sqrt(2) * self.thread_diameter_mm
+
+
+def _check_range(name: str, value: float, lowest: float, highest: float, unit: str) -> None:
+    if isinstance(value, bool) or not isinstance(value, int | float):
+        raise GaugeError(f"The {name} has to be a number.")
+    if not (isfinite(value) and lowest <= value <= highest):
+        raise GaugeError(f"The {name} has to be from {lowest} to {highest}{unit}.")
+
+
+@dataclass(frozen=True)
+class StrandLength:
+    """A strand's counts and the thread it spends in the knotted part [mm]."""
+
+    strand: int
+    slot: str
+    tied: int
+    base: int
+    idle: int
+    knotted_mm: float
+
+
+@dataclass(frozen=True)
+class StrandTable:
+    """All strands of a bracelet of so many rows."""
+
+    rows: int
+    strands: tuple[StrandLength, ...]
+
+
+def rows_for(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gauge) -> int:
+    """Return how many rows to tie for a knotted length.
+
+    Parameters
+    ----------
+    pattern : the pattern; its finish says how to end.
+    knotted_length_mm : length of the band [mm], 1 to 5000.
+    gauge : the maker's gauge.
+
+    Returns
+    -------
+    Rows, at least 1.
+
+    Raises
+    ------
+    LengthError
+        When the length is out of range, needs too many rows, or is shorter than one repeat
+        where at most whole repeats are asked for.
+
+    Notes
+    -----
+    Exact rows: ceil(L / (sqrt(2) d)). Whole repeats are taken of these rows: the nearest
+    number of repeats (a tie goes up; one at the least), at least, or at most as many rows.
+    """
+    exact = _exact_rows(knotted_length_mm, gauge)
+    repeat = len(pattern.rows)
+    repeats = {
+        Finish.NEAREST: max(1, (2 * exact + repeat) // (2 * repeat)),
+        Finish.AT_LEAST: -(-exact // repeat),
+        Finish.AT_MOST: exact // repeat,
+    }
+    if pattern.finish is Finish.EXACT:
+        return exact
+    if repeats[pattern.finish] == 0:
+        raise LengthError(
+            f"One repeat of {repeat} rows is {band_length_mm(repeat, gauge):.0f} mm, longer than "
+            f"{float(knotted_length_mm):.0f} mm. Choose a longer size or another finish."
+        )
+    return _checked_rows(repeats[pattern.finish] * repeat)
+
+
+def _exact_rows(knotted_length_mm: float, gauge: Gauge) -> int:
+    length_mm = float(knotted_length_mm)
+    if not MIN_KNOTTED_LENGTH_MM <= length_mm <= MAX_KNOTTED_LENGTH_MM:
+        raise LengthError(
+            f"The knotted length has to be from {MIN_KNOTTED_LENGTH_MM} mm "
+            f"to {MAX_KNOTTED_LENGTH_MM} mm."
+        )
+    return _checked_rows(ceil(length_mm / gauge.row_mm - _ROW_NOISE))
+
+
+def _checked_rows(rows: int) -> int:
+    if rows > MAX_ROWS:
+        raise LengthError(
+            f"That takes {rows} rows; {MAX_ROWS} is the most. "
+            "Shorten the band or check the thread diameter."
+        )
+    return rows
+
+
+def knotted_thread_mm(count: StrandCount, gauge: Gauge) -> float:
+    """Return the thread a strand spends in the knotted part.
+
+    Parameters
+    ----------
+    count : what the strand does.
+    gauge : the maker's gauge.
+
+    Returns
+    -------
+    Length [mm]: tied * (2 + 2 pi c) d + base * 2 d + idle * idle run * d.
+    """
+    return count.tied * gauge.knotting_mm + count.base * gauge.base_mm + count.idle * gauge.idle_mm
+
+
+def band_width_mm(strands: int, gauge: Gauge) -> float:
+    """Return the width of a band of so many strands [mm]: N sqrt(2) d."""
+    return strands * gauge.row_mm
+
+
+def band_length_mm(rows: int, gauge: Gauge) -> float:
+    """Return the length so many rows add to a band [mm]: R sqrt(2) d."""
+    return rows * gauge.row_mm
+
+
+def tip_to_tip_mm(rows: int, gauge: Gauge) -> float:
+    """Return the length from the first tip to the last [mm]: (R + 1) sqrt(2) d."""
+    return (rows + 1) * gauge.row_mm
+
+
+def strand_table(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gauge) -> StrandTable:
+    """Return rows, counts and thread of every strand for a knotted length.
+
+    Parameters
+    ----------
+    pattern : the pattern.
+    knotted_length_mm : length of the band [mm].
+    gauge : the maker's gauge.
+
+    Returns
+    -------
+    The table, strands in the order of the start.
+
+    Raises
+    ------
+    LengthError
+        As `rows_for`.
+    """
+    rows = rows_for(pattern, knotted_length_mm, gauge)
+    return StrandTable(
+        rows=rows,
+        strands=tuple(
+            StrandLength(
+                count.strand,
+                count.slot,
+                count.tied,
+                count.base,
+                count.idle,
+                knotted_thread_mm(count, gauge),
+            )
+            for count in count_strands(pattern, rows)
+        ),
+    )

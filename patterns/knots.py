@@ -1,0 +1,402 @@
+"""Diagonal patterns: strands, the four knots, and who ties what over a whole bracelet."""
+
+import unicodedata
+from collections.abc import Iterator
+from dataclasses import dataclass
+from enum import StrEnum
+from math import lcm
+from typing import Literal, NamedTuple
+
+MIN_STRANDS = 2
+MAX_STRANDS = 60
+MIN_REPEAT_ROWS = 2
+MAX_REPEAT_ROWS = 400
+MAX_NAME_LENGTH = 80
+SLOT_LETTERS = "ABCDEFGHIJKLMNOPQRSTUVWXYZ"
+
+# Marks that turn the direction of the text around them would garble a tag; plain
+# right-to-left letters need none of them.
+_DIRECTION_MARKS = frozenset("\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069")
+_REFUSED_CATEGORIES = frozenset({"Cc", "Cs", "Zl", "Zp"})
+
+
+class PatternError(ValueError):
+    """A pattern that cannot be tied; says which row and knot where it knows them."""
+
+    def __init__(self, message: str, *, row: int | None = None, knot: int | None = None) -> None:
+        super().__init__(message)
+        self.row = row
+        self.knot = knot
+
+
+class Knot(StrEnum):
+    """The four double half hitches of the trade."""
+
+    F = "f"
+    B = "b"
+    FB = "fb"
+    BF = "bf"
+
+    @property
+    def left_ties(self) -> bool:
+        """Whether the left strand of the two is the one that ties."""
+        return self in (Knot.F, Knot.FB)
+
+    @property
+    def swaps(self) -> bool:
+        """Whether the two strands have changed places after the knot."""
+        return self in (Knot.F, Knot.B)
+
+    @property
+    def mirrored(self) -> "Knot":
+        """The same knot seen in a mirror."""
+        return _MIRRORED[self]
+
+
+_MIRRORED = {Knot.F: Knot.B, Knot.B: Knot.F, Knot.FB: Knot.BF, Knot.BF: Knot.FB}
+
+
+class Finish(StrEnum):
+    """How a bracelet ends: after the exact rows, or after whole repeats."""
+
+    EXACT = "exact"
+    NEAREST = "nearest"
+    AT_LEAST = "at_least"
+    AT_MOST = "at_most"
+
+
+def knots_in_row(strands: int, row: int) -> int:
+    """Return how many knots a row has.
+
+    Parameters
+    ----------
+    strands : number of strands.
+    row : the row, counted from 1.
+
+    Returns
+    -------
+    Number of pairs; odd rows pair strands 1-2, 3-4, ..., even rows 2-3, 4-5, ...
+    """
+    return (strands - (row - 1) % 2) // 2
+
+
+def clean_name(name: object) -> str:
+    """Return a pattern's name without the blanks around it.
+
+    Raises
+    ------
+    PatternError
+        When it is not text, empty, too long, or holds control characters.
+    """
+    if not isinstance(name, str):
+        raise PatternError("The name has to be text.")
+    stripped = name.strip()
+    if not stripped:
+        raise PatternError("The pattern has no name. Give it one.")
+    if len(stripped) > MAX_NAME_LENGTH:
+        raise PatternError(
+            f"The name has {len(stripped)} characters; {MAX_NAME_LENGTH} is the most. Shorten it."
+        )
+    if any(_is_refused(character) for character in stripped):
+        raise PatternError("The name holds a control character. Type the name again.")
+    return stripped
+
+
+def _is_refused(character: str) -> bool:
+    return character in _DIRECTION_MARKS or unicodedata.category(character) in _REFUSED_CATEGORIES
+
+
+@dataclass(frozen=True)
+class DiagonalPattern:
+    """A repeat of knots on strands laid side by side.
+
+    Parameters
+    ----------
+    name : what the maker calls it, 1 to 80 characters.
+    slots : the colour slot (A to Z) of every strand at the start, left to right.
+    rows : the knots of every row of the repeat, left to right.
+    finish : how a bracelet ends.
+
+    Raises
+    ------
+    PatternError
+        When it cannot be tied; names the row and the knot.
+
+    Notes
+    -----
+    Row 1 pairs strands 1-2, 3-4, ...; row 2 pairs 2-3, 4-5, ...; and so on in turn.
+    A repeat has an even number of rows, else the next one would not mesh.
+    """
+
+    name: str
+    slots: tuple[str, ...]
+    rows: tuple[tuple[Knot, ...], ...]
+    finish: Finish = Finish.EXACT
+
+    def __post_init__(self) -> None:
+        object.__setattr__(self, "name", clean_name(self.name))
+        _check_slots(self.slots)
+        _check_rows(self.rows, len(self.slots))
+        if not isinstance(self.finish, Finish):
+            raise PatternError(f"There is no finish called {self.finish!r}.")
+
+    @property
+    def technique(self) -> Literal["diagonal"]:
+        """The family the pattern belongs to."""
+        return "diagonal"
+
+    @property
+    def strands(self) -> int:
+        """Number of strands."""
+        return len(self.slots)
+
+
+def _check_slots(slots: tuple[str, ...]) -> None:
+    if not isinstance(slots, tuple):
+        raise PatternError("The strands have to be a tuple of letters.")
+    if not MIN_STRANDS <= len(slots) <= MAX_STRANDS:
+        raise PatternError(
+            f"A pattern has {MIN_STRANDS} to {MAX_STRANDS} strands; this one has {len(slots)}."
+        )
+    for number, slot in enumerate(slots, start=1):
+        if not (isinstance(slot, str) and len(slot) == 1 and slot in SLOT_LETTERS):
+            shown = str(slot)[:20]
+            raise PatternError(f"Strand {number}: '{shown}' is not a letter from A to Z.")
+
+
+def _check_rows(rows: tuple[tuple[Knot, ...], ...], strands: int) -> None:
+    if not isinstance(rows, tuple):
+        raise PatternError("The rows have to be a tuple of rows.")
+    if not MIN_REPEAT_ROWS <= len(rows) <= MAX_REPEAT_ROWS:
+        raise PatternError(
+            f"A repeat has {MIN_REPEAT_ROWS} to {MAX_REPEAT_ROWS} rows; this one has {len(rows)}."
+        )
+    for number, row in enumerate(rows, start=1):
+        _check_row(row, number, strands)
+    if len(rows) % 2:
+        raise PatternError(
+            f"A repeat needs an even number of rows, else the next one does not mesh; "
+            f"this one has {len(rows)}. Add a row or take one out.",
+            row=len(rows),
+        )
+
+
+def _check_row(row: tuple[Knot, ...], number: int, strands: int) -> None:
+    if not isinstance(row, tuple):
+        raise PatternError(f"Row {number} has to be a tuple of knots.", row=number)
+    for place, knot in enumerate(row, start=1):
+        if not isinstance(knot, Knot):
+            raise PatternError(
+                f"Row {number}, knot {place}: '{str(knot)[:20]}' is not a knot. Use f, b, fb or bf.",
+                row=number,
+                knot=place,
+            )
+    needed = knots_in_row(strands, number)
+    if len(row) != needed:
+        raise PatternError(
+            f"Row {number} has {_knots(len(row))}; {strands} strands need {needed} there, "
+            f"because {_pairing(strands, number)}.",
+            row=number,
+            knot=min(len(row), needed) + 1,
+        )
+
+
+def _knots(count: int) -> str:
+    return {0: "no knots", 1: "1 knot"}.get(count, f"{count} knots")
+
+
+def _pairing(strands: int, row: int) -> str:
+    if knots_in_row(strands, row) == 0:
+        return "with two strands every second row is left out (write - for it)"
+    first = 1 + (row - 1) % 2
+    pairs = [f"{left}-{left + 1}" for left in range(first, strands, 2)][:2]
+    more = ", ..." if knots_in_row(strands, row) > 2 else ""
+    kind = "odd" if row % 2 else "even"
+    return f"{kind} rows pair strands {', '.join(pairs)}{more}"
+
+
+class TiedKnot(NamedTuple):
+    """A knot in its place: `left` is the left position of the two, all counted from 1."""
+
+    left: int
+    knot: Knot
+    tying: int
+    base: int
+
+
+@dataclass(frozen=True)
+class StrandCount:
+    """What one strand does over a number of rows.
+
+    Parameters
+    ----------
+    strand : its position at the start, from 1, left to right.
+    slot : its colour slot.
+    tied : knots it ties.
+    base : knots it is the base strand in.
+    idle : rows it sits out at an edge.
+    """
+
+    strand: int
+    slot: str
+    tied: int
+    base: int
+    idle: int
+
+
+def tie_rows(pattern: DiagonalPattern, rows: int) -> Iterator[list[TiedKnot]]:
+    """Tie the band row by row, the rows of the repeat taken in turn.
+
+    Parameters
+    ----------
+    pattern : the pattern.
+    rows : number of rows, 0 or more.
+
+    Yields
+    ------
+    The knots of each row, left to right.
+    """
+    order = list(range(1, pattern.strands + 1))
+    yield from _tie_rows_on(pattern, rows, order)
+
+
+def order_after(pattern: DiagonalPattern, rows: int) -> tuple[int, ...]:
+    """Return which strand stands at each position after a number of rows."""
+    order = list(range(1, pattern.strands + 1))
+    for _ in _tie_rows_on(pattern, rows, order):
+        pass
+    return tuple(order)
+
+
+def _tie_rows_on(pattern: DiagonalPattern, rows: int, order: list[int]) -> Iterator[list[TiedKnot]]:
+    """Tie on `order` itself, so that the caller sees where the strands end up."""
+    if rows < 0:
+        raise ValueError("The number of rows cannot be negative.")
+    repeat = [_steps(row, number) for number, row in enumerate(pattern.rows)]
+    for row in range(rows):
+        tied_row = []
+        for left, knot, left_ties, swaps in repeat[row % len(repeat)]:
+            first, second = order[left - 1], order[left]
+            if swaps:
+                order[left - 1], order[left] = second, first
+            tying, base = (first, second) if left_ties else (second, first)
+            tied_row.append(TiedKnot(left, knot, tying, base))
+        yield tied_row
+
+
+def _steps(row: tuple[Knot, ...], number: int) -> list[tuple[int, Knot, bool, bool]]:
+    """Look each knot up once a repeat instead of once a row: the walk is the hot loop."""
+    return [
+        (2 * place + 1 + number % 2, knot, knot.left_ties, knot.swaps)
+        for place, knot in enumerate(row)
+    ]
+
+
+def count_strands(pattern: DiagonalPattern, rows: int) -> tuple[StrandCount, ...]:
+    """Count for every strand the knots it ties, is base in, and the rows it sits out.
+
+    Parameters
+    ----------
+    pattern : the pattern.
+    rows : rows of the whole bracelet, 0 or more.
+
+    Returns
+    -------
+    One count a strand, in the order of the start.
+
+    Notes
+    -----
+    Every row of the bracelet is walked: strands change places from repeat to repeat, so
+    one repeat must not be scaled up. A strand takes part in at most one knot a row, so
+    idle = rows - tied - base.
+    """
+    tied = [0] * (pattern.strands + 1)
+    base = [0] * (pattern.strands + 1)
+    for row in tie_rows(pattern, rows):
+        for knot in row:
+            tied[knot.tying] += 1
+            base[knot.base] += 1
+    return tuple(
+        StrandCount(strand, slot, tied[strand], base[strand], rows - tied[strand] - base[strand])
+        for strand, slot in enumerate(pattern.slots, start=1)
+    )
+
+
+def permutation(pattern: DiagonalPattern) -> tuple[int, ...]:
+    """Return which strand (from 1) stands at each position after one repeat."""
+    return order_after(pattern, len(pattern.rows))
+
+
+def order_of_repeat(pattern: DiagonalPattern) -> int:
+    """Return after how many repeats every strand is back in its place.
+
+    Notes
+    -----
+    The order of the repeat's permutation: the least common multiple of its cycle lengths.
+    """
+    return lcm(*(len(cycle) for cycle in _cycles(permutation(pattern))))
+
+
+def colour_order(pattern: DiagonalPattern) -> int:
+    """Return after how many repeats every position shows its first slot again.
+
+    Notes
+    -----
+    Along a cycle of the permutation the slots shift by one place a repeat; they are back
+    after the smallest period of the slots read along that cycle. All cycles are back
+    together after the least common multiple of these periods.
+    """
+    return lcm(
+        *(
+            _period([pattern.slots[strand - 1] for strand in cycle])
+            for cycle in _cycles(permutation(pattern))
+        )
+    )
+
+
+def _cycles(arrangement: tuple[int, ...]) -> list[list[int]]:
+    cycles = []
+    seen: set[int] = set()
+    for start in range(1, len(arrangement) + 1):
+        cycle = []
+        place = start
+        while place not in seen:
+            seen.add(place)
+            cycle.append(place)
+            place = arrangement[place - 1]
+        if cycle:
+            cycles.append(cycle)
+    return cycles
+
+
+def _period(word: list[str]) -> int:
+    return next(shift for shift in range(1, len(word) + 1) if word[shift:] + word[:shift] == word)
+
+
+def mirrored(pattern: DiagonalPattern) -> DiagonalPattern:
+    """Return the pattern whose band is the mirror image, left for right.
+
+    Parameters
+    ----------
+    pattern : the pattern.
+
+    Returns
+    -------
+    A pattern with the same name and finish.
+
+    Notes
+    -----
+    Strand i becomes strand N + 1 - i, f and b change places, so do fb and bf, and each row
+    is read from the other end. With N odd the mirror image of row 1 leaves the *first*
+    strand out, which only an even row may do; so the image starts at row 2, with the
+    strands as they stand after row 1, and row 1 becomes the last row of its repeat.
+    """
+    skipped = pattern.strands % 2
+    rows = pattern.rows[skipped:] + pattern.rows[:skipped]
+    order = order_after(pattern, skipped)
+    return DiagonalPattern(
+        name=pattern.name,
+        slots=tuple(pattern.slots[strand - 1] for strand in reversed(order)),
+        rows=tuple(tuple(knot.mirrored for knot in reversed(row)) for row in rows),
+        finish=pattern.finish,
+    )
