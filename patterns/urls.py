@@ -1,0 +1,31 @@
+"""Addresses of patterns, colourways, sizes, endings and gauges, under /patterns/."""
+
+from django.urls import path
+
+from patterns.views import colourways, endings, gauges, library, pattern, sizes
+
+urlpatterns = [
+    path("", library.pattern_list, name="pattern_list"),
+    path("new/", library.pattern_new, name="pattern_new"),
+    path("<int:pk>/", pattern.pattern_detail, name="pattern_detail"),
+    path("<int:pk>/edit/", pattern.pattern_edit, name="pattern_edit"),
+    path("<int:pk>/pattern.toml", pattern.pattern_file, name="pattern_file"),
+    path("<int:pk>/remove/", pattern.pattern_remove, name="pattern_remove"),
+    path("<int:pattern_pk>/colourways/new/", colourways.colourway_new, name="colourway_new"),
+    path("colourways/<int:pk>/edit/", colourways.colourway_edit, name="colourway_edit"),
+    path("colourways/<int:pk>/remove/", colourways.colourway_remove, name="colourway_remove"),
+    path("sizes/", sizes.size_list, name="size_list"),
+    path("sizes/new/", sizes.size_new, name="size_new"),
+    path("sizes/<int:pk>/edit/", sizes.size_edit, name="size_edit"),
+    path("sizes/<int:pk>/remove/", sizes.size_remove, name="size_remove"),
+    path("endings/", endings.ending_list, name="ending_list"),
+    path("endings/new/", endings.ending_new, name="ending_new"),
+    path("endings/<int:pk>/edit/", endings.ending_edit, name="ending_edit"),
+    path("endings/<int:pk>/default/", endings.ending_default, name="ending_default"),
+    path("endings/<int:pk>/remove/", endings.ending_remove, name="ending_remove"),
+    path("gauges/", gauges.gauge_list, name="gauge_list"),
+    path("gauges/new/", gauges.gauge_new, name="gauge_new"),
+    path("gauges/<int:pk>/edit/", gauges.gauge_edit, name="gauge_edit"),
+    path("gauges/<int:pk>/default/", gauges.gauge_default, name="gauge_default"),
+    path("gauges/<int:pk>/remove/", gauges.gauge_remove, name="gauge_remove"),
+]
