@@ -1,0 +1,277 @@
+"""Batches of orders, and plans: what a batch needs, frozen at one moment."""
+
+from django.conf import settings
+from django.core.validators import MaxValueValidator, MinValueValidator
+from django.db import models
+from django.db.models import Count, Max, Q, QuerySet, Sum
+
+from patterns.models import Colourway, Ending, Pattern, Size
+
+MOST_A_LINE = 9_999
+
+
+class BatchQuerySet(QuerySet["Batch"]):
+    def for_batch_list(self) -> "BatchQuerySet":
+        return self.annotate(
+            line_count=Count("lines", distinct=True), latest_plan=Max("plans__number")
+        ).order_by(models.F("market_date").desc(nulls_first=True), "-pk")
+
+
+class Batch(models.Model):
+    """The orders that are made together, most often for one market."""
+
+    name = models.CharField(max_length=80)
+    market_date = models.DateField(null=True, blank=True)
+    revision = models.PositiveIntegerField(default=0)
+    created_at = models.DateTimeField(auto_now_add=True)
+
+    objects = BatchQuerySet.as_manager()
+
+    class Meta:
+        ordering = ["-pk"]
+
+    def __str__(self) -> str:
+        return self.name
+
+
+class OrderLineQuerySet(QuerySet["OrderLine"]):
+    def for_grid(self) -> "OrderLineQuerySet":
+        return self.select_related("pattern", "colourway", "size", "ending").order_by(
+            "position", "pk"
+        )
+
+    def bracelet_count(self) -> int:
+        return self.aggregate(total=Sum("quantity", default=0))["total"]
+
+
+class OrderLine(models.Model):
+    """So many equal bracelets for one person or for the stall."""
+
+    batch = models.ForeignKey(Batch, on_delete=models.CASCADE, related_name="lines")
+    position = models.PositiveIntegerField()
+    for_whom = models.CharField(max_length=120, blank=True)
+    pattern = models.ForeignKey(Pattern, on_delete=models.PROTECT, related_name="order_lines")
+    colourway = models.ForeignKey(Colourway, on_delete=models.PROTECT, related_name="order_lines")
+    size = models.ForeignKey(Size, on_delete=models.PROTECT, related_name="order_lines")
+    ending = models.ForeignKey(Ending, on_delete=models.PROTECT, related_name="order_lines")
+    quantity = models.PositiveIntegerField(
+        default=1, validators=[MinValueValidator(1), MaxValueValidator(MOST_A_LINE)]
+    )
+    due_date = models.DateField(null=True, blank=True)
+    note = models.CharField(max_length=500, blank=True)
+
+    objects = OrderLineQuerySet.as_manager()
+
+    class Meta:
+        ordering = ["position", "pk"]
+        constraints = [
+            models.CheckConstraint(
+                condition=Q(quantity__gte=1, quantity__lte=MOST_A_LINE),
+                name="order_line_quantity_in_range",
+            ),
+        ]
+
+    def __str__(self) -> str:
+        return f"{self.quantity} x {self.pattern} for {self.for_whom or 'the stall'}"
+
+
+class OrderDraft(models.Model):
+    """Rows that were pasted or uploaded and wait for the maker's word; nothing is ordered yet."""
+
+    batch = models.ForeignKey(Batch, on_delete=models.CASCADE, related_name="drafts")
+    created_by = models.ForeignKey(settings.AUTH_USER_MODEL, on_delete=models.CASCADE)
+    created_at = models.DateTimeField(auto_now_add=True)
+    source_name = models.CharField(max_length=200, blank=True)
+    rows = models.JSONField()
+    notices = models.JSONField(default=list)
+
+    class Meta:
+        ordering = ["-pk"]
+
+    def __str__(self) -> str:
+        return f"draft of {self.batch}"
+
+
+class Plan(models.Model):
+    """A snapshot: every name, length and price in it is a copy, so later edits leave it alone."""
+
+    class Status(models.TextChoices):
+        OPTIMAL = "optimal", "proven: nothing cheaper is possible"
+        FEASIBLE = "feasible", "not proven to be the cheapest"
+
+    batch = models.ForeignKey(Batch, on_delete=models.CASCADE, related_name="plans")
+    number = models.PositiveIntegerField()
+    created_at = models.DateTimeField(auto_now_add=True)
+    created_by = models.ForeignKey(settings.AUTH_USER_MODEL, on_delete=models.SET_NULL, null=True)
+    batch_name = models.CharField(max_length=80)
+    market_date = models.DateField(null=True)
+    workshop = models.JSONField()
+    status = models.CharField(max_length=8, choices=Status.choices)
+    cost = models.DecimalField(max_digits=12, decimal_places=2)
+    lower_bound = models.DecimalField(max_digits=12, decimal_places=2)
+    bracelet_count = models.PositiveIntegerField()
+    piece_count = models.PositiveIntegerField()
+    problems = models.JSONField(default=list)
+    shelf_stamp = models.CharField(max_length=64)
+    orders_stamp = models.CharField(max_length=64)
+
+    class Meta:
+        ordering = ["-number"]
+        constraints = [
+            models.UniqueConstraint(fields=["batch", "number"], name="plan_number_once_a_batch"),
+            models.CheckConstraint(
+                condition=Q(status__in=["optimal", "feasible"]), name="plan_status_known"
+            ),
+        ]
+
+    def __str__(self) -> str:
+        return f"plan {self.number} of {self.batch_name}"
+
+
+class PlanKind(models.Model):
+    """All equal bracelets of a plan: pattern, colourway, size and ending, exploded once."""
+
+    plan = models.ForeignKey(Plan, on_delete=models.CASCADE, related_name="kinds")
+    pattern_name = models.CharField(max_length=80)
+    pattern_text = models.TextField()
+    colourway_name = models.CharField(max_length=60)
+    size_name = models.CharField(max_length=40)
+    ending_name = models.CharField(max_length=60)
+    knotted_length_mm = models.PositiveIntegerField()
+    rows = models.PositiveIntegerField()
+    band_width_mm = models.FloatField()
+    making = models.JSONField()
+    cautions = models.JSONField(default=list)
+
+    class Meta:
+        ordering = ["pk"]
+
+    def __str__(self) -> str:
+        return f"{self.pattern_name}, {self.colourway_name}, {self.size_name}"
+
+
+class PlanBraceletQuerySet(QuerySet["PlanBracelet"]):
+    def for_bracelet_page(self) -> "PlanBraceletQuerySet":
+        return self.select_related("plan__batch", "kind").prefetch_related("pieces__stock__shade")
+
+
+class PlanBracelet(models.Model):
+    """One bracelet to make; its number is on its tag."""
+
+    plan = models.ForeignKey(Plan, on_delete=models.CASCADE, related_name="bracelets")
+    kind = models.ForeignKey(PlanKind, on_delete=models.CASCADE, related_name="bracelets")
+    number = models.PositiveIntegerField()
+    for_whom = models.CharField(max_length=120, blank=True)
+    due_date = models.DateField(null=True)
+    note = models.CharField(max_length=500, blank=True)
+
+    objects = PlanBraceletQuerySet.as_manager()
+
+    class Meta:
+        ordering = ["number"]
+        constraints = [
+            models.UniqueConstraint(fields=["plan", "number"], name="tag_number_once_a_plan"),
+        ]
+
+    def __str__(self) -> str:
+        return f"bracelet {self.number}"
+
+
+class PlanShade(models.Model):
+    """What one shade needs, finds on the shelf and costs."""
+
+    plan = models.ForeignKey(Plan, on_delete=models.CASCADE, related_name="shades")
+    shade_id_then = models.BigIntegerField()
+    code = models.CharField(max_length=20)
+    name = models.CharField(max_length=80)
+    colour = models.CharField(max_length=7)
+    status = models.CharField(max_length=8, choices=Plan.Status.choices)
+    piece_count = models.PositiveIntegerField()
+    need_mm = models.PositiveBigIntegerField()
+    shelf_mm = models.PositiveBigIntegerField()
+    usable_mm = models.PositiveBigIntegerField()
+    left_mm = models.PositiveBigIntegerField()
+    bought = models.PositiveIntegerField()
+    bought_lower_bound = models.PositiveIntegerField()
+    cost = models.DecimalField(max_digits=12, decimal_places=2)
+    lower_bound = models.DecimalField(max_digits=12, decimal_places=2)
+    unplaced = models.JSONField(default=list)
+
+    class Meta:
+        ordering = ["code"]
+        constraints = [
+            models.UniqueConstraint(fields=["plan", "code"], name="plan_shade_once"),
+        ]
+
+    def __str__(self) -> str:
+        return f"{self.code} {self.name}"
+
+
+class PlanPurchase(models.Model):
+    """So many skeins of one put-up to buy for one shade."""
+
+    shade = models.ForeignKey(PlanShade, on_delete=models.CASCADE, related_name="purchases")
+    supplier_name = models.CharField(max_length=80)
+    put_up_name = models.CharField(max_length=80)
+    length_mm = models.PositiveIntegerField()
+    reckoned_mm = models.PositiveIntegerField()
+    unit_price = models.DecimalField(max_digits=9, decimal_places=2)
+    count = models.PositiveIntegerField()
+    cost = models.DecimalField(max_digits=12, decimal_places=2)
+
+    class Meta:
+        ordering = ["supplier_name", "shade__code", "put_up_name"]
+
+    def __str__(self) -> str:
+        return f"{self.count} x {self.put_up_name}"
+
+
+class PlanStock(models.Model):
+    """A skein or remnant that the plan cuts from, in the order in which it is opened."""
+
+    shade = models.ForeignKey(PlanShade, on_delete=models.CASCADE, related_name="stock")
+    position = models.PositiveIntegerField()
+    shelf_piece_number = models.BigIntegerField(null=True)
+    source = models.CharField(max_length=200)
+    lot_name = models.CharField(max_length=40, blank=True)
+    is_new = models.BooleanField()
+    length_mm = models.PositiveIntegerField()
+    reckoned_mm = models.PositiveIntegerField()
+    left_mm = models.PositiveIntegerField()
+    goes_back = models.BooleanField()
+
+    class Meta:
+        ordering = ["position"]
+        constraints = [
+            models.UniqueConstraint(fields=["shade", "position"], name="plan_stock_position_once"),
+        ]
+
+    def __str__(self) -> str:
+        return self.source
+
+
+class PlanPiece(models.Model):
+    """One piece to cut: from which stock, in which order, for which bracelet and strands."""
+
+    bracelet = models.ForeignKey(PlanBracelet, on_delete=models.CASCADE, related_name="pieces")
+    shade = models.ForeignKey(PlanShade, on_delete=models.CASCADE, related_name="pieces")
+    stock = models.ForeignKey(PlanStock, on_delete=models.CASCADE, related_name="pieces", null=True)
+    cut_position = models.PositiveIntegerField(null=True)
+    index = models.PositiveIntegerField()
+    slot = models.CharField(max_length=1)
+    strands = models.JSONField()
+    cut_mm = models.PositiveIntegerField()
+    fold_mm = models.PositiveIntegerField(null=True)
+    is_sliding = models.BooleanField(default=False)
+
+    class Meta:
+        ordering = ["bracelet_id", "index"]
+        constraints = [
+            models.UniqueConstraint(fields=["bracelet", "index"], name="plan_piece_index_once"),
+            models.UniqueConstraint(
+                fields=["stock", "cut_position"], name="plan_piece_cut_position_once"
+            ),
+        ]
+
+    def __str__(self) -> str:
+        return f"{self.bracelet_id}-{self.index}"

@@ -1,0 +1,142 @@
+"""What is to be made: bracelets, and the pieces that each kind of them takes."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from datetime import date
+
+from patterns.cut_lengths import CutRule, Ending, Piece, pieces_for
+from patterns.geometry import Gauge, StrandTable, band_width_mm, strand_table
+from patterns.knots import DiagonalPattern
+
+
+@dataclass(frozen=True)
+class ShadeName:
+    """A shade as a plan remembers it."""
+
+    key: int
+    code: str
+    name: str
+    colour: str
+
+
+@dataclass(frozen=True)
+class Kind:
+    """Everything that makes two bracelets equal.
+
+    Parameters
+    ----------
+    pattern_text : the pattern as its own text, kept with the plan.
+    shades : slot and shade key, by slot; hashable so that equal kinds meet.
+    knotted_length_mm : length of the band [mm].
+    """
+
+    pattern: DiagonalPattern
+    pattern_text: str
+    colourway_name: str
+    size_name: str
+    is_child: bool
+    has_metal_or_button: bool
+    shades: tuple[tuple[str, int], ...]
+    knotted_length_mm: int
+    gauge: Gauge
+    ending: Ending
+    rule: CutRule
+
+
+@dataclass(frozen=True)
+class Order:
+    """So many bracelets of one kind for one person; `line_number` is the row in the batch."""
+
+    line_number: int
+    kind: Kind
+    quantity: int
+    for_whom: str = ""
+    due_date: date | None = None
+    note: str = ""
+
+
+@dataclass(frozen=True)
+class ExplodedKind:
+    """A kind with its rows, strands and pieces, worked out once for all its bracelets."""
+
+    kind: Kind
+    table: StrandTable
+    pieces: tuple[Piece, ...]
+    band_width_mm: float
+
+    @property
+    def shade_by_slot(self) -> Mapping[str, int]:
+        return dict(self.kind.shades)
+
+
+@dataclass(frozen=True)
+class Bracelet:
+    """One bracelet to make; `kind_index` points into the exploded kinds."""
+
+    number: int
+    kind_index: int
+    for_whom: str
+    due_date: date | None
+    note: str
+
+
+def explode_kind(kind: Kind) -> ExplodedKind:
+    """Work out rows, strands and pieces of a kind.
+
+    Parameters
+    ----------
+    kind : what to make.
+
+    Returns
+    -------
+    The kind with its table and its pieces, exact over every row of the bracelet.
+
+    Raises
+    ------
+    patterns.geometry.LengthError
+        When the pattern cannot be ended at this length.
+    """
+    table = strand_table(kind.pattern, kind.knotted_length_mm, kind.gauge)
+    return ExplodedKind(
+        kind=kind,
+        table=table,
+        pieces=pieces_for(table, kind.ending, kind.rule),
+        band_width_mm=band_width_mm(kind.pattern.strands, kind.gauge),
+    )
+
+
+def explode(orders: tuple[Order, ...]) -> tuple[tuple[ExplodedKind, ...], tuple[Bracelet, ...]]:
+    """Turn orders into numbered bracelets; equal kinds are worked out once.
+
+    Parameters
+    ----------
+    orders : the lines of a batch, in their order.
+
+    Returns
+    -------
+    Kinds in order of first use, and bracelets numbered from 1 in the order of the lines.
+
+    Raises
+    ------
+    patterns.geometry.LengthError
+        As `explode_kind`.
+    """
+    index_of: dict[Kind, int] = {}
+    kinds: list[ExplodedKind] = []
+    bracelets: list[Bracelet] = []
+    for order in orders:
+        if order.kind not in index_of:
+            index_of[order.kind] = len(kinds)
+            kinds.append(explode_kind(order.kind))
+        kind_index = index_of[order.kind]
+        for _ in range(order.quantity):
+            bracelets.append(
+                Bracelet(
+                    number=len(bracelets) + 1,
+                    kind_index=kind_index,
+                    for_whom=order.for_whom,
+                    due_date=order.due_date,
+                    note=order.note,
+                )
+            )
+    return tuple(kinds), tuple(bracelets)

@@ -1,0 +1,189 @@
+"""Rows of the database as the planning core's data, and stamps that tell when they change."""
+
+import hashlib
+import json
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+
+from patterns.actions import cut_rule
+
+from inventory.models import PutUp, Shade, ShelfPiece, Workshop
+from patterns.geometry import Gauge as GaugeCore
+from patterns.geometry import LengthError, rows_for
+from patterns.models import Gauge, KnottedLength
+from planner.models import OrderLine
+from planner.planning.demand import Kind, Order, ShadeName
+from planner.planning.netting import ShelfThread, ThreadOffer, reckoned_length
+from planner.planning.snapshot import Habits
+
+
+@dataclass(frozen=True)
+class LoadedOrders:
+    """Orders that can be planned, and one sentence for each line that cannot."""
+
+    orders: tuple[Order, ...]
+    problems: tuple[str, ...]
+
+
+@dataclass(frozen=True)
+class LoadedShelf:
+    """Names of all shades wanted, their thread on the shelf and what can be bought."""
+
+    names: dict[int, ShadeName]
+    threads: tuple[ShelfThread, ...]
+    offers: tuple[ThreadOffer, ...]
+
+    @property
+    def stamp(self) -> str:
+        threads = [(t.number, t.shade, t.lot, t.kind, t.length_mm) for t in self.threads]
+        offers = [
+            (o.key, o.supplier_name, o.name, o.length_mm, str(o.price), sorted(o.shades or []))
+            for o in self.offers
+        ]
+        return _stamp([sorted(threads), sorted(offers)])
+
+
+def habits_of(workshop: Workshop) -> Habits:
+    return Habits(
+        workshop_name=workshop.name,
+        length_unit=workshop.length_unit,
+        currency=workshop.currency,
+        paper=workshop.paper,
+        safety_share=workshop.safety_share,
+        rounding_step_mm=workshop.rounding_step_mm,
+        keep_length_mm=workshop.keep_length_mm,
+        short_measure_share=workshop.short_measure_share,
+    )
+
+
+def load_orders(lines: Sequence[OrderLine], workshop: Workshop) -> LoadedOrders:
+    """Turn order lines into orders; `lines` may be unsaved. Four queries, however many lines."""
+    _attach_colourways(lines)
+    gauge_row = Gauge.objects.filter(is_default=True).first()
+    gauge = gauge_row.as_core() if gauge_row else GaugeCore()
+    lengths = {
+        (row.size_id, row.ending_id): row.knotted_length_mm for row in KnottedLength.objects.all()
+    }
+    orders: list[Order] = []
+    problems: list[str] = []
+    for row, line in enumerate(lines, start=1):
+        try:
+            orders.append(_order(row, line, workshop, gauge, lengths))
+        except (LineProblem, LengthError) as problem:
+            problems.append(f"Row {row}: {problem}")
+    return LoadedOrders(tuple(orders), tuple(problems))
+
+
+class LineProblem(ValueError):
+    """An order line cannot be planned; the text says why and what to do."""
+
+
+def _attach_colourways(lines: Sequence[OrderLine]) -> None:
+    from django.db.models import prefetch_related_objects
+
+    prefetch_related_objects(list(lines), "pattern", "colourway__shades", "size", "ending")
+
+
+def _order(
+    row: int,
+    line: OrderLine,
+    workshop: Workshop,
+    gauge: GaugeCore,
+    lengths: dict[tuple[int, int], int],
+) -> Order:
+    knotted_length_mm = lengths.get((line.size_id, line.ending_id))
+    if knotted_length_mm is None:
+        raise LineProblem(
+            f"{line.size} has no knotted length for {line.ending}. Give it one under Sizes."
+        )
+    pattern = line.pattern.definition
+    shades = {choice.slot: choice.shade_id for choice in line.colourway.shades.all()}
+    missing = sorted(set(pattern.slots) - set(shades))
+    if missing:
+        raise LineProblem(
+            f"the colourway {line.colourway} of {line.pattern} has no shade for "
+            f"{', '.join(missing)}. Choose one on the pattern's page."
+        )
+    rows_for(pattern, knotted_length_mm, gauge)
+    kind = Kind(
+        pattern=pattern,
+        pattern_text=line.pattern.text,
+        colourway_name=line.colourway.name,
+        size_name=line.size.name,
+        is_child=line.size.is_child,
+        has_metal_or_button=line.ending.has_metal_or_button,
+        shades=tuple(sorted((slot, shades[slot]) for slot in set(pattern.slots))),
+        knotted_length_mm=knotted_length_mm,
+        gauge=gauge,
+        ending=line.ending.as_core(),
+        rule=cut_rule(workshop),
+    )
+    return Order(row, kind, line.quantity, line.for_whom, line.due_date, line.note)
+
+
+def orders_stamp(orders: Iterable[Order]) -> str:
+    """Tell whether the orders, or the patterns and sizes behind them, have changed."""
+    return _stamp(
+        [
+            [repr(order.kind), order.quantity, order.for_whom, str(order.due_date), order.note]
+            for order in orders
+        ]
+    )
+
+
+def load_shelf(shade_ids: Iterable[int], workshop: Workshop) -> LoadedShelf:
+    wanted = set(shade_ids)
+    share = workshop.short_measure_share
+    shades = Shade.objects.in_bulk(wanted)
+    pieces = (
+        ShelfPiece.objects.on_shelf()
+        .filter(lot__shade__in=wanted)
+        .select_related("lot")
+        .order_by("pk")
+    )
+    return LoadedShelf(
+        names={
+            key: ShadeName(key, shade.code, shade.name, shade.colour)
+            for key, shade in shades.items()
+        },
+        threads=tuple(
+            ShelfThread(
+                number=piece.pk,
+                shade=piece.lot.shade_id,
+                lot=piece.lot_id,
+                lot_name=piece.lot.name,
+                kind=piece.kind,
+                length_mm=piece.length_mm,
+                reckoned_mm=piece.length_mm
+                if piece.is_measured
+                else reckoned_length(piece.length_mm, share),
+            )
+            for piece in pieces
+        ),
+        offers=_offers(wanted, workshop),
+    )
+
+
+def _offers(wanted: set[int], workshop: Workshop) -> tuple[ThreadOffer, ...]:
+    put_ups = PutUp.objects.select_related("supplier").prefetch_related("shades").order_by("pk")
+    offers = []
+    for put_up in put_ups:
+        shades = None
+        if not put_up.for_every_shade:
+            shades = frozenset(shade.pk for shade in put_up.shades.all()) & wanted
+        offers.append(
+            ThreadOffer(
+                key=put_up.pk,
+                supplier_name=put_up.supplier.name,
+                name=put_up.name,
+                length_mm=put_up.length_mm,
+                reckoned_mm=reckoned_length(put_up.length_mm, workshop.short_measure_share),
+                price=put_up.price,
+                shades=shades,
+            )
+        )
+    return tuple(offers)
+
+
+def _stamp(content: object) -> str:
+    return hashlib.sha256(json.dumps(content, default=str).encode()).hexdigest()

@@ -1,0 +1,186 @@
+"""Net what is needed against the shelf, shade by shade and as pieces, and cut the rest new."""
+
+from collections import defaultdict
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass
+from decimal import ROUND_DOWN, Decimal
+
+from planner.cutting import Group, Lot, LotResult, LotStock, Offer, solve_with_lots, usable_length
+from planner.planning.demand import Bracelet, ExplodedKind
+
+
+@dataclass(frozen=True)
+class ShelfThread:
+    """One piece of thread on the shelf; `reckoned_mm` is what it is trusted to hold."""
+
+    number: int
+    shade: int
+    lot: int
+    lot_name: str
+    kind: str
+    length_mm: int
+    reckoned_mm: int
+
+
+@dataclass(frozen=True)
+class ThreadOffer:
+    """A put-up that can be bought; `shades` is None where it comes in every shade."""
+
+    key: int
+    supplier_name: str
+    name: str
+    length_mm: int
+    reckoned_mm: int
+    price: Decimal
+    shades: frozenset[int] | None = None
+
+    def serves(self, shade: int) -> bool:
+        return self.shades is None or shade in self.shades
+
+
+@dataclass(frozen=True)
+class NettedShade:
+    """One shade's need, its thread on the shelf and the cut plan that meets it."""
+
+    shade: int
+    piece_count: int
+    need_mm: int
+    shelf_mm: int
+    usable_mm: int
+    left_mm: int
+    result: LotResult
+
+
+def reckoned_length(length_mm: int, short_measure_share: Decimal) -> int:
+    """Return what an unmeasured skein is trusted to hold.
+
+    Parameters
+    ----------
+    length_mm : nominal length [mm].
+    short_measure_share : share by which skeins may run short, 0 to 0.5.
+
+    Returns
+    -------
+    Length [mm], rounded down.
+    """
+    exact = Decimal(length_mm) * (1 - short_measure_share)
+    return int(exact.quantize(Decimal(1), rounding=ROUND_DOWN))
+
+
+def group_key(bracelet_number: int) -> str:
+    return str(bracelet_number)
+
+
+def net(
+    kinds: tuple[ExplodedKind, ...],
+    bracelets: tuple[Bracelet, ...],
+    shelf: Iterable[ShelfThread],
+    offers: tuple[ThreadOffer, ...],
+    *,
+    time_limit_s: float = 10.0,
+    seed: int = 0,
+) -> tuple[NettedShade, ...]:
+    """Meet the need of every shade from the shelf first, then from new thread.
+
+    Parameters
+    ----------
+    kinds, bracelets : as `explode` returns them.
+    shelf : thread on the shelf, of any shade.
+    offers : put-ups that can be bought.
+    time_limit_s : for one shade [s].
+    seed : for the solver.
+
+    Returns
+    -------
+    One entry a shade needed, by first use. All pieces of one shade in one bracelet come
+    from one dye lot.
+    """
+    groups = groups_by_shade(kinds, bracelets)
+    shelf_by_shade: dict[int, list[ShelfThread]] = defaultdict(list)
+    for thread in shelf:
+        shelf_by_shade[thread.shade].append(thread)
+    return tuple(
+        _net_shade(shade, wanted, shelf_by_shade[shade], offers, time_limit_s, seed)
+        for shade, wanted in groups.items()
+    )
+
+
+def pieces_by_shade(kind: ExplodedKind) -> Mapping[int, tuple[int, ...]]:
+    """Return for every shade the indexes of the kind's pieces cut from it."""
+    indexes: dict[int, list[int]] = defaultdict(list)
+    shade_by_slot = kind.shade_by_slot
+    for index, piece in enumerate(kind.pieces):
+        indexes[shade_by_slot[piece.slot]].append(index)
+    return {shade: tuple(found) for shade, found in indexes.items()}
+
+
+def groups_by_shade(
+    kinds: tuple[ExplodedKind, ...], bracelets: tuple[Bracelet, ...]
+) -> dict[int, list[Group]]:
+    """Return per shade one group of piece lengths for every bracelet that uses it."""
+    lengths_of_kind = [
+        {
+            shade: tuple(kind.pieces[index].cut_mm for index in indexes)
+            for shade, indexes in pieces_by_shade(kind).items()
+        }
+        for kind in kinds
+    ]
+    groups: dict[int, list[Group]] = defaultdict(list)
+    for bracelet in bracelets:
+        for shade, lengths in lengths_of_kind[bracelet.kind_index].items():
+            groups[shade].append(Group(group_key(bracelet.number), lengths))
+    return groups
+
+
+def _net_shade(
+    shade: int,
+    groups: list[Group],
+    shelf: list[ShelfThread],
+    offers: tuple[ThreadOffer, ...],
+    time_limit_s: float,
+    seed: int,
+) -> NettedShade:
+    result = solve_with_lots(
+        tuple(groups),
+        _lots(shelf),
+        tuple(
+            Offer(str(offer.key), offer.supplier_name, offer.reckoned_mm, offer.price)
+            for offer in offers
+            if offer.serves(shade)
+        ),
+        time_limit_s=time_limit_s,
+        seed=seed,
+    )
+    need_mm = sum(sum(group.pieces_mm) for group in groups)
+    shelf_mm = sum(thread.reckoned_mm for thread in shelf)
+    cut_mm = sum(piece.length_mm for opened in result.opened for piece in opened.pieces)
+    new_mm = sum(opened.length_mm for opened in result.opened if opened.offer_key is not None)
+    return NettedShade(
+        shade=shade,
+        piece_count=sum(len(group.pieces_mm) for group in groups),
+        need_mm=need_mm,
+        shelf_mm=shelf_mm,
+        usable_mm=min(need_mm, usable_on_shelf(groups, shelf)),
+        left_mm=shelf_mm + new_mm - cut_mm,
+        result=result,
+    )
+
+
+def usable_on_shelf(groups: list[Group], shelf: list[ShelfThread]) -> int:
+    """Return how much of the shelf the needed pieces could fill at the very most [mm].
+
+    Each piece of thread is looked at alone, so the sum is an upper bound: a remnant shorter
+    than every needed piece counts nothing, however many metres there are of its like.
+    """
+    wanted: dict[int, int] = defaultdict(int)
+    for group in groups:
+        for length_mm in group.pieces_mm:
+            wanted[length_mm] += 1
+    return sum(usable_length(thread.reckoned_mm, wanted) for thread in shelf)
+
+
+def _lots(shelf: list[ShelfThread]) -> tuple[Lot, ...]:
+    stock: dict[int, list[LotStock]] = defaultdict(list)
+    for thread in shelf:
+        stock[thread.lot].append(LotStock(str(thread.number), thread.reckoned_mm))
+    return tuple(Lot(str(lot), tuple(pieces)) for lot, pieces in stock.items())

@@ -1,0 +1,155 @@
+"""A plan as plain data: what is stored, shown and printed, with no link to what it came from."""
+
+from dataclasses import dataclass
+from datetime import date
+from decimal import Decimal
+from typing import Any
+
+
+@dataclass(frozen=True)
+class Habits:
+    """The workshop's habits at the time of the plan."""
+
+    workshop_name: str
+    length_unit: str
+    currency: str
+    paper: str
+    safety_share: Decimal
+    rounding_step_mm: Decimal
+    keep_length_mm: int
+    short_measure_share: Decimal
+
+
+@dataclass(frozen=True)
+class SnapshotPiece:
+    """A piece of a kind, in the order of the kind's pieces."""
+
+    slot: str
+    shade_code: str
+    strands: tuple[int, ...]
+    cut_mm: int
+    fold_mm: int | None
+    is_sliding: bool
+
+
+@dataclass(frozen=True)
+class SnapshotKind:
+    """All equal bracelets; `making` holds strands, gauge, ending and rule as JSON-ready data."""
+
+    pattern_name: str
+    pattern_text: str
+    colourway_name: str
+    size_name: str
+    ending_name: str
+    knotted_length_mm: int
+    rows: int
+    band_width_mm: float
+    colours: dict[str, str]
+    pieces: tuple[SnapshotPiece, ...]
+    making: dict[str, Any]
+    cautions: tuple[str, ...]
+
+
+@dataclass(frozen=True)
+class SnapshotBracelet:
+    """One bracelet; `key` is its page, None while the plan is not saved."""
+
+    number: int
+    kind_index: int
+    for_whom: str
+    due_date: date | None
+    note: str
+    key: int | None = None
+
+
+@dataclass(frozen=True)
+class SnapshotCut:
+    """One cut: the piece `piece_index` of the bracelet with this tag number."""
+
+    tag_number: int
+    piece_index: int
+    cut_mm: int
+
+
+@dataclass(frozen=True)
+class SnapshotStock:
+    """A skein or remnant that is cut from, its cuts in order, what is left of it."""
+
+    source: str
+    shelf_piece_number: int | None
+    lot_name: str
+    is_new: bool
+    length_mm: int
+    reckoned_mm: int
+    left_mm: int
+    goes_back: bool
+    cuts: tuple[SnapshotCut, ...]
+
+
+@dataclass(frozen=True)
+class SnapshotPurchase:
+    """So many of one put-up."""
+
+    supplier_name: str
+    put_up_name: str
+    length_mm: int
+    reckoned_mm: int
+    unit_price: Decimal
+    count: int
+    cost: Decimal
+
+
+@dataclass(frozen=True)
+class SnapshotShade:
+    """One shade: need, shelf, purchase, cuts, proof; `unplaced` are tag numbers without thread."""
+
+    shade_key: int
+    code: str
+    name: str
+    colour: str
+    status: str
+    piece_count: int
+    need_mm: int
+    shelf_mm: int
+    usable_mm: int
+    left_mm: int
+    bought: int
+    bought_lower_bound: int
+    cost: Decimal
+    lower_bound: Decimal
+    purchases: tuple[SnapshotPurchase, ...]
+    stock: tuple[SnapshotStock, ...]
+    unplaced: tuple[int, ...]
+
+
+@dataclass(frozen=True)
+class Snapshot:
+    """The whole plan."""
+
+    batch_name: str
+    market_date: date | None
+    plan_number: int
+    plan_date: date
+    habits: Habits
+    kinds: tuple[SnapshotKind, ...]
+    bracelets: tuple[SnapshotBracelet, ...]
+    shades: tuple[SnapshotShade, ...]
+    problems: tuple[str, ...]
+    shelf_stamp: str
+    orders_stamp: str
+
+    @property
+    def cost(self) -> Decimal:
+        return sum((shade.cost for shade in self.shades), Decimal(0))
+
+    @property
+    def lower_bound(self) -> Decimal:
+        return sum((shade.lower_bound for shade in self.shades), Decimal(0))
+
+    @property
+    def is_proven(self) -> bool:
+        return all(shade.status == "optimal" and not shade.unplaced for shade in self.shades)
+
+    @property
+    def piece_count(self) -> int:
+        return sum(shade.piece_count for shade in self.shades)

@@ -1,0 +1,31 @@
+"""Every address of Flosswright."""
+
+from django.urls import include, path
+
+from planner.views import batches, home, plans, workshop
+
+urlpatterns = [
+    path("", home.home, name="home"),
+    path("open-sample/", home.open_sample, name="open_sample"),
+    path("start-own/", home.start_own, name="start_own"),
+    path("workshop/", workshop.workshop, name="workshop"),
+    path("orders/", batches.batch_list, name="batch_list"),
+    path("orders/new/", batches.batch_new, name="batch_new"),
+    path("orders/<int:pk>/", batches.batch_detail, name="batch_detail"),
+    path("orders/<int:pk>/edit/", batches.batch_edit, name="batch_edit"),
+    path("orders/<int:pk>/add-list/", batches.list_add, name="list_add"),
+    path("orders/<int:pk>/lists/<int:draft_pk>/", batches.list_check, name="list_check"),
+    path("orders/<int:pk>/lists/<int:draft_pk>/add/", batches.list_confirm, name="list_confirm"),
+    path(
+        "orders/<int:pk>/lists/<int:draft_pk>/discard/", batches.list_discard, name="list_discard"
+    ),
+    path("orders/<int:pk>/plan/", plans.plan_new, name="plan_new"),
+    path("plans/<int:pk>/", plans.plan_detail, name="plan_detail"),
+    path("plans/<int:pk>/shades/<int:shade_pk>/", plans.plan_shade, name="plan_shade"),
+    path("plans/<int:pk>/bracelets/", plans.plan_bracelets, name="plan_bracelets"),
+    path("plans/<int:pk>/<slug:sheet>.<slug:ending>", plans.plan_sheet, name="plan_sheet"),
+    path("b/<int:pk>/", plans.bracelet, name="bracelet"),
+    path("patterns/", include("patterns.urls")),
+    path("shelf/", include("inventory.urls")),
+    path("", include("planner.signin.urls")),
+]
