@@ -17,6 +17,7 @@ SLOT_LETTERS = "ABCDEFGHIJKLMNOPQRSTUVWXYZ"
 # Marks that turn the direction of the text around them would garble a tag; plain
 # right-to-left letters need none of them.
 _DIRECTION_MARKS = frozenset("\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069")
+_NOT_CHARACTERS = frozenset("\ufffe\uffff")  # no XML and so no spreadsheet can hold these
 _REFUSED_CATEGORIES = frozenset({"Cc", "Cs", "Zl", "Zp"})
 
 
@@ -91,7 +92,7 @@ def clean_name(name: object) -> str:
     if not isinstance(name, str):
         raise PatternError("The name has to be text.")
     stripped = name.strip()
-    if not stripped:
+    if not any(unicodedata.category(character)[0] in "LNPS" for character in stripped):
         raise PatternError("The pattern has no name. Give it one.")
     if len(stripped) > MAX_NAME_LENGTH:
         raise PatternError(
@@ -103,7 +104,11 @@ def clean_name(name: object) -> str:
 
 
 def _is_refused(character: str) -> bool:
-    return character in _DIRECTION_MARKS or unicodedata.category(character) in _REFUSED_CATEGORIES
+    return (
+        character in _DIRECTION_MARKS
+        or character in _NOT_CHARACTERS
+        or unicodedata.category(character) in _REFUSED_CATEGORIES
+    )
 
 
 @dataclass(frozen=True)

@@ -1,0 +1,142 @@
+"""How much thread every strand of a pattern file takes."""
+
+import json
+from argparse import ArgumentParser
+from fractions import Fraction
+from pathlib import Path
+from typing import Any, NoReturn
+
+from django.core.management.base import BaseCommand, CommandError, CommandParser
+
+from inventory.measures import MeasureError, parse_decimal, parse_length
+from patterns.geometry import Gauge, GaugeError, LengthError, StrandTable, strand_table
+from patterns.knots import DiagonalPattern, Finish, PatternError
+from patterns.pattern_file import MAX_FILE_BYTES, read_pattern
+
+
+class Error(CommandError):
+    """Django prints the class name before the message, so this is its first word."""
+
+    def __init__(self, message: str) -> None:
+        super().__init__(" ".join(message.split()), returncode=2)
+
+
+class Command(BaseCommand):
+    help = "Counts the knots of every strand of a pattern file and gives the thread it takes."
+    requires_system_checks = []
+
+    def create_parser(self, prog_name: str, subcommand: str, **kwargs: Any) -> CommandParser:
+        parser = super().create_parser(prog_name, subcommand, **kwargs)
+        parser.error = _refuse_arguments  # type: ignore[method-assign]
+        return parser
+
+    def run_from_argv(self, argv: list[str]) -> None:
+        try:
+            super().run_from_argv(argv)
+        except Error as error:  # from the parser, before Django listens
+            self.stderr.write(f"Error: {error}")
+            raise SystemExit(error.returncode) from None
+
+    def add_arguments(self, parser: ArgumentParser) -> None:
+        parser.add_argument("file", metavar="FILE.toml")
+        parser.add_argument(
+            "--length", required=True, help="knotted length, such as 150mm, 15cm or 6in"
+        )
+        parser.add_argument("--thread", help="thread diameter in the knot (default 0.9mm)")
+        parser.add_argument("--loop-ratio", help="loop size in thread diameters (default 1.5)")
+        parser.add_argument(
+            "--idle-run", help="thread of an idle row in thread diameters (default 1.414)"
+        )
+        parser.add_argument(
+            "--finish",
+            choices=[finish.value for finish in Finish],
+            help="end with whole repeats or not (default: as the file says)",
+        )
+        parser.add_argument("--json", action="store_true", help="print JSON")
+
+    def handle(self, *args: Any, **options: Any) -> None:
+        try:
+            pattern = _with_finish(read_pattern(_read_file(Path(options["file"]))), options)
+            length_mm = float(_millimetres("--length", options["length"]))
+            table = strand_table(pattern, length_mm, _gauge(options))
+        except (PatternError, GaugeError, LengthError) as error:
+            raise Error(str(error)) from error
+        self.stdout.write(_as_json(table) if options["json"] else _as_table(table))
+
+
+def _refuse_arguments(message: str) -> NoReturn:
+    raise Error(f"{message[:300]}. See --help.")
+
+
+def _read_file(path: Path) -> str:
+    shown = repr(str(path)[:200])
+    try:
+        if not path.exists():
+            raise Error(f"There is no file {shown}.")
+        if not path.is_file():
+            raise Error(f"{shown} is not a file.")
+        with path.open("rb") as file:
+            content = file.read(MAX_FILE_BYTES + 1)
+    except (OSError, ValueError) as error:
+        raise Error(f"{shown} cannot be read.") from error
+    if len(content) > MAX_FILE_BYTES:
+        raise Error(f"{shown} is larger than {MAX_FILE_BYTES // 1024} KB; no pattern is.")
+    try:
+        return content.decode("utf-8")
+    except UnicodeDecodeError as error:
+        raise Error(f"{shown} is not a text file in UTF-8.") from error
+
+
+def _with_finish(pattern: DiagonalPattern, options: dict[str, Any]) -> DiagonalPattern:
+    if options["finish"] is None:
+        return pattern
+    return DiagonalPattern(pattern.name, pattern.slots, pattern.rows, Finish(options["finish"]))
+
+
+def _gauge(options: dict[str, Any]) -> Gauge:
+    given = {}
+    if options["thread"] is not None:
+        given["thread_diameter_mm"] = float(_millimetres("--thread", options["thread"]))
+    for option in ("loop_ratio", "idle_run"):
+        if options[option] is not None:
+            given[option] = _number(option.replace("_", " "), options[option])
+    return Gauge(**given)
+
+
+def _millimetres(option: str, text: str) -> Fraction:
+    try:
+        return parse_length(text, "mm")
+    except MeasureError as error:
+        raise Error(f"{option}: {error}") from error
+
+
+def _number(name: str, text: str) -> float:
+    try:
+        return float(parse_decimal(text, name=name, minimum=0, maximum=5))
+    except MeasureError as error:
+        raise Error(str(error)) from error
+
+
+def _as_json(table: StrandTable) -> str:
+    strands = [
+        {
+            "strand": strand.strand,
+            "slot": strand.slot,
+            "tied": strand.tied,
+            "base": strand.base,
+            "idle": strand.idle,
+            "knotted_mm": round(strand.knotted_mm, 1),
+        }
+        for strand in table.strands
+    ]
+    return json.dumps({"rows": table.rows, "strands": strands})
+
+
+def _as_table(table: StrandTable) -> str:
+    lines = [f"{table.rows} rows", "strand  slot  tied  base  idle  knotted mm"]
+    lines += [
+        f"{strand.strand:6}  {strand.slot:>4}  {strand.tied:4}  {strand.base:4}"
+        f"  {strand.idle:4}  {strand.knotted_mm:10.1f}"
+        for strand in table.strands
+    ]
+    return "\n".join(lines)

@@ -1,0 +1,198 @@
+"""Patterns as text files: read with errors that name the row and the knot, written back."""
+
+import tomllib
+from collections.abc import Callable, Mapping
+from difflib import get_close_matches
+from typing import TypeAlias
+
+from patterns.knots import (
+    DiagonalPattern,
+    Finish,
+    Knot,
+    PatternError,
+    clean_name,
+)
+
+MAX_FILE_BYTES = 64 * 1024
+NO_KNOTS = "-"
+# A key of thousands of dotted parts takes the TOML reader minutes; no pattern needs one.
+_MAX_DOTS_A_LINE = 100
+_KEYS = ("name", "technique", "strands", "rows", "finish")
+# Grid patterns join here: `Pattern: TypeAlias = DiagonalPattern | GridPattern`.
+Pattern: TypeAlias = DiagonalPattern
+
+
+def read_pattern(text: str) -> Pattern:
+    """Read a pattern from the text of its file.
+
+    Parameters
+    ----------
+    text : TOML with `name`, `technique`, `strands`, `rows` and perhaps `finish`; at most
+        64 KB. Upper and lower case, commas and blanks between letters and knots, blank
+        lines and comments after `#` are all accepted in `strands` and `rows`.
+
+    Returns
+    -------
+    The pattern.
+
+    Raises
+    ------
+    PatternError
+        When the text is not such a file; says what is wrong, where, and what to do.
+    """
+    content = _parse(text)
+    for key in content:
+        if key not in _KEYS:
+            raise PatternError(f"There is no setting '{_shown(key)}'. {_nearest(key, _KEYS)}")
+    technique = _text(content, "technique").strip().lower()
+    reader = _READERS.get(technique)
+    if reader is None:
+        raise PatternError(
+            f"There is no technique '{_shown(technique)}'. {_nearest(technique, tuple(_READERS))}"
+        )
+    return reader(content)
+
+
+def _parse(text: str) -> dict[str, object]:
+    if not isinstance(text, str):
+        raise PatternError("A pattern file is text.")
+    if len(text.encode("utf-8", errors="replace")) > MAX_FILE_BYTES:
+        raise PatternError(f"The file is larger than {MAX_FILE_BYTES // 1024} KB; no pattern is.")
+    for number, line in enumerate(text.split("\n"), start=1):
+        if line.count(".") > _MAX_DOTS_A_LINE and not line.lstrip().startswith("#"):
+            raise PatternError(f"Line {number} is not part of a pattern: too many dots.")
+    try:
+        return tomllib.loads(text.removeprefix("\ufeff"))
+    except tomllib.TOMLDecodeError as error:
+        raise PatternError(f"The file is not valid TOML: {_one_line(error)}.") from error
+    except (ValueError, RecursionError) as error:
+        raise PatternError(
+            "The file is not valid TOML: it holds a value no pattern needs."
+        ) from error
+
+
+def _one_line(error: Exception) -> str:
+    return _shown(" ".join(str(error).split()), 200)
+
+
+def _shown(word: str, most: int = 30) -> str:
+    return "".join(character if character.isprintable() else "?" for character in word[:most])
+
+
+def _nearest(word: str, choices: tuple[str, ...]) -> str:
+    close = get_close_matches(word[:30].lower(), choices, n=1)
+    if close:
+        return f"Did you mean {close[0]}?"
+    return f"Use {', '.join(choices[:-1])} or {choices[-1]}."
+
+
+def _text(content: Mapping[str, object], key: str) -> str:
+    if key not in content:
+        raise PatternError(f"The file has no '{key}'. Add a line: {_EXAMPLES[key]}")
+    value = content[key]
+    if not isinstance(value, str):
+        raise PatternError(f"'{key}' has to be text in quotes: {_EXAMPLES[key]}")
+    return value
+
+
+_EXAMPLES = {
+    "name": 'name = "Harbour stripes"',
+    "technique": 'technique = "diagonal"',
+    "strands": 'strands = "A A B B C C"',
+    "rows": 'rows = """..."""',
+    "finish": 'finish = "nearest"',
+}
+
+
+def _read_diagonal(content: Mapping[str, object]) -> DiagonalPattern:
+    return DiagonalPattern(
+        name=clean_name(_text(content, "name")),
+        slots=_read_slots(_text(content, "strands")),
+        rows=_read_rows(_text(content, "rows")),
+        finish=_read_finish(_text(content, "finish") if "finish" in content else "exact"),
+    )
+
+
+def _read_grid(content: Mapping[str, object]) -> DiagonalPattern:
+    raise PatternError("Grid patterns come later. For now technique has to be 'diagonal'.")
+
+
+_READERS: dict[str, Callable[[Mapping[str, object]], Pattern]] = {
+    "diagonal": _read_diagonal,
+    "grid": _read_grid,
+}
+
+
+def _words(line: str) -> list[str]:
+    return line.partition("#")[0].replace(",", " ").split()
+
+
+def _read_slots(text: str) -> tuple[str, ...]:
+    slots = tuple(word.upper() for line in text.splitlines() for word in _words(line))
+    for number, slot in enumerate(slots, start=1):
+        if len(slot) != 1 and slot.isalpha():
+            raise PatternError(
+                f"Strand {number}: '{_shown(slot)}' is more than one letter. "
+                "Put a space between the letters."
+            )
+    return slots
+
+
+def _read_rows(text: str) -> tuple[tuple[Knot, ...], ...]:
+    lines = [words for line in text.splitlines() if (words := _words(line))]
+    return tuple(_read_row(words, number) for number, words in enumerate(lines, start=1))
+
+
+def _read_row(words: list[str], row: int) -> tuple[Knot, ...]:
+    if words == [NO_KNOTS]:
+        return ()
+    return tuple(_read_knot(word, row, place) for place, word in enumerate(words, start=1))
+
+
+def _read_knot(word: str, row: int, place: int) -> Knot:
+    try:
+        return Knot(word.lower())
+    except ValueError:
+        raise PatternError(
+            f"Row {row}, knot {place}: '{_shown(word)}' is not a knot. Use f, b, fb or bf.",
+            row=row,
+            knot=place,
+        ) from None
+
+
+def _read_finish(text: str) -> Finish:
+    word = text.strip().lower().replace(" ", "_").replace("-", "_")
+    try:
+        return Finish(word)
+    except ValueError:
+        choices = tuple(finish.value for finish in Finish)
+        raise PatternError(
+            f"There is no finish '{_shown(text)}'. {_nearest(word, choices)}"
+        ) from None
+
+
+def write_pattern(pattern: Pattern) -> str:
+    """Write a pattern as the text of its file; `read_pattern` gives the same pattern back."""
+    rows = "\n".join(" ".join(row) or NO_KNOTS for row in pattern.rows)
+    lines = [
+        f"name = {_quoted(pattern.name)}",
+        f'technique = "{pattern.technique}"',
+        f'strands = "{" ".join(pattern.slots)}"',
+        f'rows = """\n{rows}\n"""',
+    ]
+    if pattern.finish is not Finish.EXACT:
+        lines.append(f'finish = "{pattern.finish}"')
+    return "\n".join(lines) + "\n"
+
+
+def _quoted(text: str) -> str:
+    escaped = text.replace("\\", "\\\\").replace('"', '\\"')
+    return f'"{escaped}"'
+
+
+def written_rows(pattern: Pattern) -> list[str]:
+    """Return the rows of the repeat in words: "Row 7: f f b"."""
+    return [
+        f"Row {number}: {' '.join(row) or 'no knots'}"
+        for number, row in enumerate(pattern.rows, start=1)
+    ]
