@@ -1,0 +1,204 @@
+"""Every write to the pattern library that touches more than one row."""
+
+from collections.abc import Mapping
+from dataclasses import asdict
+from decimal import Decimal
+from fractions import Fraction
+from typing import Any
+
+from django.core.exceptions import ValidationError
+from django.db import IntegrityError, models, transaction
+from django.db.models.deletion import ProtectedError
+
+from inventory.models import Shade, Workshop
+from patterns.cut_lengths import CutRule
+from patterns.defaults import BUTTONED_ENDINGS, DEFAULT_ENDINGS, DEFAULT_SIZES
+from patterns.knots import DiagonalPattern
+from patterns.models import (
+    Colourway,
+    ColourwayShade,
+    Ending,
+    Gauge,
+    KnottedLength,
+    Pattern,
+    Size,
+)
+from patterns.pattern_file import read_pattern
+
+
+class LibraryError(ValueError):
+    """The library cannot be changed so; the text says why and what to do."""
+
+
+def cut_rule(workshop: Workshop | None) -> CutRule:
+    """The workshop's habits as the core takes them; those of a new workshop where there is none."""
+    habits = workshop or Workshop()
+    return CutRule(
+        safety_share=float(habits.safety_share),
+        rounding_step_mm=Fraction(habits.rounding_step_mm),
+    )
+
+
+@transaction.atomic
+def add_pattern(*, text: str) -> Pattern:
+    """Raises PatternError where the text is no pattern, LibraryError where its name is taken."""
+    pattern = Pattern()
+    _fill(pattern, text)
+    return pattern
+
+
+@transaction.atomic
+def change_pattern(*, pattern: Pattern, text: str) -> Pattern:
+    """Slots that are gone lose their shades; new ones wait for theirs, see `missing_slots`."""
+    definition = _fill(pattern, text)
+    gone = ColourwayShade.objects.filter(colourway__pattern=pattern)
+    gone.exclude(slot__in=set(definition.slots)).delete()
+    return pattern
+
+
+def _fill(pattern: Pattern, text: str) -> DiagonalPattern:
+    definition = read_pattern(text)
+    pattern.name = definition.name
+    pattern.technique = definition.technique
+    pattern.text = text
+    pattern.strand_count = definition.strands
+    pattern.repeat_rows = len(definition.rows)
+    _save_once(pattern, f"A pattern called {pattern.name} is there already. Choose another name.")
+    return definition
+
+
+def _save_once(thing: models.Model, taken: str) -> None:
+    """Two requests may both find the name free, so the constraint has the last word."""
+    try:
+        thing.validate_constraints()
+        with transaction.atomic():
+            thing.save()
+    except (ValidationError, IntegrityError):
+        raise LibraryError(taken) from None
+
+
+@transaction.atomic
+def set_colourway(
+    *,
+    pattern: Pattern,
+    name: str,
+    shades: Mapping[str, Shade],
+    colourway: Colourway | None = None,
+) -> Colourway:
+    """Give every slot of the pattern its shade, in a new colourway or in this one."""
+    slots = set(pattern.definition.slots)
+    missing, extra = sorted(slots - shades.keys()), sorted(shades.keys() - slots)
+    if missing:
+        raise LibraryError(f"Choose a shade for {_listed(missing)}.")
+    if extra:
+        raise LibraryError(f"{pattern.name} has no slot {_listed(extra)}.")
+    colourway = colourway or Colourway(pattern=pattern)
+    colourway.name = name
+    _save_once(colourway, f"{pattern.name} has a colourway called {name} already.")
+    colourway.shades.all().delete()
+    ColourwayShade.objects.bulk_create(
+        ColourwayShade(colourway=colourway, slot=slot, shade=shade)
+        for slot, shade in sorted(shades.items())
+    )
+    return colourway
+
+
+def missing_slots(colourway: Colourway, definition: DiagonalPattern | None = None) -> list[str]:
+    """Slots that wait for a shade; give the definition where it has been read already."""
+    slots = set((definition or colourway.pattern.definition).slots)
+    return sorted(slots - colourway.shades_by_slot().keys())
+
+
+def check_complete(colourway: Colourway, definition: DiagonalPattern | None = None) -> None:
+    missing = missing_slots(colourway, definition)
+    if missing:
+        raise LibraryError(
+            f"{colourway.name} of {colourway.pattern.name} needs a shade for {_listed(missing)}."
+        )
+
+
+def is_complete(colourway: Colourway, definition: DiagonalPattern | None = None) -> bool:
+    return not missing_slots(colourway, definition)
+
+
+def _listed(words: list[str]) -> str:
+    return f"{', '.join(words[:-1])} and {words[-1]}" if len(words) > 1 else words[0]
+
+
+@transaction.atomic
+def set_default_gauge(*, gauge: Gauge) -> Gauge:
+    Gauge.objects.filter(is_default=True).update(is_default=False)
+    gauge.is_default = True
+    gauge.save(update_fields=["is_default"])
+    return gauge
+
+
+@transaction.atomic
+def set_default_ending(*, ending: Ending) -> Ending:
+    Ending.objects.filter(is_default=True).update(is_default=False)
+    ending.is_default = True
+    ending.save(update_fields=["is_default"])
+    return ending
+
+
+def check_removable(thing: models.Model) -> None:
+    """Looks along the relations, because the orders that use a pattern are not ours to name."""
+    if getattr(thing, "is_default", False):
+        raise LibraryError(f"{thing} is the default. Make another one the default first.")
+    uses = [
+        f"{count} {_one_or_more(relation.related_model, count)}"
+        for relation in thing._meta.related_objects
+        if relation.on_delete is models.PROTECT
+        and (
+            count := relation.related_model._base_manager.filter(
+                **{relation.field.name: thing}
+            ).count()
+        )
+    ]
+    if uses:
+        raise LibraryError(f"{thing} is used by {_listed(uses)}. Take it out there first.")
+
+
+def _one_or_more(model: Any, count: int) -> str:
+    return str(model._meta.verbose_name if count == 1 else model._meta.verbose_name_plural)
+
+
+@transaction.atomic
+def remove(*, thing: models.Model) -> None:
+    check_removable(thing)
+    try:
+        thing.delete()
+    except ProtectedError:
+        raise LibraryError(f"{thing} is in use. Take it out of the orders first.") from None
+
+
+@transaction.atomic
+def load_defaults() -> None:
+    """What is there already, by name, stays as the maker left it; so a second run adds nothing."""
+    if not Gauge.objects.exists():
+        Gauge.objects.create(name="Six-strand floss", is_default=True)
+    endings = {core.name: _default_ending(asdict(core)) for core in DEFAULT_ENDINGS}
+    if not Ending.objects.filter(is_default=True).exists():
+        set_default_ending(ending=next(iter(endings.values())))
+    for default in DEFAULT_SIZES:
+        size = Size.objects.filter(name__iexact=default.name).first() or Size.objects.create(
+            name=default.name,
+            wrist_min_mm=default.wrist_min_mm,
+            wrist_max_mm=default.wrist_max_mm,
+            is_child=default.is_child,
+        )
+        for ending_name, length_mm in default.knotted_length_mm:
+            KnottedLength.objects.get_or_create(
+                size=size,
+                ending=endings[ending_name],
+                defaults={"knotted_length_mm": length_mm},
+            )
+
+
+def _default_ending(values: dict[str, Any]) -> Ending:
+    """A missing one is added; the take-up goes by its text, since 1.2 is no binary number."""
+    found = Ending.objects.filter(name__iexact=values["name"]).first()
+    return found or Ending.objects.create(
+        **values | {"take_up": Decimal(str(values["take_up"]))},
+        has_metal_or_button=values["name"] in BUTTONED_ENDINGS,
+    )
