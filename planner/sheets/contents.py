@@ -44,12 +44,13 @@ class SupplierOrder:
 
 @dataclass(frozen=True)
 class PurchaseSheet:
-    """What to buy, by supplier."""
+    """What to buy, by supplier; `notices` says what the plan could not provide for."""
 
     head: SheetHead
     currency: str
     suppliers: tuple[SupplierOrder, ...]
     cost: Decimal
+    notices: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -88,11 +89,12 @@ class ShadeCuts:
 
 @dataclass(frozen=True)
 class CuttingSheet:
-    """What to cut, skein by skein."""
+    """What to cut, skein by skein; `notices` says what the plan could not provide for."""
 
     head: SheetHead
     unit: str
     shades: tuple[ShadeCuts, ...]
+    notices: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)

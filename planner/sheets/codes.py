@@ -1,0 +1,109 @@
+"""The square code on a tag: small enough for a tag, coarse enough for a plain label printer.
+
+References
+----------
+ISO/IEC 18004, Information technology: QR code bar code symbology specification (side of
+17 + 4 x version modules; quiet zone of 4 modules on every side).
+"""
+
+from dataclasses import dataclass
+from functools import lru_cache
+
+import segno
+from reportlab.lib.colors import black, white
+
+from planner.sheets.paper import millimetres
+from planner.sheets.pen import Pen
+
+QUIET_MODULES = 4
+# Four dots of a 203 dpi printer, as a whole number of its dots.
+MODULE_PT = 4 * 72 / 203
+LEAST_SIDE_PT = millimetres(12)
+_HIGHEST_VERSION = 10
+
+
+class CodeTextError(ValueError):
+    """A text too long, or empty, for a code on a tag."""
+
+
+@dataclass(frozen=True)
+class Code:
+    """A code as runs of dark modules.
+
+    Parameters
+    ----------
+    modules
+        Modules along one side, without the quiet zone.
+    runs
+        (column, row from the top, length) of each run of dark modules in a row.
+    """
+
+    modules: int
+    runs: tuple[tuple[int, int, int], ...]
+
+    @property
+    def module_pt(self) -> float:
+        """Side of one module [pt]; larger than MODULE_PT only to reach the least width."""
+        return max(MODULE_PT, LEAST_SIDE_PT / self.modules)
+
+    @property
+    def side_pt(self) -> float:
+        """Side with the quiet zone [pt]."""
+        return (self.modules + 2 * QUIET_MODULES) * self.module_pt
+
+
+@lru_cache(maxsize=2048)
+def code_for(text: str) -> Code:
+    """Encode a text.
+
+    Raises
+    ------
+    CodeTextError
+        When the text is empty or needs a larger code than a tag has room for.
+    """
+    if not text:
+        raise CodeTextError("A tag's code needs a text: the address of the bracelet's page.")
+    try:
+        symbol = segno.make_qr(text, error="L", encoding="utf-8", boost_error=True)
+    except ValueError as reason:
+        raise CodeTextError(f"This text does not fit a code: {text[:40]!r}.") from reason
+    if int(symbol.version) > _HIGHEST_VERSION:
+        raise CodeTextError(
+            f"The address of a bracelet's page is too long for a tag ({len(text)} characters): "
+            "use a shorter site address."
+        )
+    rows = [bytes(row) for row in symbol.matrix]
+    return Code(len(rows), tuple(_runs(rows)))
+
+
+def _runs(rows: list[bytes]) -> list[tuple[int, int, int]]:
+    """Gather neighbouring dark modules of each row."""
+    found = []
+    for row_number, row in enumerate(rows):
+        column = 0
+        while column < len(row):
+            end = column
+            while end < len(row) and row[end]:
+                end += 1
+            if end > column:
+                found.append((column, row_number, end - column))
+            column = end + 1
+    return found
+
+
+def draw_code(pen: Pen, code: Code, right: float, top: float) -> None:
+    """Draw a code with its white quiet zone, its upper right corner at (right, top)."""
+    canvas, module = pen.canvas, code.module_pt
+    left, side = right - code.side_pt, code.side_pt
+    canvas.setFillColor(white)
+    canvas.rect(left, top - side, side, side, stroke=0, fill=1)
+    path = canvas.beginPath()
+    for column, row, length in code.runs:
+        path.rect(
+            left + (QUIET_MODULES + column) * module,
+            top - (QUIET_MODULES + row + 1) * module,
+            length * module,
+            module,
+        )
+    canvas.setFillColor(black)
+    canvas.drawPath(path, stroke=0, fill=1)
