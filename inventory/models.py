@@ -4,7 +4,7 @@ from decimal import Decimal
 
 from django.core.validators import MaxValueValidator, MinValueValidator, RegexValidator
 from django.db import models
-from django.db.models import F, Q, QuerySet, Sum
+from django.db.models import Count, Exists, OuterRef, Prefetch, Q, QuerySet, Sum
 from django.db.models.functions import Lower
 
 LONGEST_LENGTH_MM = 10_000_000
@@ -83,18 +83,35 @@ class Supplier(models.Model):
 
 class ShadeQuerySet(QuerySet["Shade"]):
     def for_shelf_page(self) -> "ShadeQuerySet":
+        """Adds `shelf_mm`, counts of each kind of thread, and `lots_on_shelf`."""
         on_shelf = Q(lots__pieces__removed_at__isnull=True)
-        return self.annotate(
-            shelf_mm=Sum("lots__pieces__length_mm", filter=on_shelf, default=0),
-        ).order_by(Lower("code"))
+        counts = {
+            f"{kind}_count": Count("lots__pieces", filter=on_shelf & Q(lots__pieces__kind=kind))
+            for kind in ShelfPiece.Kind.values
+        }
+        lots = Lot.objects.filter(
+            Exists(ShelfPiece.objects.on_shelf().filter(lot=OuterRef("pk")))
+        ).order_by("name")
+        return (
+            self.annotate(
+                shelf_mm=Sum("lots__pieces__length_mm", filter=on_shelf, default=0), **counts
+            )
+            .prefetch_related(Prefetch("lots", queryset=lots, to_attr="lots_on_shelf"))
+            .order_by(Lower("code"))
+        )
 
     def search(self, words: str) -> "ShadeQuerySet":
+        """Every word in the code, the name or a lot on the shelf.
+
+        Lots are searched in a subquery: a join would count a shade's thread once per lot found.
+        """
         found = self
         for word in words.split():
-            found = found.filter(
-                Q(code__icontains=word) | Q(name__icontains=word) | Q(lots__name__icontains=word)
+            in_lot = ShelfPiece.objects.on_shelf().filter(
+                lot__shade=OuterRef("pk"), lot__name__icontains=word
             )
-        return found.distinct()
+            found = found.filter(Q(code__icontains=word) | Q(name__icontains=word) | Exists(in_lot))
+        return found
 
 
 class Shade(models.Model):
@@ -118,6 +135,11 @@ class Shade(models.Model):
         return f"{self.code} {self.name}"
 
 
+class PutUpQuerySet(QuerySet["PutUp"]):
+    def for_put_up_page(self) -> "PutUpQuerySet":
+        return self.select_related("supplier").prefetch_related("shades")
+
+
 class PutUp(models.Model):
     """A way in which thread is sold: length and price, from one supplier."""
 
@@ -131,6 +153,8 @@ class PutUp(models.Model):
     )
     for_every_shade = models.BooleanField(default=True)
     shades = models.ManyToManyField(Shade, blank=True, related_name="own_put_ups")
+
+    objects = PutUpQuerySet.as_manager()
 
     class Meta:
         ordering = ["supplier__name", "length_mm", "name"]
@@ -167,7 +191,7 @@ class ShelfPieceQuerySet(QuerySet["ShelfPiece"]):
         return self.filter(removed_at__isnull=True)
 
     def for_shade_page(self) -> "ShelfPieceQuerySet":
-        return self.on_shelf().select_related("lot").order_by("lot__name", F("length_mm").desc())
+        return self.on_shelf().select_related("lot").order_by("lot__name", "-length_mm", "pk")
 
 
 class ShelfPiece(models.Model):

@@ -11,6 +11,7 @@ urlpatterns = [
     path("shades/<int:pk>/edit/", shades.shade_edit, name="shade_edit"),
     path("shades/<int:pk>/remove/", shades.shade_remove, name="shade_remove"),
     path("shades/<int:pk>/thread/", thread.thread_add, name="thread_add"),
+    path("shades/<int:pk>/thread/undo/", thread.thread_add_undo, name="thread_add_undo"),
     path("thread/<int:pk>/edit/", thread.thread_edit, name="thread_edit"),
     path("thread/<int:pk>/remove/", thread.thread_remove, name="thread_remove"),
     path("thread/<int:pk>/put-back/", thread.thread_put_back, name="thread_put_back"),

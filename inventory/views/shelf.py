@@ -1,6 +1,32 @@
+from django.core.paginator import Paginator
+from django.db.models import Count, Sum
 from django.http import HttpRequest, HttpResponse
 from django.shortcuts import render
+from django.views.decorators.http import require_safe
+from django.views.decorators.vary import vary_on_headers
+
+from inventory.forms import SearchForm
+from inventory.models import Shade, ShelfPiece
+
+SHADES_A_PAGE = 100
 
 
+@require_safe
+@vary_on_headers("HX-Request")
 def shelf(request: HttpRequest) -> HttpResponse:
-    return render(request, "base.html", {"section": "shelf"})
+    form = SearchForm(request.GET)
+    words = form.cleaned_data["q"] if form.is_valid() else ""
+    shades = Shade.objects.for_shelf_page().search(words)
+    context = {
+        "section": "shelf",
+        "form": form,
+        "words": words,
+        "page": Paginator(shades, SHADES_A_PAGE).get_page(request.GET.get("page")),
+    }
+    if request.htmx and not request.htmx.history_restore_request:
+        return render(request, "inventory/_shade_list.html", context)
+    context["shade_count"] = Shade.objects.count()
+    context["totals"] = ShelfPiece.objects.on_shelf().aggregate(
+        pieces=Count("pk"), length_mm=Sum("length_mm", default=0)
+    )
+    return render(request, "inventory/shelf.html", context)

@@ -1,0 +1,42 @@
+"""What the shelf's views have in common."""
+
+from collections.abc import Callable
+
+from django import forms
+from django.contrib import messages
+from django.db import IntegrityError, transaction
+from django.http import HttpRequest
+from django.template.loader import render_to_string
+
+from inventory.models import Workshop
+
+
+def habits() -> Workshop:
+    """The workshop's unit and currency; those of a new workshop where there is none yet."""
+    return Workshop.current() or Workshop()
+
+
+def say_with_undo(
+    request: HttpRequest,
+    text: str,
+    *,
+    undo_url: str,
+    values: list[tuple[str, object]] | None = None,
+) -> None:
+    """Tell what was done, with a button that posts `values` to `undo_url`."""
+    context = {"text": text, "undo_url": undo_url, "values": values or []}
+    # The rendered text is marked safe, and messages keep that mark.
+    messages.success(request, render_to_string("inventory/_undo.html", context, request))
+
+
+def saved(form: forms.BaseForm, save: Callable[[], object], *, field: str, problem: str) -> bool:
+    """Save a valid form; when somebody else took the name in the meantime, say so at `field`."""
+    if not form.is_valid():
+        return False
+    try:
+        with transaction.atomic():
+            save()
+    except IntegrityError:
+        form.add_error(field, problem)
+        return False
+    return True
