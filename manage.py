@@ -1,10 +1,16 @@
 #!/usr/bin/env python3
-"""Interim entry point."""
+"""Runs everything: `python3 manage.py start`, `python3 manage.py test`."""
 
-import os
+# This file must be readable by any Python, so that an old one can say that it is too old.
 import sys
 
-os.environ.setdefault("DJANGO_SETTINGS_MODULE", "planner.settings.local")
-from django.core.management import execute_from_command_line
+if sys.version_info < (3, 11):
+    sys.stderr.write(
+        "Flosswright needs Python 3.11 or newer; this is %d.%d.\n" % tuple(sys.version_info[:2])
+    )
+    sys.exit(2)
 
-execute_from_command_line(sys.argv)
+from planner.bootstrap import run
+
+if __name__ == "__main__":
+    run(sys.argv)

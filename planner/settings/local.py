@@ -1,9 +1,21 @@
-"""Settings of a workshop on one machine."""
+"""Settings of a workshop on one machine, as `manage.py start` runs it."""
+
+from django.utils.functional import SimpleLazyObject
 
 from planner.settings.base import *  # noqa: F403
-from planner.settings.base import BASE_DIR
+from planner.settings.base import DATA_DIR, env
+from planner.settings.databases import database_from_url
+from planner.workshop_folder import secret_key
 
-SECRET_KEY = "interim"
 DEBUG = False
-ALLOWED_HOSTS = ["127.0.0.1", "localhost", "testserver"]
-DATABASES = {"default": {"ENGINE": "django.db.backends.sqlite3", "NAME": BASE_DIR / ".workshop" / "workshop.sqlite3"}}
+# Read, or made, when something is first signed: `manage.py cut` must not leave a folder behind.
+SECRET_KEY = SimpleLazyObject(lambda: secret_key(DATA_DIR))
+# Other names are refused, so that a foreign web page cannot reach the workshop by a name of its own.
+ALLOWED_HOSTS = ["127.0.0.1", "localhost"]
+DATABASE_URL = env.str("DATABASE_URL", "")
+DATABASES = {
+    "default": database_from_url(DATABASE_URL)
+    if DATABASE_URL
+    else {**database_from_url("sqlite://"), "NAME": str(DATA_DIR / "workshop.sqlite3")}
+}
+WHITENOISE_USE_FINDERS = True
