@@ -195,6 +195,7 @@ class PlanShade(models.Model):
     bought_lower_bound = models.PositiveIntegerField()
     cost = models.DecimalField(max_digits=12, decimal_places=2)
     lower_bound = models.DecimalField(max_digits=12, decimal_places=2)
+    shelf = models.JSONField(default=list)
     unplaced = models.JSONField(default=list)
 
     class Meta:

@@ -7,7 +7,6 @@ from decimal import Decimal
 from typing import Any
 
 from patterns.cautions import cautions_for
-
 from planner.cutting import Opened
 from planner.planning.demand import Bracelet, ExplodedKind, ShadeName
 from planner.planning.netting import NettedShade, ShelfThread, ThreadOffer, pieces_by_shade
@@ -21,6 +20,7 @@ from planner.planning.snapshot import (
     SnapshotPurchase,
     SnapshotShade,
     SnapshotStock,
+    SnapshotThread,
 )
 
 KIND_WORDS = {"whole": "whole skein", "started": "started skein", "remnant": "remnant"}
@@ -148,6 +148,11 @@ def _shade(
         cost=result.cost,
         lower_bound=result.lower_bound,
         purchases=tuple(_purchase(offers[key], count) for key, count in result.bought),
+        shelf=tuple(
+            SnapshotThread(t.number, t.kind, t.lot_name, t.length_mm, t.reckoned_mm)
+            for t in threads.values()
+            if t.shade == netted.shade
+        ),
         stock=tuple(stock),
         unplaced=tuple(sorted(int(key) for key in result.unplaced)),
     )

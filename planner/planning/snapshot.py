@@ -87,6 +87,17 @@ class SnapshotStock:
 
 
 @dataclass(frozen=True)
+class SnapshotThread:
+    """A piece of thread that lay on the shelf, used or not."""
+
+    number: int
+    kind: str
+    lot_name: str
+    length_mm: int
+    reckoned_mm: int
+
+
+@dataclass(frozen=True)
 class SnapshotPurchase:
     """So many of one put-up."""
 
@@ -118,6 +129,7 @@ class SnapshotShade:
     cost: Decimal
     lower_bound: Decimal
     purchases: tuple[SnapshotPurchase, ...]
+    shelf: tuple[SnapshotThread, ...]
     stock: tuple[SnapshotStock, ...]
     unplaced: tuple[int, ...]
 

@@ -1,14 +1,45 @@
 """The sentences that say how good a plan is, the same on the page, the sheet and the shell."""
 
-from planner.planning.snapshot import Snapshot, SnapshotShade
+from collections.abc import Iterable
+from decimal import Decimal
+from typing import Protocol
+
+
+class ShadeResult(Protocol):
+    """What a sentence needs to know of one shade, saved or not."""
+
+    @property
+    def bought(self) -> int: ...
+
+    @property
+    def bought_lower_bound(self) -> int: ...
+
+    @property
+    def cost(self) -> Decimal: ...
+
+    @property
+    def lower_bound(self) -> Decimal: ...
+
+    @property
+    def unplaced(self) -> Iterable[int]: ...
+
+
+class PlanResult(Protocol):
+    """What a sentence needs to know of a plan."""
+
+    @property
+    def cost(self) -> Decimal: ...
+
+    @property
+    def lower_bound(self) -> Decimal: ...
 
 
 def skeins(count: int) -> str:
     return "1 skein" if count == 1 else f"{count} skeins"
 
 
-def proof_of_shade(shade: SnapshotShade) -> str:
-    """Say what is proven of the purchase of one shade; silent where nothing is bought."""
+def proof_of_shade(shade: ShadeResult) -> str:
+    """Say what is proven of the purchase of one shade."""
     if shade.unplaced:
         return "not enough thread, and nothing to buy it from"
     if shade.bought == 0:
@@ -20,12 +51,13 @@ def proof_of_shade(shade: SnapshotShade) -> str:
     return f"at least {shade.bought_lower_bound}; not proven to be the fewest"
 
 
-def proof_of_plan(snapshot: Snapshot) -> str:
+def proof_of_plan(plan: PlanResult, shades: Iterable[ShadeResult]) -> str:
     """Say what is proven of the whole purchase."""
-    if any(shade.unplaced for shade in snapshot.shades):
+    results = list(shades)
+    if any(shade.unplaced for shade in results):
         return "Some bracelets have no thread yet: see below."
-    if snapshot.cost == 0 and not any(shade.bought for shade in snapshot.shades):
+    if not any(shade.bought for shade in results):
         return "The shelf has enough for everything."
-    if snapshot.cost == snapshot.lower_bound:
+    if plan.cost == plan.lower_bound:
         return "Cheaper is impossible."
-    return "Not proven to be the cheapest: the open shades say how far off it can be at most."
+    return "Not proven to be the cheapest: each open shade says how many it needs at least."

@@ -7,9 +7,9 @@ from inventory.models import Workshop
 from planner.models import OrderLine
 from planner.planning.compose import compose
 from planner.planning.demand import explode
-from planner.planning.load import habits_of, load_orders, load_shelf, orders_stamp
 from planner.planning.netting import net
 from planner.planning.snapshot import Snapshot
+from planner.plans.load import habits_of, load_orders, load_shelf, orders_stamp
 
 
 class PlanError(ValueError):

@@ -5,11 +5,11 @@ import json
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
-from patterns.actions import cut_rule
-
 from inventory.models import PutUp, Shade, ShelfPiece, Workshop
+from patterns.actions import cut_rule
 from patterns.geometry import Gauge as GaugeCore
 from patterns.geometry import LengthError, rows_for
+from patterns.knots import DiagonalPattern
 from patterns.models import Gauge, KnottedLength
 from planner.models import OrderLine
 from planner.planning.demand import Kind, Order, ShadeName
@@ -64,11 +64,12 @@ def load_orders(lines: Sequence[OrderLine], workshop: Workshop) -> LoadedOrders:
     lengths = {
         (row.size_id, row.ending_id): row.knotted_length_mm for row in KnottedLength.objects.all()
     }
+    definitions = {line.pattern_id: line.pattern.definition for line in lines}
     orders: list[Order] = []
     problems: list[str] = []
     for row, line in enumerate(lines, start=1):
         try:
-            orders.append(_order(row, line, workshop, gauge, lengths))
+            orders.append(_order(row, line, definitions[line.pattern_id], workshop, gauge, lengths))
         except (LineProblem, LengthError) as problem:
             problems.append(f"Row {row}: {problem}")
     return LoadedOrders(tuple(orders), tuple(problems))
@@ -87,6 +88,7 @@ def _attach_colourways(lines: Sequence[OrderLine]) -> None:
 def _order(
     row: int,
     line: OrderLine,
+    pattern: DiagonalPattern,
     workshop: Workshop,
     gauge: GaugeCore,
     lengths: dict[tuple[int, int], int],
@@ -96,7 +98,6 @@ def _order(
         raise LineProblem(
             f"{line.size} has no knotted length for {line.ending}. Give it one under Sizes."
         )
-    pattern = line.pattern.definition
     shades = {choice.slot: choice.shade_id for choice in line.colourway.shades.all()}
     missing = sorted(set(pattern.slots) - set(shades))
     if missing:

@@ -1,0 +1,167 @@
+"""Every write of the planner that touches more than one model."""
+
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import replace
+from decimal import Decimal
+from typing import Any
+
+from django.db import transaction
+from django.db.models import Max
+from django.utils import timezone
+
+from inventory.models import Workshop
+from patterns.actions import load_defaults
+from planner.models import Batch, OrderDraft, OrderLine, Plan
+from planner.order_list.lines import GoodLine
+from planner.planning.snapshot import Snapshot
+from planner.plans.store import store_snapshot
+from planner.plans.work_out import PlanError, work_out_plan
+
+LINE_FIELDS = (
+    "for_whom",
+    "pattern_id",
+    "colourway_id",
+    "size_id",
+    "ending_id",
+    "quantity",
+    "due_date",
+    "note",
+)
+
+
+class WorkshopExists(ValueError):
+    """There is a workshop already; the text says so."""
+
+
+class BatchChanged(ValueError):
+    """Somebody saved the batch in the meantime; the text says what to do."""
+
+
+@transaction.atomic
+def start_workshop(
+    *,
+    name: str,
+    length_unit: str = "cm",
+    currency: str = "EUR",
+    paper: str = "A4",
+    rounding_step_mm: Decimal = Decimal(10),
+    safety_share: Decimal = Decimal("0.1"),
+    short_measure_share: Decimal = Decimal("0.02"),
+    keep_length_mm: int = 300,
+) -> Workshop:
+    """Make the workshop with the usual sizes, endings and gauge."""
+    if Workshop.current() is not None:
+        raise WorkshopExists("There is a workshop here already.")
+    workshop = Workshop.objects.create(
+        pk=1,
+        name=name,
+        length_unit=length_unit,
+        currency=currency,
+        paper=paper,
+        rounding_step_mm=rounding_step_mm,
+        safety_share=safety_share,
+        short_measure_share=short_measure_share,
+        keep_length_mm=keep_length_mm,
+    )
+    load_defaults()
+    return workshop
+
+
+def line_values(line: GoodLine) -> dict[str, Any]:
+    return {
+        "for_whom": line.for_whom,
+        "pattern_id": line.pattern_key,
+        "colourway_id": line.colourway_key,
+        "size_id": line.size_key,
+        "ending_id": line.ending_key,
+        "quantity": line.quantity,
+        "due_date": line.due_date,
+        "note": line.note,
+    }
+
+
+@transaction.atomic
+def save_lines(
+    *,
+    batch: Batch,
+    revision: int,
+    changed: Mapping[int, GoodLine],
+    added: Sequence[GoodLine],
+    removed: Iterable[int],
+) -> Batch:
+    """Save a page of the grid: all of it, or nothing where somebody else saved first."""
+    batch = _next_revision(batch, revision)
+    lines = {line.pk: line for line in batch.lines.filter(pk__in=changed)}
+    for pk, good in changed.items():
+        if pk not in lines:
+            raise BatchChanged("A row was removed in another window. Look through and save again.")
+        for name, value in line_values(good).items():
+            setattr(lines[pk], name, value)
+    OrderLine.objects.bulk_update(lines.values(), list(LINE_FIELDS), batch_size=200)
+    batch.lines.filter(pk__in=list(removed)).delete()
+    append_lines(batch=batch, good=added)
+    return batch
+
+
+def append_lines(*, batch: Batch, good: Sequence[GoodLine]) -> None:
+    last = batch.lines.aggregate(last=Max("position"))["last"] or 0
+    OrderLine.objects.bulk_create(
+        OrderLine(batch=batch, position=last + offset, **line_values(line))
+        for offset, line in enumerate(good, start=1)
+    )
+
+
+def _next_revision(batch: Batch, revision: int) -> Batch:
+    locked = Batch.objects.select_for_update().get(pk=batch.pk)
+    if locked.revision != revision:
+        raise BatchChanged(
+            "These orders were changed in another window since you opened them. "
+            "Your rows are still here: look them through and save again."
+        )
+    locked.revision += 1
+    locked.save(update_fields=["revision"])
+    return locked
+
+
+@transaction.atomic
+def confirm_draft(
+    *, draft: OrderDraft, good: Sequence[GoodLine], waiting: Sequence[dict[str, Any]]
+) -> Batch:
+    """Add the good rows of a list, all or none; rows that wait stay in the draft."""
+    locked = OrderDraft.objects.select_for_update().filter(pk=draft.pk).first()
+    if locked is None or locked.rows != draft.rows:
+        raise BatchChanged("That list was added or changed in another window.")
+    batch = Batch.objects.select_for_update().get(pk=draft.batch_id)
+    append_lines(batch=batch, good=good)
+    batch.revision += 1
+    batch.save(update_fields=["revision"])
+    if waiting:
+        draft.rows = list(waiting)
+        draft.notices = []
+        draft.save(update_fields=["rows", "notices"])
+    else:
+        draft.delete()
+    return batch
+
+
+def make_plan(*, batch: Batch, user: Any) -> Plan:
+    """Work out a plan outside any transaction, then store it in one."""
+    workshop = Workshop.current()
+    if workshop is None:
+        raise PlanError("Start a workshop first.")
+    snapshot = work_out_plan(
+        lines=list(batch.lines.for_grid()),
+        workshop=workshop,
+        batch_name=batch.name,
+        market_date=batch.market_date,
+        plan_number=1,
+        today=timezone.localdate(),
+    )
+    return _store_numbered(snapshot, batch, user)
+
+
+@transaction.atomic
+def _store_numbered(snapshot: Snapshot, batch: Batch, user: Any) -> Plan:
+    Batch.objects.select_for_update().get(pk=batch.pk)
+    last = batch.plans.aggregate(last=Max("number"))["last"] or 0
+    return store_snapshot(replace(snapshot, plan_number=last + 1), batch=batch, user=user)

@@ -1,0 +1,29 @@
+"""What can be ordered now, for reading orders and for the grid's suggestions."""
+
+from patterns.models import Ending, Pattern, Size
+from planner.order_list.catalogue import Catalogue, Choice, PatternChoice, SizeChoice
+
+
+def load_catalogue() -> Catalogue:
+    """Four queries, however much there is."""
+    patterns = Pattern.objects.prefetch_related("colourways").order_by("name")
+    endings = list(Ending.objects.all())
+    default = next((ending.pk for ending in endings if ending.is_default), None)
+    return Catalogue(
+        patterns=tuple(
+            PatternChoice(
+                pattern.pk,
+                pattern.name,
+                tuple(
+                    Choice(colourway.pk, colourway.name) for colourway in pattern.colourways.all()
+                ),
+            )
+            for pattern in patterns
+        ),
+        sizes=tuple(
+            SizeChoice(size.pk, size.name, size.wrist_min_mm, size.wrist_max_mm)
+            for size in Size.objects.all()
+        ),
+        endings=tuple(Choice(ending.pk, ending.name) for ending in endings),
+        default_ending_key=default,
+    )

@@ -1,0 +1,188 @@
+"""Fill the sheets' plain data from a snapshot, saved or not."""
+
+from collections import defaultdict
+from collections.abc import Callable
+from datetime import date
+from decimal import Decimal
+
+from patterns.drawing import Drawing, draw_band
+from patterns.pattern_file import read_pattern
+from planner.planning.snapshot import Snapshot, SnapshotKind, SnapshotShade, SnapshotStock
+from planner.planning.wording import proof_of_shade
+from planner.sheets.contents import (
+    CuttingSheet,
+    PurchaseRow,
+    PurchaseSheet,
+    ShadeCuts,
+    SheetCut,
+    SheetHead,
+    StockCut,
+    SupplierOrder,
+    Tag,
+    TagPiece,
+    TagSheet,
+)
+
+ROWS_DRAWN_ON_A_TAG = 40
+
+
+def sheet_head(snapshot: Snapshot) -> SheetHead:
+    return SheetHead(
+        workshop=snapshot.habits.workshop_name,
+        batch=snapshot.batch_name,
+        market_date=snapshot.market_date,
+        plan_label=f"Plan {snapshot.plan_number}",
+        plan_date=snapshot.plan_date,
+    )
+
+
+def purchase_sheet(snapshot: Snapshot) -> PurchaseSheet:
+    rows: dict[str, list[PurchaseRow]] = defaultdict(list)
+    for shade in snapshot.shades:
+        for item in shade.purchases:
+            rows[item.supplier_name].append(
+                PurchaseRow(
+                    shade_code=shade.code,
+                    shade_name=shade.name,
+                    shade_colour=shade.colour,
+                    put_up=item.put_up_name,
+                    length_mm=item.length_mm,
+                    count=item.count,
+                    unit_price=item.unit_price,
+                    cost=item.cost,
+                    proof=proof_of_shade(shade),
+                )
+            )
+    return PurchaseSheet(
+        head=sheet_head(snapshot),
+        currency=snapshot.habits.currency,
+        suppliers=tuple(
+            SupplierOrder(
+                supplier=supplier,
+                rows=tuple(found),
+                cost=sum((row.cost for row in found), Decimal(0)),
+            )
+            for supplier, found in sorted(rows.items())
+        ),
+        cost=snapshot.cost,
+    )
+
+
+def cutting_sheet(snapshot: Snapshot) -> CuttingSheet:
+    kind_of = {bracelet.number: bracelet.kind_index for bracelet in snapshot.bracelets}
+
+    def cut_on_sheet(tag_number: int, piece_index: int) -> SheetCut:
+        piece = snapshot.kinds[kind_of[tag_number]].pieces[piece_index]
+        return SheetCut(
+            tag_number=tag_number,
+            strands=piece.strands,
+            slot=piece.slot,
+            cut_mm=piece.cut_mm,
+            fold_mm=piece.fold_mm,
+            is_sliding=piece.is_sliding,
+        )
+
+    return CuttingSheet(
+        head=sheet_head(snapshot),
+        unit=snapshot.habits.length_unit,
+        shades=tuple(
+            ShadeCuts(
+                shade_code=shade.code,
+                shade_name=shade.name,
+                shade_colour=shade.colour,
+                stock=tuple(_stock_cut(stock, cut_on_sheet) for stock in shade.stock),
+            )
+            for shade in snapshot.shades
+            if shade.stock
+        ),
+    )
+
+
+def _stock_cut(stock: SnapshotStock, cut_on_sheet: Callable[[int, int], SheetCut]) -> StockCut:
+    source = f"{stock.source}, lot {stock.lot_name}" if stock.lot_name else stock.source
+    return StockCut(
+        source=source,
+        is_new=stock.is_new,
+        reckoned_mm=stock.reckoned_mm,
+        cuts=tuple(cut_on_sheet(cut.tag_number, cut.piece_index) for cut in stock.cuts),
+        left_mm=stock.left_mm,
+        goes_back=stock.goes_back,
+    )
+
+
+def tag_sheet(snapshot: Snapshot, *, address: str) -> TagSheet:
+    """Return all tags; `address` is where the workshop answers, for the codes."""
+    shades = {shade.code: shade for shade in snapshot.shades}
+    drawings = [kind_drawing(kind) for kind in snapshot.kinds]
+    piece_lists = [_tag_pieces(kind, shades) for kind in snapshot.kinds]
+    return TagSheet(
+        head=sheet_head(snapshot),
+        unit=snapshot.habits.length_unit,
+        tags=tuple(
+            _tag(
+                snapshot.kinds[bracelet.kind_index],
+                drawings[bracelet.kind_index],
+                piece_lists[bracelet.kind_index],
+                number=bracelet.number,
+                code_text=_code_text(bracelet.key, bracelet.number, address),
+                for_whom=bracelet.for_whom,
+                due=bracelet.due_date,
+            )
+            for bracelet in snapshot.bracelets
+        ),
+    )
+
+
+def kind_drawing(kind: SnapshotKind) -> Drawing:
+    pattern = read_pattern(kind.pattern_text)
+    rows = min(kind.rows, ROWS_DRAWN_ON_A_TAG)
+    return draw_band(pattern, rows, kind.colours, layout="horizontal")
+
+
+def _code_text(key: int | None, number: int, address: str) -> str:
+    if key is None:
+        return f"tag {number} of a plan that was not saved"
+    return f"{address.rstrip('/')}/b/{key}/"
+
+
+def _tag_pieces(kind: SnapshotKind, shades: dict[str, SnapshotShade]) -> tuple[TagPiece, ...]:
+    return tuple(
+        TagPiece(
+            strands=piece.strands,
+            slot=piece.slot,
+            shade_code=piece.shade_code,
+            shade_name=shades[piece.shade_code].name,
+            shade_colour=shades[piece.shade_code].colour,
+            cut_mm=piece.cut_mm,
+            fold_mm=piece.fold_mm,
+            is_sliding=piece.is_sliding,
+        )
+        for piece in kind.pieces
+    )
+
+
+def _tag(
+    kind: SnapshotKind,
+    drawing: Drawing,
+    pieces: tuple[TagPiece, ...],
+    *,
+    number: int,
+    code_text: str,
+    for_whom: str,
+    due: date | None,
+) -> Tag:
+    return Tag(
+        number=number,
+        code_text=code_text,
+        pattern=kind.pattern_name,
+        colourway=kind.colourway_name,
+        size=kind.size_name,
+        ending=kind.ending_name,
+        for_whom=for_whom,
+        due=due,
+        pieces=pieces,
+        rows=kind.rows,
+        knotted_length_mm=kind.knotted_length_mm,
+        drawing=drawing,
+        cautions=kind.cautions,
+    )

@@ -1,0 +1,137 @@
+"""What the pages of a plan show: the answer, and how each number was made."""
+
+from collections import Counter, defaultdict
+from typing import Any
+
+from django.utils import timezone
+
+from inventory.models import Workshop
+from patterns.drawing import to_svg
+from patterns.geometry import Gauge
+from planner.models import Plan, PlanBracelet, PlanPiece, PlanShade, PlanStock
+from planner.planning.sheet_contents import kind_drawing
+from planner.planning.wording import proof_of_plan, proof_of_shade, skeins
+from planner.plans.bars import stock_bar
+from planner.plans.load import load_orders, load_shelf, orders_stamp
+from planner.plans.store import read_habits, read_kind
+
+
+def plan_page(plan: Plan) -> dict[str, Any]:
+    shades = list(plan.shades.prefetch_related("purchases"))
+    shelf_changed, orders_changed = what_changed(plan, shades)
+    return {
+        **plan_context(plan),
+        "shades": [{"row": shade, "proof": proof_of_shade(shade)} for shade in shades],
+        "bought": sum(shade.bought for shade in shades),
+        "bought_words": skeins(sum(shade.bought for shade in shades)),
+        "proof": proof_of_plan(plan, shades),
+        "unplaced": [shade for shade in shades if shade.unplaced],
+        "shelf_changed": shelf_changed,
+        "orders_changed": orders_changed,
+        "other_paper": "letter" if plan.workshop["paper"] == "A4" else "a4",
+        "other_plans": plan.batch.plans.exclude(pk=plan.pk)[:10],
+    }
+
+
+def plan_context(plan: Plan) -> dict[str, Any]:
+    """What every page of a plan needs; unit and currency are those of the snapshot."""
+    habits = read_habits(plan)
+    return {
+        "plan": plan,
+        "habits": habits,
+        "length_unit": habits.length_unit,
+        "currency": habits.currency,
+        "section": "orders",
+        "today": timezone.localdate(),
+    }
+
+
+def what_changed(plan: Plan, shades: list[PlanShade]) -> tuple[bool, bool]:
+    """Tell whether the shelf (or what can be bought), and the orders, differ from the plan's."""
+    workshop = Workshop.current()
+    if workshop is None:
+        return True, True
+    shelf = load_shelf([shade.shade_id_then for shade in shades], workshop)
+    orders = load_orders(list(plan.batch.lines.for_grid()), workshop).orders
+    return shelf.stamp != plan.shelf_stamp, orders_stamp(orders) != plan.orders_stamp
+
+
+def shade_page(shade: PlanShade) -> dict[str, Any]:
+    stock = list(shade.stock.all())
+    cuts = _cuts_by_stock(shade)
+    longest_mm = max((row.reckoned_mm for row in stock), default=1)
+    opened = {row.shelf_piece_number for row in stock}
+    return {
+        **plan_context(shade.plan),
+        "shade": shade,
+        "proof": proof_of_shade(shade),
+        "lengths": _need_by_length(shade),
+        "shelf": [{**thread, "opened": thread["number"] in opened} for thread in shade.shelf],
+        "purchases": shade.purchases.all(),
+        "stock": [_stock_row(row, cuts[row.pk], longest_mm, shade) for row in stock],
+        "back_mm": sum(row.left_mm for row in stock if row.goes_back),
+        "waste_mm": sum(row.left_mm for row in stock if not row.goes_back),
+        "new_mm": sum(row.reckoned_mm for row in stock if row.is_new),
+        "untouched_mm": sum(
+            thread["reckoned_mm"] for thread in shade.shelf if thread["number"] not in opened
+        ),
+    }
+
+
+def _cuts_by_stock(shade: PlanShade) -> dict[int, list[PlanPiece]]:
+    cuts: dict[int, list[PlanPiece]] = defaultdict(list)
+    pieces = shade.pieces.filter(stock__isnull=False).select_related("bracelet")
+    for piece in pieces.order_by("stock_id", "cut_position"):
+        assert piece.stock_id is not None
+        cuts[piece.stock_id].append(piece)
+    return cuts
+
+
+def _need_by_length(shade: PlanShade) -> list[dict[str, int]]:
+    counts = Counter(shade.pieces.values_list("cut_mm", flat=True))
+    return [
+        {"cut_mm": cut_mm, "count": count, "sum_mm": cut_mm * count}
+        for cut_mm, count in sorted(counts.items(), reverse=True)
+    ]
+
+
+def _stock_row(
+    row: PlanStock, cuts: list[PlanPiece], longest_mm: int, shade: PlanShade
+) -> dict[str, Any]:
+    return {
+        "row": row,
+        "cuts": cuts,
+        "bar": stock_bar(
+            title=f"{row.source}: {len(cuts)} cuts",
+            colour=shade.colour,
+            length_mm=row.reckoned_mm,
+            scale_mm=longest_mm,
+            segments=[(str(piece.bracelet.number), piece.cut_mm) for piece in cuts],
+        ),
+    }
+
+
+def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
+    kind = read_kind(bracelet.kind)
+    making = kind.making
+    gauge = Gauge(**making["gauge"])
+    strands = {strand["strand"]: strand for strand in making["strands"]}
+    pieces = [
+        {
+            "row": piece,
+            "shade": piece.shade,
+            "strands": [strands[number] for number in piece.strands],
+            "ends_mm": making["ends_mm"][piece.index],
+        }
+        for piece in bracelet.pieces.all()
+    ]
+    return {
+        **plan_context(bracelet.plan),
+        "bracelet": bracelet,
+        "kind": kind,
+        "pieces": pieces,
+        "gauge": gauge,
+        "safety_share": making["safety_share"],
+        "rounding_step_mm": making["rounding_step_mm"],
+        "drawing": to_svg(kind_drawing(kind), title=f"{kind.pattern_name} as it looks when tied"),
+    }
