@@ -125,6 +125,42 @@ def _listed(words: list[str]) -> str:
     return f"{', '.join(words[:-1])} and {words[-1]}" if len(words) > 1 else words[0]
 
 
+def set_gauge(*, gauge: Gauge) -> Gauge:
+    """The first one becomes the default."""
+    gauge.is_default = gauge.is_default or not Gauge.objects.filter(is_default=True).exists()
+    _save_once(gauge, f"A gauge called {gauge.name} is there already. Choose another name.")
+    return gauge
+
+
+@transaction.atomic
+def set_ending(*, ending: Ending, lengths_like: Ending | None = None) -> Ending:
+    """The first one becomes the default; a new one may take its knotted lengths from another."""
+    ending.is_default = ending.is_default or not Ending.objects.filter(is_default=True).exists()
+    _save_once(ending, f"An ending called {ending.name} is there already. Choose another name.")
+    if lengths_like is not None:
+        for row in lengths_like.knotted_lengths.all():
+            KnottedLength.objects.get_or_create(
+                size_id=row.size_id,
+                ending=ending,
+                defaults={"knotted_length_mm": row.knotted_length_mm},
+            )
+    return ending
+
+
+@transaction.atomic
+def set_size(*, size: Size, knotted_lengths_mm: Mapping[Ending, int | None]) -> Size:
+    """An ending without a length is one that this size is never made with."""
+    _save_once(size, f"A size called {size.name} is there already. Choose another name.")
+    for ending, length_mm in knotted_lengths_mm.items():
+        if length_mm is None:
+            KnottedLength.objects.filter(size=size, ending=ending).delete()
+        else:
+            KnottedLength.objects.update_or_create(
+                size=size, ending=ending, defaults={"knotted_length_mm": length_mm}
+            )
+    return size
+
+
 @transaction.atomic
 def set_default_gauge(*, gauge: Gauge) -> Gauge:
     Gauge.objects.filter(is_default=True).update(is_default=False)

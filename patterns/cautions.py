@@ -5,7 +5,10 @@ _CHILD = (
     "Take off for sleep, sport, machines and playgrounds.",
     "Rules differ by country: check before you sell to children.",
 )
-_METAL_OR_BUTTON = ("Metal parts: ask your supplier for nickel and lead papers.",)
+_METAL_OR_BUTTON = (
+    "Pull at every button and bead before you sell: it must hold.",
+    "Metal parts: ask your supplier for nickel and lead papers.",
+)
 _ALWAYS = ("Colours may run when wet.",)
 
 

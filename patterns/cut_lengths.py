@@ -187,10 +187,10 @@ def pieces_for(table: StrandTable, ending: Ending, rule: CutRule) -> tuple[Piece
     Notes
     -----
     Alone: cut = knotted * (1 + safety) + start + end, rounded up to the step.
-    Folded: each half = knotted * (1 + safety) + end + half the loop, in whole millimetres
-    because the fold is measured; cut = both halves, rounded up to the step. Within a slot
-    the longest strand goes with the shortest, so that pieces come out even; of an odd
-    number the longest is cut alone.
+    Folded: each half = knotted * (1 + safety) + end + half the loop; cut = both halves,
+    rounded up to the step, and a step more where no whole millimetre to fold at leaves both
+    enough. Within a slot the longest strand goes with the shortest, so that pieces come out
+    even; of an odd number the longest is cut alone.
     """
     pieces = []
     for group in _cut_together(table.strands, folded=ending.start == "folded"):
@@ -239,14 +239,16 @@ def _folded_piece(
     longer: StrandLength, shorter: StrandLength, ending: Ending, rule: CutRule
 ) -> Piece:
     half_end = ending.end_allowance_mm + Fraction(ending.fold_loop_mm, 2)
-    first_mm = ceil(rule.with_safety_mm(longer.knotted_mm) + half_end)
-    second_mm = ceil(rule.with_safety_mm(shorter.knotted_mm) + half_end)
-    cut_mm = rule.round_up_mm(first_mm + second_mm)
+    first = rule.with_safety_mm(longer.knotted_mm) + half_end
+    second = rule.with_safety_mm(shorter.knotted_mm) + half_end
+    cut_mm = rule.round_up_mm(first + second)
+    if ceil(first) + ceil(second) > cut_mm:  # no whole millimetre to fold at
+        cut_mm = rule.round_up_mm(ceil(first) + ceil(second))
     return Piece(
         slot=longer.slot,
         strands=(longer.strand, shorter.strand),
         cut_mm=cut_mm,
-        fold_mm=_fold_point_mm(first_mm, cut_mm - second_mm, rule.rounding_step_mm),
+        fold_mm=_fold_point_mm(ceil(first), cut_mm - ceil(second), rule.rounding_step_mm),
         knotted_mm=(longer.knotted_mm, shorter.knotted_mm),
         ends_mm=2 * ending.end_allowance_mm + ending.fold_loop_mm,
     )

@@ -72,7 +72,7 @@ DEFAULT_ENDINGS: tuple[Ending, ...] = (
 
 # The closure of each ending decides how the knotted length follows from the wrist.
 _TIED_ENDINGS = ("Loose ties", "Plaited ties", "Folded start, plaited end", "Sliding closure")
-_BUTTONED_ENDINGS = ("Loop and button",)
+BUTTONED_ENDINGS = ("Loop and button",)
 # Common practice, no source: a tied band is 10 to 25 mm shorter than the wrist. Over a
 # range of 15 mm, the smallest wrist less 10 mm meets both ends exactly.
 _SHORTER_THAN_SMALLEST_MM = 10
@@ -122,7 +122,7 @@ def _size(name: str, wrist_min_mm: int, *, is_child: bool = False) -> SizeDefaul
         is_child=is_child,
         knotted_length_mm=(
             *((ending, tied_mm) for ending in _TIED_ENDINGS),
-            *((ending, buttoned_mm) for ending in _BUTTONED_ENDINGS),
+            *((ending, buttoned_mm) for ending in BUTTONED_ENDINGS),
         ),
     )
 

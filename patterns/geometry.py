@@ -30,7 +30,7 @@ class Gauge:
     loop_ratio : centre-line diameter of a loop round the base strand [thread diameters],
         0.5 to 5; the maker's tightness.
     idle_run : thread a strand runs along the edge in a row it sits out [thread diameters],
-        0 to 5; sqrt 2 is the straight chord.
+        0 to 10; sqrt 2 is the straight chord.
 
     Raises
     ------
@@ -51,7 +51,7 @@ class Gauge:
     def __post_init__(self) -> None:
         _check_range("thread diameter", self.thread_diameter_mm, 0.1, 10, " mm")
         _check_range("loop ratio", self.loop_ratio, 0.5, 5, "")
-        _check_range("idle run", self.idle_run, 0, 5, " thread diameters")
+        _check_range("idle run", self.idle_run, 0, 10, " thread diameters")
 
     @property
     def knotting_mm(self) -> float:

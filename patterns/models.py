@@ -165,6 +165,12 @@ class PatternQuerySet(QuerySet["Pattern"]):
     def for_library_page(self) -> "PatternQuerySet":
         return self.prefetch_related("colourways__shades__shade")
 
+    def search(self, words: str) -> "PatternQuerySet":
+        found = self
+        for word in words.split():
+            found = found.filter(name__icontains=word)
+        return found
+
 
 class Pattern(models.Model):
     """A pattern as its own text; `definition` reads it for the cores."""

@@ -99,7 +99,7 @@ def _gauge(options: dict[str, Any]) -> Gauge:
         given["thread_diameter_mm"] = float(_millimetres("--thread", options["thread"]))
     for option in ("loop_ratio", "idle_run"):
         if options[option] is not None:
-            given[option] = _number(option.replace("_", " "), options[option])
+            given[option] = _number("--" + option.replace("_", "-"), options[option])
     return Gauge(**given)
 
 
@@ -110,11 +110,12 @@ def _millimetres(option: str, text: str) -> Fraction:
         raise Error(f"{option}: {error}") from error
 
 
-def _number(name: str, text: str) -> float:
+def _number(option: str, text: str) -> float:
+    name = option.strip("-").replace("-", " ")
     try:
-        return float(parse_decimal(text, name=name, minimum=0, maximum=5))
+        return float(parse_decimal(text, name=name, minimum=0, maximum=10))
     except MeasureError as error:
-        raise Error(str(error)) from error
+        raise Error(f"{option}: {error}") from error
 
 
 def _as_json(table: StrandTable) -> str:

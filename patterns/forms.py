@@ -1,0 +1,377 @@
+"""What makers type about patterns, colourways, sizes, endings and gauges."""
+
+from collections.abc import Iterable
+from typing import Any
+
+from django import forms
+from django.core.exceptions import ValidationError
+from django.core.files.uploadedfile import UploadedFile
+from django.http import QueryDict
+
+from inventory.fields import LengthField, LineField
+from inventory.models import Shade, Workshop
+from patterns.fields import BlockField, NumberField
+from patterns.knots import MAX_NAME_LENGTH, DiagonalPattern, Finish, PatternError
+from patterns.models import Colourway, Ending, Gauge, Pattern, Size
+from patterns.pattern_file import MAX_FILE_BYTES, read_pattern, write_pattern
+
+FINISH_CHOICES = [
+    (Finish.EXACT.value, "after the rows that the length takes"),
+    (Finish.NEAREST.value, "after whole repeats: the nearest number"),
+    (Finish.AT_LEAST.value, "after whole repeats: at least the length"),
+    (Finish.AT_MOST.value, "after whole repeats: at most the length"),
+]
+
+
+class PatternFileForm(forms.Form):
+    """A pattern file: its text pasted, or the file itself."""
+
+    text = BlockField(
+        required=False,
+        label="Paste the text of a pattern file",
+        widget=forms.Textarea(attrs={"class": "code", "rows": 12, "spellcheck": "false"}),
+    )
+    file = forms.FileField(
+        required=False,
+        label="Or choose the file",
+        help_text=f"A text file that ends in .toml, at most {MAX_FILE_BYTES // 1024} KB.",
+        widget=forms.FileInput(attrs={"accept": ".toml,text/plain"}),
+        allow_empty_file=True,
+    )
+
+    def clean(self) -> dict[str, Any]:
+        cleaned = super().clean() or self.cleaned_data
+        if self.errors:
+            return cleaned
+        upload = cleaned.get("file")
+        pasted = cleaned.get("text", "")
+        if upload and pasted.strip():
+            raise ValidationError("Paste the text or choose a file, not both.")
+        if not upload and not pasted.strip():
+            raise ValidationError("Paste the text of a pattern file, or choose one.")
+        text = self._uploaded_text(upload) if upload else pasted
+        if text is not None:
+            _read_into(self, "text", text)
+        return cleaned
+
+    def _uploaded_text(self, upload: UploadedFile) -> str | None:
+        try:
+            text = BlockField().clean(_decoded(upload))
+        except ValidationError as error:
+            self.add_error("file", "The file is empty." if error.code == "required" else error)  # type: ignore[attr-defined]
+            return None
+        self._show_in_box(text)
+        return text
+
+    def _show_in_box(self, text: str) -> None:
+        """A file that holds a mistake stands in the box, to be put right there."""
+        if isinstance(self.data, QueryDict):
+            self.data = self.data.copy()
+            self.data["text"] = text
+
+
+def _decoded(upload: UploadedFile) -> str:
+    if (upload.size or 0) > MAX_FILE_BYTES:
+        raise ValidationError(
+            f"The file is larger than {MAX_FILE_BYTES // 1024} KB; no pattern is. Choose another."
+        )
+    try:
+        return upload.read().decode("utf-8-sig")
+    except UnicodeDecodeError:
+        raise ValidationError(
+            "This is not a text file in UTF-8. Save it so, or paste its text."
+        ) from None
+
+
+def _read_into(form: forms.Form, field: str, text: str) -> None:
+    try:
+        form.cleaned_data["definition"] = read_pattern(text)
+    except PatternError as error:
+        form.add_error(field, str(error))
+    form.cleaned_data["pattern_text"] = text
+
+
+class PatternEditForm(forms.Form):
+    text = BlockField(
+        label="The text of the pattern",
+        widget=forms.Textarea(attrs={"class": "code", "rows": 20, "spellcheck": "false"}),
+    )
+
+    def clean(self) -> dict[str, Any]:
+        cleaned = super().clean() or self.cleaned_data
+        if "text" in cleaned:
+            _read_into(self, "text", cleaned["text"])
+        return cleaned
+
+
+class PatternRowsForm(forms.Form):
+    """A pattern typed by hand; it becomes the same text as a file holds."""
+
+    name = LineField(label="Name", max_length=MAX_NAME_LENGTH)
+    strands = BlockField(
+        label="Strands, left to right",
+        help_text="One letter a strand; equal letters are one colour. Six strands of three colours: A A B B C C",
+        widget=forms.TextInput(
+            attrs={"class": "code", "autocomplete": "off", "spellcheck": "false"}
+        ),
+    )
+    rows = BlockField(
+        label="Rows of one repeat",
+        help_text=(
+            "One line a row, a space between knots, an even number of rows. The first row pairs strands"
+            " 1-2, 3-4, …; the second 2-3, 4-5, …; and so on in turn."
+        ),
+        widget=forms.Textarea(attrs={"class": "code", "rows": 10, "spellcheck": "false"}),
+    )
+    finish = forms.ChoiceField(label="The band ends", choices=FINISH_CHOICES)
+
+    def clean(self) -> dict[str, Any]:
+        cleaned = super().clean() or self.cleaned_data
+        if not self.errors:
+            _read_into(self, "rows", _as_file(cleaned))
+        if "definition" in cleaned:
+            cleaned["pattern_text"] = write_pattern(cleaned["definition"])
+        return cleaned
+
+
+def _as_file(cleaned: dict[str, Any]) -> str:
+    quoted = {key: cleaned[key].replace("\\", "\\\\").replace('"', '\\"') for key in cleaned}
+    return (
+        f'name = "{quoted["name"]}"\ntechnique = "diagonal"\n'
+        f'strands = """\n{quoted["strands"]}"""\n'
+        f'rows = """\n{quoted["rows"]}"""\nfinish = "{quoted["finish"]}"\n'
+    )
+
+
+class ColourwayForm(forms.Form):
+    """A shade for every slot; the shades are fetched once for all the choices."""
+
+    name = LineField(label="Name of the colourway", max_length=60)
+
+    def __init__(
+        self,
+        data: Any = None,
+        *,
+        definition: DiagonalPattern,
+        shades: Iterable[Shade],
+        **kwargs: Any,
+    ) -> None:
+        super().__init__(data, **kwargs)
+        self.shades = {str(shade.pk): shade for shade in shades}
+        self.slots = sorted(set(definition.slots))
+        choices = [("", "Choose a shade")] + [(pk, str(shade)) for pk, shade in self.shades.items()]
+        for slot in self.slots:
+            strands = [str(n) for n, s in enumerate(definition.slots, start=1) if s == slot]
+            self.fields[f"slot_{slot}"] = forms.ChoiceField(
+                choices=choices,
+                label=f"{slot}: strand{'s' if len(strands) > 1 else ''} {', '.join(strands)}",
+                error_messages={
+                    "required": f"Choose a shade for {slot}.",
+                    "invalid_choice": "That shade is not on your list. Choose another.",
+                },
+            )
+
+    @property
+    def slot_fields(self) -> list[forms.BoundField]:
+        return [self[f"slot_{slot}"] for slot in self.slots]
+
+    @property
+    def chosen(self) -> dict[str, Shade]:
+        """What is chosen so far; the preview shows it while the rest is open."""
+        values = {slot: str(self[f"slot_{slot}"].value()) for slot in self.slots}
+        return {slot: self.shades[pk] for slot, pk in values.items() if pk in self.shades}
+
+
+class StrandChoiceForm(forms.Form):
+    """For which bracelet the strands are worked out; what is not said is the default."""
+
+    size = forms.ModelChoiceField(Size.objects.all(), empty_label=None)
+    ending = forms.ModelChoiceField(Ending.objects.all(), empty_label=None)
+    gauge = forms.ModelChoiceField(Gauge.objects.all(), empty_label=None)
+    colourway = forms.ModelChoiceField(
+        Colourway.objects.none(), required=False, empty_label="undyed thread"
+    )
+
+    def __init__(self, data: QueryDict, *, pattern: Pattern) -> None:
+        self.sizes = list(Size.objects.all())
+        first_colourway = next(iter(pattern.colourways.all()), None)
+        defaults = {
+            "size": self.sizes[len(self.sizes) // 2] if self.sizes else None,
+            "ending": Ending.objects.filter(is_default=True).first(),
+            "gauge": Gauge.objects.filter(is_default=True).first(),
+            "colourway": first_colourway,
+        }
+        typed = {name: data[name] for name in defaults if name in data}
+        super().__init__({name: thing and thing.pk for name, thing in defaults.items()} | typed)
+        self.fields["colourway"].queryset = pattern.colourways.all()  # type: ignore[attr-defined]
+        for field in self.fields.values():
+            field.error_messages["invalid_choice"] = "That is not there any more. Choose another."
+
+
+def workshop_unit() -> str:
+    return (Workshop.current() or Workshop()).length_unit
+
+
+class NamedForm(forms.ModelForm):
+    """A model form whose name is taken once, whatever its capitals."""
+
+    def clean_name(self) -> str:
+        name: str = self.cleaned_data["name"]
+        others = self._meta.model._default_manager.exclude(pk=self.instance.pk)
+        if others.filter(name__iexact=name).exists():
+            raise ValidationError(f"The name {name} is taken. Choose another.")
+        return name
+
+
+class GaugeForm(NamedForm):
+    name = LineField(label="Name", max_length=80)
+    thread_diameter_mm = NumberField(
+        label="Thread diameter, in mm",
+        name="thread diameter",
+        minimum="0.1",
+        maximum="10",
+        places=3,
+        help_text="As it lies in the knot: six-strand floss about 0.9 to 1 (common practice).",
+    )
+    loop_ratio = NumberField(
+        label="Loop ratio",
+        name="loop ratio",
+        minimum="0.5",
+        maximum="5",
+        places=3,
+        help_text="How wide your loops lie round the base strand, in thread diameters. 1.5 lies close; larger is looser.",
+    )
+    idle_run = NumberField(
+        label="Idle run, in thread diameters",
+        name="idle run",
+        minimum="0",
+        maximum="10",
+        places=3,
+        required=False,
+        help_text="Thread along the edge in a row that a strand sits out. Leave it empty for the straight run, 1.414.",
+    )
+
+    class Meta:
+        model = Gauge
+        fields = ["name", "thread_diameter_mm", "loop_ratio", "idle_run"]
+
+
+class SizeForm(NamedForm):
+    """A size with its knotted length for every ending, as fields `knotted_<ending>`."""
+
+    name = LineField(label="Name", max_length=40)
+
+    class Meta:
+        model = Size
+        fields = ["name", "wrist_min_mm", "wrist_max_mm", "is_child"]
+        labels = {"is_child": "A child's size: its tags carry the cautions for children"}
+
+    def __init__(self, *args: Any, unit: str, **kwargs: Any) -> None:
+        super().__init__(*args, **kwargs)
+        wrist = {"unit": unit, "minimum_mm": 50, "maximum_mm": 400}
+        self.fields["wrist_min_mm"] = LengthField(label="Smallest wrist", **wrist)
+        self.fields["wrist_max_mm"] = LengthField(label="Largest wrist", **wrist)
+        self.endings = {ending.pk: ending for ending in Ending.objects.all()}
+        known = {} if self.instance.pk is None else self._known_lengths()
+        for pk, ending in self.endings.items():
+            self.fields[f"knotted_{pk}"] = LengthField(
+                label=ending.name,
+                unit=unit,
+                minimum_mm=20,
+                maximum_mm=1_000,
+                required=False,
+                initial=known.get(pk),
+            )
+
+    def _known_lengths(self) -> dict[int, int]:
+        rows = self.instance.knotted_lengths.all()
+        return {row.ending_id: row.knotted_length_mm for row in rows}
+
+    @property
+    def knotted_fields(self) -> list[forms.BoundField]:
+        return [self[f"knotted_{pk}"] for pk in self.endings]
+
+    @property
+    def knotted_lengths_mm(self) -> dict[Ending, int | None]:
+        return {ending: self.cleaned_data[f"knotted_{pk}"] for pk, ending in self.endings.items()}
+
+    def clean(self) -> dict[str, Any]:
+        cleaned = super().clean() or self.cleaned_data
+        smallest, largest = cleaned.get("wrist_min_mm"), cleaned.get("wrist_max_mm")
+        if smallest and largest and largest <= smallest:
+            self.add_error("wrist_max_mm", "The largest wrist has to be larger than the smallest.")
+        return cleaned
+
+
+ENDING_LENGTHS = {
+    "start_tie_mm": (
+        "Finished tie at the start",
+        "As it hangs from the bracelet, before the first row. A folded start has none.",
+    ),
+    "end_tie_mm": (
+        "Finished tie at the end",
+        "As it hangs from the bracelet, after the last row.",
+    ),
+    "closing_knot_mm": (
+        "Closing knot",
+        "Thread in the knot that closes a tie, for each strand: about 3 cm (common practice).",
+    ),
+    "grip_mm": (
+        "Grip",
+        "The tail that your fingers need to tie the last rows: about 8 to 10 cm (common practice).",
+    ),
+    "fold_loop_mm": (
+        "Loop of a folded start",
+        "Thread in the loop, for both strands of a folded piece together: 4 to 6 cm (common practice).",
+    ),
+    "single_start_mm": (
+        "Start of a strand without a partner",
+        "With a folded start, a colour with an odd number of strands leaves one to be cut alone; this is its tail.",
+    ),
+    "sliding_piece_mm": (
+        "Sliding piece",
+        "One more piece, in the colour of strand 1, tied round the ends of a sliding closure. 0 for none.",
+    ),
+}
+
+
+class EndingForm(NamedForm):
+    name = LineField(label="Name", max_length=60)
+    take_up = NumberField(
+        label="Take-up of the ties",
+        name="take-up",
+        minimum="1",
+        maximum="3",
+        places=2,
+        help_text="Thread for a finished length of tie: 1 for loose ties, 1.2 to 1.3 for a three-part plait (common practice).",
+    )
+    lengths_like = forms.ModelChoiceField(
+        Ending.objects.all(),
+        required=False,
+        empty_label="none yet",
+        label="Take the knotted lengths of every size from",
+        help_text="Sizes have a knotted length for each ending. Start from those of a similar one.",
+    )
+
+    class Meta:
+        model = Ending
+        fields = ["name", "start", "take_up", *ENDING_LENGTHS, "has_metal_or_button"]
+        labels = {
+            "start": "How it starts",
+            "has_metal_or_button": "It has a button, bead or metal part: tags carry a caution",
+        }
+
+    field_order = [
+        "name", "start", "start_tie_mm", "end_tie_mm", "take_up", "closing_knot_mm", "grip_mm",
+        "fold_loop_mm", "single_start_mm", "sliding_piece_mm",
+    ]  # fmt: skip
+
+    def __init__(self, *args: Any, unit: str, **kwargs: Any) -> None:
+        super().__init__(*args, **kwargs)
+        for name, (label, help_text) in ENDING_LENGTHS.items():
+            self.fields[name] = LengthField(
+                label=label, help_text=help_text, unit=unit, minimum_mm=0, maximum_mm=2_000
+            )
+        if self.instance.pk is not None:
+            del self.fields["lengths_like"]
+        self.order_fields(self.field_order)

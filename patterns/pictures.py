@@ -1,0 +1,56 @@
+"""Bands as pictures for pages: in a colourway's shades, or in neutral tones where there are none."""
+
+from collections.abc import Mapping
+from functools import lru_cache
+
+from patterns.drawing import draw_band, to_svg
+from patterns.knots import DiagonalPattern
+
+LIGHTEST_TONE = (0xF1, 0xE9, 0xDA)
+DARKEST_TONE = (0x5C, 0x54, 0x48)
+MOST_PICTURE_ROWS = 300
+_THUMBNAIL_KNOTS = 300
+_THUMBNAIL_ROWS = (12, 48)
+
+
+def neutral_colours(definition: DiagonalPattern) -> dict[str, str]:
+    """Return a tone of undyed thread for every slot, light to dark."""
+    slots = sorted(set(definition.slots))
+    steps = max(1, len(slots) - 1)
+    return {slot: _tone(number / steps) for number, slot in enumerate(slots)}
+
+
+def _tone(share: float) -> str:
+    channels = zip(LIGHTEST_TONE, DARKEST_TONE, strict=True)
+    return "#" + "".join(f"{round(light + (dark - light) * share):02x}" for light, dark in channels)
+
+
+def band_picture(
+    definition: DiagonalPattern, rows: int, colours: Mapping[str, str], *, title: str
+) -> str:
+    """Return the band as SVG, lying, the start at the left; slots without a colour stay neutral.
+
+    Parameters
+    ----------
+    definition : the pattern.
+    rows : rows to draw; `MOST_PICTURE_ROWS` are the most.
+    colours : "#rrggbb" by slot.
+    title : what the picture shows.
+    """
+    shown = neutral_colours(definition) | dict(colours)
+    drawn = min(rows, MOST_PICTURE_ROWS)
+    return _picture(definition, drawn, tuple(sorted(shown.items())), title)
+
+
+def thumbnail(definition: DiagonalPattern, colours: Mapping[str, str], *, title: str) -> str:
+    """Return a short run of the band as SVG: about as many knots whatever the width."""
+    fewest, most = _THUMBNAIL_ROWS
+    rows = max(fewest, min(most, 2 * _THUMBNAIL_KNOTS // definition.strands))
+    return band_picture(definition, rows, colours, title=title)
+
+
+@lru_cache(maxsize=256)
+def _picture(
+    definition: DiagonalPattern, rows: int, colours: tuple[tuple[str, str], ...], title: str
+) -> str:
+    return to_svg(draw_band(definition, rows, dict(colours), layout="horizontal"), title=title)

@@ -1,0 +1,134 @@
+"""Will this strand be long enough? Everything the pattern's page shows for one size and ending."""
+
+from dataclasses import dataclass
+
+from patterns import geometry, working
+from patterns.cut_lengths import CutRule, Ending, EndingError, Piece, pieces_for
+from patterns.geometry import Gauge, GaugeError, LengthError, StrandLength
+from patterns.knots import DiagonalPattern
+
+
+@dataclass(frozen=True)
+class StrandLine:
+    """A strand, and how its knotted thread adds up."""
+
+    strand: StrandLength
+    working: str
+
+    @property
+    def knotted_mm(self) -> int:
+        """Its thread in the knotted part, to the nearest whole millimetre."""
+        return round(self.strand.knotted_mm)
+
+
+@dataclass(frozen=True)
+class PieceLine:
+    """A piece to cut, and how its length was made."""
+
+    piece: Piece
+    working: tuple[str, ...]
+
+    @property
+    def other_half_mm(self) -> int:
+        """What a folded piece leaves for its second strand [mm]."""
+        return self.piece.cut_mm - (self.piece.fold_mm or 0)
+
+
+@dataclass(frozen=True)
+class SlotLine:
+    """The thread of one colour slot."""
+
+    slot: str
+    pieces: int
+    total_mm: int
+
+
+@dataclass(frozen=True)
+class StrandAnswer:
+    """Rows, band and pieces of one bracelet; lengths in mm, the band's to the nearest."""
+
+    rows: int
+    repeat_rows: int
+    band_length_mm: int
+    band_width_mm: int
+    strands: tuple[StrandLine, ...]
+    pieces: tuple[PieceLine, ...]
+    slots: tuple[SlotLine, ...]
+
+    @property
+    def shortest_mm(self) -> int:
+        """The shortest piece to cut [mm]."""
+        return min(line.piece.cut_mm for line in self.pieces)
+
+    @property
+    def longest_mm(self) -> int:
+        """The longest piece to cut [mm]."""
+        return max(line.piece.cut_mm for line in self.pieces)
+
+    @property
+    def total_mm(self) -> int:
+        """The thread of all pieces [mm]."""
+        return sum(line.piece.cut_mm for line in self.pieces)
+
+    @property
+    def whole_repeats(self) -> int:
+        """How often the repeat is tied in full."""
+        return self.rows // self.repeat_rows
+
+    @property
+    def rows_over(self) -> int:
+        """Rows tied after the last full repeat."""
+        return self.rows % self.repeat_rows
+
+
+class NoAnswer(ValueError):
+    """The bracelet cannot be worked out so; the text says why and what to do."""
+
+
+def answer_for(
+    pattern: DiagonalPattern,
+    knotted_length_mm: int,
+    gauge: Gauge,
+    ending: Ending,
+    rule: CutRule,
+) -> StrandAnswer:
+    """Work out one bracelet.
+
+    Parameters
+    ----------
+    pattern : the pattern.
+    knotted_length_mm : length of the band [mm].
+    gauge : the maker's gauge.
+    ending : how the bracelet begins and closes.
+    rule : safety share and rounding step.
+
+    Raises
+    ------
+    NoAnswer
+        When the finish cannot be met or a length is out of range.
+    """
+    try:
+        table = geometry.strand_table(pattern, knotted_length_mm, gauge)
+        pieces = pieces_for(table, ending, rule)
+    except (LengthError, GaugeError, EndingError) as error:
+        raise NoAnswer(str(error)) from error
+    return StrandAnswer(
+        rows=table.rows,
+        repeat_rows=len(pattern.rows),
+        band_length_mm=round(geometry.band_length_mm(table.rows, gauge)),
+        band_width_mm=round(geometry.band_width_mm(pattern.strands, gauge)),
+        strands=tuple(
+            StrandLine(strand, working.knotted_working(strand, gauge)) for strand in table.strands
+        ),
+        pieces=tuple(
+            PieceLine(piece, working.piece_working(piece, ending, rule)) for piece in pieces
+        ),
+        slots=_slot_lines(pieces),
+    )
+
+
+def _slot_lines(pieces: tuple[Piece, ...]) -> tuple[SlotLine, ...]:
+    totals: dict[str, list[int]] = {}
+    for piece in pieces:
+        totals.setdefault(piece.slot, []).append(piece.cut_mm)
+    return tuple(SlotLine(slot, len(cuts), sum(cuts)) for slot, cuts in sorted(totals.items()))

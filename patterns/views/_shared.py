@@ -1,0 +1,59 @@
+"""What the pattern pages have in common."""
+
+from django import forms
+from django.contrib import messages
+from django.db import models
+from django.http import HttpRequest, HttpResponse, QueryDict
+from django.shortcuts import render
+from django.utils.cache import patch_vary_headers
+
+from inventory.models import Workshop
+from patterns.actions import LibraryError, check_removable, remove
+
+
+def habits() -> Workshop:
+    """The workshop's unit and cutting rule; those of a new workshop where there is none yet."""
+    return Workshop.current() or Workshop()
+
+
+def posted(request: HttpRequest) -> QueryDict | None:
+    """What was typed; an empty post is still one, and is told what it lacks."""
+    return request.POST if request.method == "POST" else None
+
+
+def wants_fragment(request: HttpRequest) -> bool:
+    """When htmx restores a page from its history it needs the whole page."""
+    htmx = request.htmx  # type: ignore[attr-defined]
+    return bool(htmx) and not htmx.history_restore_request
+
+
+def render_either(
+    request: HttpRequest, page: str, fragment: str, context: dict[str, object]
+) -> HttpResponse:
+    template = fragment if wants_fragment(request) else page
+    response = render(request, template, {"section": "patterns"} | context)
+    patch_vary_headers(response, ["HX-Request"])
+    return response
+
+
+def note_refusal(form: forms.BaseForm, error: LibraryError) -> None:
+    form.add_error("name" if "name" in form.fields else None, str(error))
+
+
+def why_not_removed(thing: models.Model) -> str:
+    """The reason why it has to stay, or nothing."""
+    try:
+        check_removable(thing)
+    except LibraryError as error:
+        return str(error)
+    return ""
+
+
+def removed(request: HttpRequest, thing: models.Model) -> bool:
+    """Remove it, or tell why it stays."""
+    try:
+        remove(thing=thing)
+    except LibraryError as error:
+        messages.error(request, str(error))
+        return False
+    return True
