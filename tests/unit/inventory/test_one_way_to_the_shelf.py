@@ -36,10 +36,9 @@ def _reasons(node: ast.AST, in_inventory: bool) -> Iterator[str]:
         targets = node.targets if isinstance(node, ast.Assign) else [node.target]
         for target in targets:
             for part in ast.walk(target):
-                if isinstance(part, ast.Attribute) and part.attr == "length_mm":
-                    # A core's own class may have a length; the shelf's class lives in inventory.
-                    if in_inventory or getattr(part.value, "id", "") != "self":
-                        yield "sets length_mm"
+                is_set = isinstance(part, ast.Attribute) and isinstance(part.ctx, ast.Store)
+                if is_set and part.attr == "length_mm":
+                    yield "sets length_mm"
                 elif isinstance(part, ast.Name) and part.id == "model" and _names_piece(node.value):
                     yield "builds a form that saves ShelfPiece"
     if isinstance(node, ast.Constant) and isinstance(node.value, str):
@@ -137,7 +136,7 @@ def test_write_inside_inventory_is_caught(source: str) -> None:
     [
         "ShelfPiece.objects.on_shelf().count()",
         "bracelet.pieces.create(cut_mm=5)",
-        "self.length_mm = 5",
+        "counts[piece.length_mm] += 1",
         "PutUp(length_mm=8000)",
         "total = piece.length_mm",
         "values.update({'note': ''})",
