@@ -1,0 +1,25 @@
+import pytest
+
+from patterns.cautions import cautions_for
+
+# Outside checks, section 12, in our own words.
+CHILD = [
+    "Not for children under 3: small parts and long ties.",
+    "Take off for sleep, sport, machines and playgrounds.",
+    "Rules differ by country: check before you sell to children.",
+]
+METAL = "Metal parts: ask your supplier for nickel and lead papers."
+WET = "Colours may run when wet."
+
+
+@pytest.mark.parametrize("has_metal_or_button", [True, False])
+@pytest.mark.parametrize("is_child", [True, False])
+def test_cautions_for(is_child, has_metal_or_button):
+    cautions = cautions_for(is_child, has_metal_or_button)
+    assert all((caution in cautions) == is_child for caution in CHILD)
+    assert (METAL in cautions) == has_metal_or_button
+    assert WET in cautions
+
+
+def test_cautions_for_child_come_first():
+    assert list(cautions_for(True, True)[:3]) == CHILD
