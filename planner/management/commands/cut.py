@@ -1,0 +1,121 @@
+"""Cuts the pieces of one problem file from stock and from what can be bought."""
+
+import json
+from argparse import ArgumentParser
+from collections.abc import Iterator
+from decimal import Decimal
+from itertools import groupby
+from pathlib import Path
+from typing import Any, NoReturn
+
+from django.core.management.base import BaseCommand, CommandError, CommandParser
+
+from inventory.measures import MeasureError, parse_decimal, read_quantity
+from planner.cutting import Cut, CuttingError, Problem, Result, read_problem, solve
+from planner.cutting.problem_file import MAXIMUM_BYTES
+
+
+class Error(CommandError):
+    """Django prints the class name before the message, so this is its first word."""
+
+    def __init__(self, message: str) -> None:
+        super().__init__(" ".join(message.split()), returncode=2)
+
+
+class Command(BaseCommand):
+    help = "Cuts the pieces of a problem file (JSON) from stock and from what can be bought."
+    requires_system_checks = []
+
+    def create_parser(self, prog_name: str, subcommand: str, **kwargs: Any) -> CommandParser:
+        parser = super().create_parser(prog_name, subcommand, **kwargs)
+        parser.error = _refuse_arguments  # type: ignore[method-assign]
+        return parser
+
+    def run_from_argv(self, argv: list[str]) -> None:
+        try:
+            super().run_from_argv(argv)
+        except Error as error:  # from the parser, before Django listens
+            self.stderr.write(f"Error: {error}")
+            raise SystemExit(error.returncode) from None
+
+    def add_arguments(self, parser: ArgumentParser) -> None:
+        parser.add_argument("file", metavar="PROBLEM.json")
+        parser.add_argument("--json", action="store_true", help="print JSON")
+        parser.add_argument(
+            "--time-limit", default="10", metavar="SECONDS", help="stop searching then (default 10)"
+        )
+        parser.add_argument("--seed", default="0", help="seed of the random passes (default 0)")
+
+    def handle(self, *args: Any, **options: Any) -> None:
+        try:
+            limit_s = parse_decimal(
+                str(options["time_limit"]), name="time limit", minimum=0, maximum=3600
+            )
+            seed = read_quantity(str(options["seed"]), name="seed", minimum=0, maximum=2**31)
+            problem = _read(Path(options["file"]))
+            result = solve(problem, time_limit_s=float(limit_s), seed=seed)
+        except (CuttingError, MeasureError) as error:
+            raise Error(str(error)) from error
+        self.stdout.write(_as_json(result) if options["json"] else _as_table(result))
+
+
+def _refuse_arguments(message: str) -> NoReturn:
+    raise Error(f"{message[:300]}. See --help.")
+
+
+def _read(path: Path) -> Problem:
+    shown = repr(str(path)[:200])
+    try:
+        if not path.exists():
+            raise Error(f"There is no file {shown}.")
+        if not path.is_file():
+            raise Error(f"{shown} is not a file.")
+        with path.open("rb") as file:
+            content = file.read(MAXIMUM_BYTES + 1)
+    except (OSError, ValueError) as error:
+        raise Error(f"{shown} cannot be read.") from error
+    return read_problem(content)
+
+
+def _as_json(result: Result) -> str:
+    return json.dumps(
+        {
+            "status": result.status,
+            "cost": _money(result.cost),
+            "bought": result.bought,
+            "lower_bound": _money(result.lower_bound),
+            "cuts": [
+                {
+                    "length_mm": cut.length_mm,
+                    "new": cut.new,
+                    "pieces_mm": list(cut.pieces_mm),
+                    "left_mm": cut.left_mm,
+                }
+                for cut in result.cuts
+            ],
+            "seconds": round(result.seconds, 3),
+        }
+    )
+
+
+def _money(amount: Decimal) -> str:
+    return f"{amount:f}"
+
+
+def _as_table(result: Result) -> str:
+    proven = "and less is impossible" if result.status == "optimal" else "perhaps not the least"
+    lines = [
+        f"To buy: {result.bought}, cost {_money(result.cost)}, {proven} "
+        f"(at least {_money(result.lower_bound)}).",
+        "times  from         left mm  pieces mm",
+    ]
+    for cut, cuts in groupby(result.cuts):
+        source = f"{'new' if cut.new else 'shelf'} {cut.length_mm}"
+        pieces = ", ".join(_grouped(cut))
+        lines.append(f"{len(list(cuts)):4}x  {source:<12} {cut.left_mm:7}  {pieces}")
+    return "\n".join(lines)
+
+
+def _grouped(cut: Cut) -> Iterator[str]:
+    for length_mm, same in groupby(cut.pieces_mm):
+        yield f"{len(list(same))} x {length_mm}"
