@@ -73,6 +73,7 @@ TIME_ZONE = "UTC"
 USE_TZ = True
 USE_I18N = True
 STATIC_URL = "static/"
+WHITENOISE_ALLOW_ALL_ORIGINS = False
 
 # Sign-in
 LOGIN_URL = "sign_in"
@@ -153,5 +154,7 @@ LOGGING: dict[str, Any] = {
         "django": {"handlers": [], "level": "WARNING", "propagate": True},
         # Pages not found are no news to a maker; failures (5xx) are.
         "django.request": {"level": "ERROR"},
+        # Anybody can send a wrong Host; the answer is a 400 and needs no traceback.
+        "django.security.DisallowedHost": {"level": "CRITICAL"},
     },
 }

@@ -15,7 +15,7 @@ from planner.settings.databases import database_from_url
 
 DEBUG = False
 SECRET_KEY = env.str("FLOSSWRIGHT_SECRET_KEY", validate=validate.Length(min=50))
-ALLOWED_HOSTS = env.list("FLOSSWRIGHT_HOSTS", validate=validate.Length(min=1))
+ALLOWED_HOSTS: list[str] = env.list("FLOSSWRIGHT_HOSTS", validate=validate.Length(min=1))
 try:
     DATABASES = {"default": database_from_url(env.str("DATABASE_URL"))}
 except ValueError as error:

@@ -4,7 +4,8 @@ from typing import Any
 
 from django import forms
 from django.contrib.auth.forms import AuthenticationForm, PasswordChangeForm, SetPasswordForm
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
+from django.core.validators import MaxLengthValidator
 
 LONGEST_PASSWORD = 500
 
@@ -21,20 +22,20 @@ class SignInForm(AuthenticationForm):
         super().__init__(*args, **kwargs)
         self.fields["username"].label = "Name"
         self.fields["username"].validators.append(
-            forms.fields.validators.MaxLengthValidator(150, "A name has at most 150 characters.")
+            MaxLengthValidator(150, "A name has at most 150 characters.")
         )
         _limit_password(self.fields["password"])
 
 
 def _limit_password(field: forms.Field) -> None:
     field.validators.append(
-        forms.fields.validators.MaxLengthValidator(
+        MaxLengthValidator(
             LONGEST_PASSWORD, f"A password has at most {LONGEST_PASSWORD} characters."
         )
     )
 
 
-def password_form(user: AbstractBaseUser, data: Any = None) -> SetPasswordForm:
+def password_form(user: User, data: Any = None) -> SetPasswordForm:
     """The first password needs no old one: a link opened this session."""
     form = (
         PasswordChangeForm(user, data)

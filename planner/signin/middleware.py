@@ -13,7 +13,7 @@ from django_htmx.http import HttpResponseClientRedirect
 class SignInRequiredMiddleware(LoginRequiredMiddleware):
     """For htmx the whole page goes to sign-in: a form swapped into a table cell helps nobody."""
 
-    def handle_no_permission(
+    def handle_no_permission(  # type: ignore[override]
         self, request: HttpRequest, view_func: Callable[..., HttpResponseBase]
     ) -> HttpResponseBase:
         if not getattr(request, "htmx", False):

@@ -1,7 +1,6 @@
 """Signing in and out."""
 
 from http import HTTPStatus
-from typing import Any
 
 from django.contrib import messages
 from django.contrib.auth import get_user_model, login, logout, update_session_auth_hash
@@ -35,6 +34,7 @@ def enter(request: HttpRequest, token: str) -> HttpResponse:
         response = redirect("home")
     else:
         response = render(request, "planner/link_used.html", status=HTTPStatus.GONE)
+    # Only here: a form on a page with this policy would come back with the Origin "null".
     response["Referrer-Policy"] = "no-referrer"
     return response
 
@@ -46,11 +46,6 @@ class SignIn(LoginView):
     form_class = SignInForm
     template_name = "planner/sign_in.html"
     redirect_authenticated_user = True
-
-    def dispatch(self, request: HttpRequest, *args: Any, **kwargs: Any) -> Any:
-        response = super().dispatch(request, *args, **kwargs)
-        response["Referrer-Policy"] = "no-referrer"
-        return response
 
 
 sign_in = SignIn.as_view()
@@ -67,6 +62,7 @@ def sign_out(request: HttpRequest) -> HttpResponse:
 @sensitive_post_parameters()
 @never_cache
 def change_password(request: HttpRequest) -> HttpResponse:
+    assert request.user.is_authenticated
     form = password_form(request.user, request.POST if request.method == "POST" else None)
     if request.method == "POST" and form.is_valid():
         update_session_auth_hash(request, form.save())
