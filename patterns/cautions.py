@@ -17,8 +17,10 @@ def cautions_for(is_child: bool, has_metal_or_button: bool) -> tuple[str, ...]:
 
     Parameters
     ----------
-    is_child : whether the size is a child's.
-    has_metal_or_button : whether the closure has a button or a metal part.
+    is_child
+        Whether the size is a child's.
+    has_metal_or_button
+        Whether the closure has a button or a metal part.
 
     Returns
     -------

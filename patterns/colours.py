@@ -54,7 +54,8 @@ def working_colours(colour: str) -> str:
 
     Parameters
     ----------
-    colour : the thread's colour, "#rrggbb".
+    colour
+        The thread's colour, "#rrggbb".
 
     Returns
     -------

@@ -32,17 +32,27 @@ class Ending:
 
     Parameters
     ----------
-    name : what the maker calls it.
-    start : "straight" (every strand alone, a tie at the start) or "folded" (two strands of
-        a slot are one piece, folded to a loop at the start).
-    start_tie_mm : finished tie at a straight start [mm].
-    end_tie_mm : finished tie at the end [mm].
-    take_up : thread a finished length of tie takes [times], 1 to 3.
-    closing_knot_mm : closing knot of a tie [mm].
-    grip_mm : tail that fingers need to tie the last rows [mm].
-    fold_loop_mm : thread in the loop, for both strands of a folded piece together [mm].
-    single_start_mm : start of a strand that finds no partner to fold with [mm].
-    sliding_piece_mm : separate piece of a sliding closure [mm]; 0 for none.
+    name
+        What the maker calls it.
+    start
+        "straight" (every strand alone, a tie at the start) or "folded" (two strands of a slot
+        are one piece, folded to a loop at the start).
+    start_tie_mm
+        Finished tie at a straight start [mm].
+    end_tie_mm
+        Finished tie at the end [mm].
+    take_up
+        Thread a finished length of tie takes [times], 1 to 3.
+    closing_knot_mm
+        Closing knot of a tie [mm].
+    grip_mm
+        Tail that fingers need to tie the last rows [mm].
+    fold_loop_mm
+        Thread in the loop, for both strands of a folded piece together [mm].
+    single_start_mm
+        Start of a strand that finds no partner to fold with [mm].
+    sliding_piece_mm
+        Separate piece of a sliding closure [mm]; 0 for none.
 
     Raises
     ------
@@ -116,9 +126,10 @@ class CutRule:
 
     Parameters
     ----------
-    safety_share : added to the knotted part [share], 0 to 1; 0.1 is 10 %.
-    rounding_step_mm : cut lengths are rounded up to it [mm], 1 to 200; half an inch
-        is Fraction(127, 10).
+    safety_share
+        Added to the knotted part [share], 0 to 1; 0.1 is 10 %.
+    rounding_step_mm
+        Cut lengths are rounded up to it [mm], 1 to 200; half an inch is Fraction(127, 10).
 
     Raises
     ------
@@ -153,13 +164,20 @@ class Piece:
 
     Parameters
     ----------
-    slot : the colour slot it is cut from.
-    strands : the strand it becomes; two when folded, the longer first; none for a sliding piece.
-    cut_mm : length to cut [mm].
-    fold_mm : where to fold, from the end of the first listed strand [mm]; None unless folded.
-    knotted_mm : thread of each strand in the knotted part [mm].
-    ends_mm : what the ends, and the loop of a fold, take together [mm].
-    is_sliding : whether it is the separate piece of a sliding closure.
+    slot
+        The colour slot it is cut from.
+    strands
+        The strand it becomes; two when folded, the longer first; none for a sliding piece.
+    cut_mm
+        Length to cut [mm].
+    fold_mm
+        Where to fold, from the end of the first listed strand [mm]; None unless folded.
+    knotted_mm
+        Thread of each strand in the knotted part [mm].
+    ends_mm
+        What the ends, and the loop of a fold, take together [mm].
+    is_sliding
+        Whether it is the separate piece of a sliding closure.
     """
 
     slot: str
@@ -176,9 +194,12 @@ def pieces_for(table: StrandTable, ending: Ending, rule: CutRule) -> tuple[Piece
 
     Parameters
     ----------
-    table : the strands and their knotted thread.
-    ending : how the bracelet begins and closes.
-    rule : safety share and rounding step.
+    table
+        The strands and their knotted thread.
+    ending
+        How the bracelet begins and closes.
+    rule
+        Safety share and rounding step.
 
     Returns
     -------

@@ -88,10 +88,14 @@ class SizeDefault:
 
     Parameters
     ----------
-    name : what it is called.
-    wrist_min_mm, wrist_max_mm : girth of the wrists it fits [mm].
-    is_child : whether tags of this size carry the cautions for children.
-    knotted_length_mm : pairs of an ending's name and a knotted length [mm].
+    name
+        What it is called.
+    wrist_min_mm, wrist_max_mm
+        Girth of the wrists it fits [mm].
+    is_child
+        Whether tags of this size carry the cautions for children.
+    knotted_length_mm
+        Pairs of an ending's name and a knotted length [mm].
     """
 
     name: str

@@ -79,11 +79,15 @@ def draw_band(
 
     Parameters
     ----------
-    pattern : the pattern.
-    rows : rows to draw, 1 to 2000; more than needed for a picture is only slower.
-    colours : "#rrggbb" for every slot of the pattern.
-    layout : "vertical" starts at the top; "horizontal" starts at the left, the band turned
-        by a quarter (not flipped: slants stay true), so that strand 1 lies lowest.
+    pattern
+        The pattern.
+    rows
+        Rows to draw, 1 to 2000; more than needed for a picture is only slower.
+    colours
+        "#rrggbb" for every slot of the pattern.
+    layout
+        "vertical" starts at the top; "horizontal" starts at the left, the band turned by a
+        quarter (not flipped: slants stay true), so that strand 1 lies lowest.
 
     Returns
     -------
@@ -214,10 +218,12 @@ def to_svg(
 
     Parameters
     ----------
-    drawing : the drawing.
-    title : what it shows, for people who do not see it.
-    height_px, width_px : one of the two sizes [px]; the other follows. With neither, the
-        picture fills its box.
+    drawing
+        The drawing.
+    title
+        What it shows, for people who do not see it.
+    height_px, width_px
+        One of the two sizes [px]; the other follows. With neither, the picture fills its box.
 
     Returns
     -------

@@ -26,11 +26,14 @@ class Gauge:
 
     Parameters
     ----------
-    thread_diameter_mm : thread diameter as it lies in the knot [mm], 0.1 to 10.
-    loop_ratio : centre-line diameter of a loop round the base strand [thread diameters],
-        0.5 to 5; the maker's tightness.
-    idle_run : thread a strand runs along the edge in a row it sits out [thread diameters],
-        0 to 10; sqrt 2 is the straight chord.
+    thread_diameter_mm
+        Thread diameter as it lies in the knot [mm], 0.1 to 10.
+    loop_ratio
+        Centre-line diameter of a loop round the base strand [thread diameters], 0.5 to 5; the
+        maker's tightness.
+    idle_run
+        Thread a strand runs along the edge in a row it sits out [thread diameters], 0 to 10;
+        sqrt 2 is the straight chord.
 
     Raises
     ------
@@ -106,9 +109,12 @@ def rows_for(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gauge) -
 
     Parameters
     ----------
-    pattern : the pattern; its finish says how to end.
-    knotted_length_mm : length of the band [mm], 1 to 5000.
-    gauge : the maker's gauge.
+    pattern
+        The pattern; its finish says how to end.
+    knotted_length_mm
+        Length of the band [mm], 1 to 5000.
+    gauge
+        The maker's gauge.
 
     Returns
     -------
@@ -166,8 +172,10 @@ def knotted_thread_mm(count: StrandCount, gauge: Gauge) -> float:
 
     Parameters
     ----------
-    count : what the strand does.
-    gauge : the maker's gauge.
+    count
+        What the strand does.
+    gauge
+        The maker's gauge.
 
     Returns
     -------
@@ -196,9 +204,12 @@ def strand_table(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gaug
 
     Parameters
     ----------
-    pattern : the pattern.
-    knotted_length_mm : length of the band [mm].
-    gauge : the maker's gauge.
+    pattern
+        The pattern.
+    knotted_length_mm
+        Length of the band [mm].
+    gauge
+        The maker's gauge.
 
     Returns
     -------

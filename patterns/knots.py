@@ -71,8 +71,10 @@ def knots_in_row(strands: int, row: int) -> int:
 
     Parameters
     ----------
-    strands : number of strands.
-    row : the row, counted from 1.
+    strands
+        Number of strands.
+    row
+        The row, counted from 1.
 
     Returns
     -------
@@ -117,10 +119,14 @@ class DiagonalPattern:
 
     Parameters
     ----------
-    name : what the maker calls it, 1 to 80 characters.
-    slots : the colour slot (A to Z) of every strand at the start, left to right.
-    rows : the knots of every row of the repeat, left to right.
-    finish : how a bracelet ends.
+    name
+        What the maker calls it, 1 to 80 characters.
+    slots
+        The colour slot (A to Z) of every strand at the start, left to right.
+    rows
+        The knots of every row of the repeat, left to right.
+    finish
+        How a bracelet ends.
 
     Raises
     ------
@@ -235,11 +241,16 @@ class StrandCount:
 
     Parameters
     ----------
-    strand : its position at the start, from 1, left to right.
-    slot : its colour slot.
-    tied : knots it ties.
-    base : knots it is the base strand in.
-    idle : rows it sits out at an edge.
+    strand
+        Its position at the start, from 1, left to right.
+    slot
+        Its colour slot.
+    tied
+        Knots it ties.
+    base
+        Knots it is the base strand in.
+    idle
+        Rows it sits out at an edge.
     """
 
     strand: int
@@ -254,8 +265,10 @@ def tie_rows(pattern: DiagonalPattern, rows: int) -> Iterator[list[TiedKnot]]:
 
     Parameters
     ----------
-    pattern : the pattern.
-    rows : number of rows, 0 or more.
+    pattern
+        The pattern.
+    rows
+        Number of rows, 0 or more.
 
     Yields
     ------
@@ -302,8 +315,10 @@ def count_strands(pattern: DiagonalPattern, rows: int) -> tuple[StrandCount, ...
 
     Parameters
     ----------
-    pattern : the pattern.
-    rows : rows of the whole bracelet, 0 or more.
+    pattern
+        The pattern.
+    rows
+        Rows of the whole bracelet, 0 or more.
 
     Returns
     -------
@@ -383,7 +398,8 @@ def mirrored(pattern: DiagonalPattern) -> DiagonalPattern:
 
     Parameters
     ----------
-    pattern : the pattern.
+    pattern
+        The pattern.
 
     Returns
     -------

@@ -27,9 +27,10 @@ def read_pattern(text: str) -> Pattern:
 
     Parameters
     ----------
-    text : TOML with `name`, `technique`, `strands`, `rows` and perhaps `finish`; at most
-        64 KB. Upper and lower case, commas and blanks between letters and knots, blank
-        lines and comments after `#` are all accepted in `strands` and `rows`.
+    text
+        TOML with `name`, `technique`, `strands`, `rows` and perhaps `finish`; at most 64 KB.
+        Upper and lower case, commas and blanks between letters and knots, blank lines and
+        comments after `#` are all accepted in `strands` and `rows`.
 
     Returns
     -------
