@@ -109,7 +109,7 @@ class Columns:
             doubles = [shown(name) for read, name in self._named() if read == field]
             if len(doubles) > 1:
                 raise OrderListError(
-                    f"{len(doubles)} columns are read as the {FIELD_LABELS[field]}: "
+                    f"The list has {len(doubles)} columns for the {FIELD_LABELS[field]}: "
                     f"{listed(doubles)}. Keep one of them, or rename the others."
                 )
 

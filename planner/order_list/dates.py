@@ -119,10 +119,11 @@ def _read_words(line: str, today: date) -> ReadDate:
     plain = "".join(c for c in unicodedata.normalize("NFKD", line) if not unicodedata.combining(c))
     if not _IN_WORDS.fullmatch(plain):
         raise _not_a_date(line)
+    year: str | None = None
     match [word for word in _WORDS.findall(plain.casefold()) if word not in _FILLERS]:
         case [first, second]:
-            year = None
-        case [first, second, year] if re.fullmatch("[0-9]{2}|[0-9]{4}", year):
+            pass
+        case [first, second, str(year)] if re.fullmatch("[0-9]{2}|[0-9]{4}", year):
             pass
         case _:
             raise _not_a_date(line)

@@ -150,21 +150,30 @@ def find_delimiter(text: str) -> str:
     -------
     str
         The one of `DELIMITERS` that gives the most column names in one of the first rows; without
-        any, the one outside quotes that gives most rows the same number of cells, and then the
-        most cells. A decimal comma so loses against a semicolon.
+        any, the one that never stands beside a quoted cell's quotes wrongly, then the one that gives
+        most rows the same number of cells, then the most cells. So a decimal comma loses against
+        a semicolon.
     """
     return max(DELIMITERS, key=lambda delimiter: _fitness(text, delimiter))
 
 
-def _fitness(text: str, delimiter: str) -> tuple[int, float, int]:
-    sample = io.StringIO(text[:_SAMPLE_CHARACTERS], newline="")
-    try:
-        rows = list(islice(filter(None, csv.reader(sample, delimiter=delimiter)), _SAMPLE_ROWS))
-    except csv.Error:
-        return (0, 0.0, 0)
+def _fitness(text: str, delimiter: str) -> tuple[int, bool, float, int]:
+    rows, is_sound = _sample(text, delimiter, strict=True), True
+    if not rows:
+        rows, is_sound = _sample(text, delimiter, strict=False), False
     named = max((count_named(row[:100]) for row in rows[:5]), default=0)
     widths = Counter(len(row) for row in rows if len(row) > 1)
     if not widths:
-        return (0, 0.0, 0)
+        return (0, False, 0.0, 0)
     width, times = max(widths.items(), key=lambda item: (item[1], item[0]))
-    return (named if named > 1 else 0, times / len(rows), width)
+    return (named if named > 1 else 0, is_sound, times / len(rows), width)
+
+
+def _sample(text: str, delimiter: str, *, strict: bool) -> list[list[str]]:
+    """Read the first rows; strictly, nothing but a delimiter may follow a quoted cell."""
+    source = io.StringIO(text[:_SAMPLE_CHARACTERS], newline="")
+    reader = csv.reader(source, delimiter=delimiter, strict=strict)
+    try:
+        return list(islice(filter(None, reader), _SAMPLE_ROWS))
+    except csv.Error:
+        return []

@@ -65,10 +65,14 @@ def _check_sizes(entries: list[zipfile.ZipInfo]) -> None:
     if any(entry.flag_bits & 0x1 for entry in entries):
         raise OrderListError(f"The workbook is locked with a password. {_SAVE_AS}")
     unpacked = sum(entry.file_size for entry in entries)
-    packed = sum(entry.compress_size for entry in entries)
-    too_dense = unpacked > _RATIO_FREE_BYTES and unpacked > MAX_UNPACKED_RATIO * packed
-    if unpacked > MAX_UNPACKED_BYTES or too_dense:
+    if unpacked > MAX_UNPACKED_BYTES or any(_is_too_dense(entry) for entry in entries):
         raise _too_large()
+
+
+def _is_too_dense(entry: zipfile.ZipInfo) -> bool:
+    if entry.file_size <= _RATIO_FREE_BYTES:
+        return False
+    return entry.file_size > MAX_UNPACKED_RATIO * entry.compress_size
 
 
 def _too_large() -> OrderListError:

@@ -102,7 +102,7 @@ def _rows_from(texts: dict[tuple[int, int], str]) -> tuple[tuple[int, tuple[str,
 def _first_visible_sheet(
     package: io.BytesIO, *, stored_results: bool
 ) -> tuple[Any, tuple[str, ...]]:
-    from openpyxl import load_workbook  # type: ignore[import-untyped]
+    from openpyxl import load_workbook
 
     package.seek(0)
     workbook = load_workbook(package, read_only=True, data_only=stored_results, keep_links=False)
