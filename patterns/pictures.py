@@ -9,8 +9,8 @@ from patterns.knots import DiagonalPattern
 LIGHTEST_TONE = (0xF1, 0xE9, 0xDA)
 DARKEST_TONE = (0x5C, 0x54, 0x48)
 MOST_PICTURE_ROWS = 300
-_THUMBNAIL_KNOTS = 300
-_THUMBNAIL_ROWS = (12, 48)
+_FEWEST_THUMBNAIL_ROWS = 22
+_THUMBNAIL_KNOTS = 600
 
 
 def neutral_colours(definition: DiagonalPattern) -> dict[str, str]:
@@ -43,9 +43,9 @@ def band_picture(
 
 
 def thumbnail(definition: DiagonalPattern, colours: Mapping[str, str], *, title: str) -> str:
-    """Return a short run of the band as SVG: about as many knots whatever the width."""
-    fewest, most = _THUMBNAIL_ROWS
-    rows = max(fewest, min(most, 2 * _THUMBNAIL_KNOTS // definition.strands))
+    """Return a short run of the band as SVG, longer than wide but for the widest bands."""
+    strands = definition.strands
+    rows = max(_FEWEST_THUMBNAIL_ROWS, min(3 * strands, 2 * _THUMBNAIL_KNOTS // strands))
     return band_picture(definition, rows, colours, title=title)
 
 

@@ -28,11 +28,6 @@ class PieceLine:
     piece: Piece
     working: tuple[str, ...]
 
-    @property
-    def other_half_mm(self) -> int:
-        """What a folded piece leaves for its second strand [mm]."""
-        return self.piece.cut_mm - (self.piece.fold_mm or 0)
-
 
 @dataclass(frozen=True)
 class SlotLine:
@@ -69,6 +64,11 @@ class StrandAnswer:
     def total_mm(self) -> int:
         """The thread of all pieces [mm]."""
         return sum(line.piece.cut_mm for line in self.pieces)
+
+    @property
+    def has_folds(self) -> bool:
+        """Whether any piece is folded."""
+        return any(line.piece.fold_mm for line in self.pieces)
 
     @property
     def whole_repeats(self) -> int:

@@ -40,7 +40,7 @@ def _folded_working(piece: Piece, ending: Ending, rule: CutRule) -> tuple[str, .
     return (
         *(
             f"{_safety(strand, knotted_mm, rule)}, + end {_mm(ending.end_allowance_mm)}"
-            f" + half the loop {_mm(half_loop)} = {_mm(half_mm)} in whole millimetres"
+            f" + half the loop {_mm(half_loop)}: {_mm(half_mm)}, rounded up to whole millimetres"
             for strand, knotted_mm, half_mm in zip(
                 piece.strands, piece.knotted_mm, halves, strict=True
             )

@@ -31,13 +31,15 @@ def pattern_detail(request: HttpRequest, pk: int) -> HttpResponse:
     pattern = get_object_or_404(Pattern.objects.for_library_page(), pk=pk)
     definition = pattern.definition
     choice = StrandChoiceForm(request.GET, pattern=pattern)
+    colourways = [(way, missing_slots(way, definition)) for way in pattern.colourways.all()]
     context = {
         "pattern": pattern,
         "choice": choice,
         "written_rows": written_rows(definition),
         "slots": sorted(set(definition.slots)),
         "colour_repeats": colour_order(definition),
-        "colourways": [(way, missing_slots(way, definition)) for way in pattern.colourways.all()],
+        "colourways": colourways,
+        "can_order": any(not missing for _, missing in colourways),
         "has_shades": Shade.objects.exists(),
     } | _strands(pattern, definition, choice)
     return render_either(request, "patterns/pattern_detail.html", "patterns/_strands.html", context)
