@@ -91,19 +91,22 @@ def _runs(rows: list[bytes]) -> list[tuple[int, int, int]]:
     return found
 
 
+@lru_cache(maxsize=2048)
+def _path_of(code: Code) -> str:
+    """Write a code as one PDF path in modules, y downwards: whole numbers, made once."""
+    rectangles = (f"{column} {row} {length} 1 re" for column, row, length in code.runs)
+    return " ".join((*rectangles, "f"))
+
+
 def draw_code(pen: Pen, code: Code, right: float, top: float) -> None:
     """Draw a code with its white quiet zone, its upper right corner at (right, top)."""
-    canvas, module = pen.canvas, code.module_pt
-    left, side = right - code.side_pt, code.side_pt
+    canvas, module, side = pen.canvas, code.module_pt, code.side_pt
+    left = right - side
     canvas.setFillColor(white)
     canvas.rect(left, top - side, side, side, stroke=0, fill=1)
-    path = canvas.beginPath()
-    for column, row, length in code.runs:
-        path.rect(
-            left + (QUIET_MODULES + column) * module,
-            top - (QUIET_MODULES + row + 1) * module,
-            length * module,
-            module,
-        )
+    canvas.saveState()
+    quiet = QUIET_MODULES * module
+    canvas.transform(module, 0, 0, -module, left + quiet, top - quiet)
     canvas.setFillColor(black)
-    canvas.drawPath(path, stroke=0, fill=1)
+    canvas.addLiteral(_path_of(code))
+    canvas.restoreState()

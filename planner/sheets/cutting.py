@@ -143,14 +143,15 @@ class _Columns:
     tag: float
     strands: float
     fold: float
+    width: float
 
 
 def _columns_for(unit: str, width: float) -> _Columns:
     """Leave more room behind inches: " 13/16" is longer than ".5"."""
-    tail = 36.0 if unit in ("in", "ft", "yd") else 11.0
-    cut = 62.0
-    tag = cut + tail + 32
-    return _Columns(cut, tail, tag, tag + 14, width - tail)
+    is_imperial = unit in ("in", "ft", "yd")
+    cut, tail = 52.0, 35.0 if is_imperial else 12.0
+    tag = cut + tail + (32 if is_imperial else 36)
+    return _Columns(cut, tail, tag, tag + 12, width - (31 if is_imperial else 11), width)
 
 
 class _StockBlock:
@@ -226,18 +227,20 @@ class _StockBlock:
         pen.text(x + columns.tag, y, "tag", 7.5, colour=QUIET, align="right")
         pen.text(x + columns.strands, y, "strands", 7.5, colour=QUIET)
         if any(cut.fold_mm is not None for cut in cuts):
-            right = x + columns.fold + columns.tail
+            right = x + columns.width
             pen.text(right, y, f"fold, {unit}", 7.5, colour=QUIET, align="right")
 
     def _draw_cut(
         self, pen: Pen, cut: SheetCut, order: int, x: float, base: float, columns: _Columns
     ) -> None:
-        pen.text(x + 12, base, str(order), 8.5, colour=QUIET, align="right", room=14)
-        pen.tick_box(x + 18, base - 1, 10)
+        pen.text(x + 11, base, str(order), 8.5, colour=QUIET, align="right", room=14)
+        pen.tick_box(x + 15, base - 1, 10)
         pen.figure(x + columns.cut, base, format_number(cut.cut_mm, self.unit), 12.5, font=STRONG)
         pen.text(x + columns.tag, base, str(cut.tag_number), 12.5, align="right")
         strands = joined((_strand_words(cut), plain_text(cut.slot)), "  ")
-        room = columns.fold - columns.strands - 34
+        room = columns.width - columns.strands
+        if cut.fold_mm is not None:
+            room = columns.fold - columns.strands - 24
         pen.text(x + columns.strands, base, strands, 11, room=room)
         if cut.fold_mm is not None:
             pen.figure(x + columns.fold, base, format_number(cut.fold_mm, self.unit), 11)
@@ -252,9 +255,9 @@ class _StockBlock:
             words = f"{left} left: waste"
         y = top - 13
         if self.stock.left_mm:
-            pen.hatch(SIDE_PT + 18, y - 1, 10, 10, hatch_gap(self.stock))
-        pen.text(SIDE_PT + 34, y, words, 11, font=STRONG if self.stock.goes_back else REGULAR)
+            pen.hatch(SIDE_PT + 15, y - 1, 10, 10, hatch_gap(self.stock))
+        pen.text(SIDE_PT + 32, y, words, 11, font=STRONG if self.stock.goes_back else REGULAR)
 
 
 def _strand_words(cut: SheetCut) -> str:
-    return "slide" if cut.is_sliding else " + ".join(str(strand) for strand in cut.strands)
+    return "sliding piece" if cut.is_sliding else " + ".join(str(strand) for strand in cut.strands)

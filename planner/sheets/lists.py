@@ -17,6 +17,8 @@ from zipfile import ZIP_DEFLATED, ZipFile, ZipInfo
 
 from planner.sheets.contents import PurchaseSheet
 
+Cell = str | int | Decimal
+
 _FORMULA_STARTS = ("=", "+", "-", "@", "\t", "\r")
 # What neither XML 1.0 nor a CSV reader takes: control characters, half characters, non-characters.
 _UNWRITABLE = re.compile("[\x00-\x08\x0b\x0c\x0e-\x1f\x7f\ud800-\udfff\ufffe\uffff]")
@@ -72,16 +74,16 @@ def purchase_xlsx(sheet: PurchaseSheet) -> bytes:
     page = workbook.active
     page.title = "To buy"
     count = sum(row.count for order in sheet.suppliers for row in order.rows)
-    sums: list[str | int | Decimal] = ["All suppliers", "", "", "", "", count, "", sheet.cost, ""]
-    rows = [_header(sheet), *_rows(sheet), sums]
+    sums: list[Cell] = ["All suppliers", "", "", "", "", count, "", sheet.cost, ""]
+    rows: list[list[Cell]] = [[*_header(sheet)], *_rows(sheet), sums]
     for row_number, cells in enumerate(rows, start=1):
         for column, value in enumerate(cells, start=1):
             _fill(page.cell(row_number, column), value, column)
     for row_number in (1, len(rows)):
         for cell in page[row_number]:
             cell.font = Font(bold=True)
-    for column, width in zip("ABCDEFGHI", _WIDTHS, strict=True):
-        page.column_dimensions[column].width = width
+    for letter, width in zip("ABCDEFGHI", _WIDTHS, strict=True):
+        page.column_dimensions[letter].width = width
     page.freeze_panes = "A2"
     made = datetime.combine(sheet.head.plan_date, time())
     workbook.properties.creator = _writable(sheet.head.workshop)
@@ -107,7 +109,7 @@ def _header(sheet: PurchaseSheet) -> list[str]:
     ]
 
 
-def _rows(sheet: PurchaseSheet) -> Iterator[list[str | int | Decimal]]:
+def _rows(sheet: PurchaseSheet) -> Iterator[list[Cell]]:
     for order in sheet.suppliers:
         for row in order.rows:
             yield [
@@ -132,7 +134,7 @@ def _guarded(text: str) -> str:
     return "'" + text if text.startswith(_FORMULA_STARTS) else text
 
 
-def _fill(cell: Any, value: str | int | Decimal, column: int) -> None:
+def _fill(cell: Any, value: Cell, column: int) -> None:
     """Fill a cell; text stays text even where it begins like a formula."""
     if value == "":
         return

@@ -3,6 +3,8 @@
 All coordinates are points from the lower left corner of the paper.
 """
 
+import re
+from functools import lru_cache
 from io import BytesIO
 
 from reportlab.lib.colors import Color, HexColor
@@ -18,22 +20,23 @@ QUIET = "#5d5a55"
 RULE = "#b8b1a4"
 MADDER = "#9b2d30"
 WHITE = "#ffffff"
-PALE = "#f3efe7"
+BLACK = "#000000"
+UNDYED = "#cfc8ba"
 
-# Contrast by WCAG 2.2; one of black and white always reaches 4.5 : 1.
+# Contrast by WCAG 2.2: on a lighter ground black reads better, on a darker one white does, and
+# one of them always reaches 4.5 : 1.
 _LIGHT = 0.179
+_COLOUR = re.compile("#[0-9a-fA-F]{6}")
 
 
+@lru_cache(maxsize=1024)
 def thread_colour(colour: str) -> Color:
     """Read "#rrggbb"; anything else is drawn as undyed thread."""
-    try:
-        return HexColor(colour)
-    except (ValueError, TypeError, AttributeError):
-        return HexColor("#cfc8ba")
+    return HexColor(colour if _COLOUR.fullmatch(colour) else UNDYED)
 
 
 def letter_colour_on(colour: str) -> str:
-    """Choose ink or white for letters on a thread colour, whichever contrasts more."""
+    """Choose black or white for letters on a thread colour, whichever contrasts more."""
 
     def linear(share: float) -> float:
         return share / 12.92 if share <= 0.04045 else float(((share + 0.055) / 1.055) ** 2.4)
@@ -42,7 +45,7 @@ def letter_colour_on(colour: str) -> str:
     luminance = (
         0.2126 * linear(thread.red) + 0.7152 * linear(thread.green) + 0.0722 * linear(thread.blue)
     )
-    return INK if luminance > _LIGHT else WHITE
+    return BLACK if luminance > _LIGHT else WHITE
 
 
 class Pen:
@@ -69,6 +72,7 @@ class Pen:
             invariant=1,
             pageCompression=1,
             lang="en",
+            initialFontName=REGULAR,
         )
         self.canvas.setTitle(plain_text(title))
         self.canvas.setAuthor(plain_text(head.workshop))
@@ -110,7 +114,7 @@ class Pen:
         self.lacks_letters = self.lacks_letters or MISSING in words
         width = width_of(words, font, size)
         start = x - width * {"left": 0.0, "right": 1.0, "centre": 0.5}[align]
-        self.canvas.setFillColor(HexColor(colour))
+        self.canvas.setFillColor(thread_colour(colour))
         self.canvas.setFont(font, size)
         self.canvas.drawString(start, y, words)
         return width
@@ -123,14 +127,14 @@ class Pen:
         self, x: float, y: float, width: float, colour: str = RULE, thickness: float = 0.5
     ) -> None:
         """Draw a level line."""
-        self.canvas.setStrokeColor(HexColor(colour))
+        self.canvas.setStrokeColor(thread_colour(colour))
         self.canvas.setLineWidth(thickness)
         self.canvas.line(x, y, x + width, y)
 
     def cut_line(self, x1: float, y1: float, x2: float, y2: float) -> None:
         """Draw a dashed line to cut along."""
         self.canvas.saveState()
-        self.canvas.setStrokeColor(HexColor(QUIET))
+        self.canvas.setStrokeColor(thread_colour(QUIET))
         self.canvas.setLineWidth(0.4)
         self.canvas.setDash(4, 3)
         self.canvas.line(x1, y1, x2, y2)
@@ -138,7 +142,7 @@ class Pen:
 
     def tick_box(self, x: float, y: float, side: float) -> None:
         """Draw an empty box to tick, its lower left corner at (x, y)."""
-        self.canvas.setStrokeColor(HexColor(INK))
+        self.canvas.setStrokeColor(thread_colour(INK))
         self.canvas.setLineWidth(0.8)
         self.canvas.rect(x, y, side, side, stroke=1, fill=0)
 
@@ -153,7 +157,7 @@ class Pen:
         path.lineTo(cx, cy - half)
         path.close()
         self.canvas.setFillColor(thread_colour(colour))
-        self.canvas.setStrokeColor(HexColor(INK))
+        self.canvas.setStrokeColor(thread_colour(INK))
         self.canvas.setLineWidth(0.6)
         self.canvas.drawPath(path, stroke=1, fill=1)
         if letter:
@@ -177,7 +181,7 @@ class Pen:
         frame = canvas.beginPath()
         frame.rect(x, y, width, height)
         canvas.clipPath(frame, stroke=0, fill=0)
-        canvas.setStrokeColor(HexColor(QUIET))
+        canvas.setStrokeColor(thread_colour(QUIET))
         canvas.setLineWidth(0.45)
         lines = canvas.beginPath()
         offset = -height

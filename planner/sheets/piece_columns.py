@@ -21,6 +21,8 @@ class PieceColumns:
     ----------
     size
         Type size [pt].
+    knot_half
+        Half the diagonal of a slot's knot; knots in lines below each other do not touch [pt].
     strand, code, name
         Left edges [pt].
     name_room
@@ -32,6 +34,7 @@ class PieceColumns:
     """
 
     size: float
+    knot_half: float
     strand: float
     code: float
     name: float
@@ -79,7 +82,16 @@ def columns_for(
     cut = (fold_left - 12 if folds else width) - cut_tail
     cut_left = cut - max(_whole(cuts, STRONG, size), _LEAST_FIGURE_PT - cut_tail)
     return PieceColumns(
-        size, strand, code, name, cut_left - 6 - name, cut, cut_tail, fold, bool(folds)
+        size,
+        min(size * 0.62, row_pt * 0.49),
+        strand,
+        code,
+        name,
+        cut_left - 6 - name,
+        cut,
+        cut_tail,
+        fold,
+        bool(folds),
     )
 
 

@@ -1,7 +1,9 @@
 """The purchase sheet: what to buy, by supplier. All coordinates are points."""
 
+from dataclasses import dataclass
+
 from planner.sheets.contents import PurchaseRow, PurchaseSheet, SupplierOrder
-from planner.sheets.fonts import STRONG, printable, width_of
+from planner.sheets.fonts import REGULAR, STRONG, printable, width_of
 from planner.sheets.pages import (
     SIDE_PT,
     Block,
@@ -18,8 +20,17 @@ from planner.sheets.wording import counted, joined, market_words, money, plain_t
 _ROW_PT = 37.0
 _HEADING_PT = 52.0
 _TOTAL_PT = 34.0
-# Right edges, measured from the right margin: skeins, price, cost.
-_SKEINS, _PRICE, _COST = 150.0, 74.0, 0.0
+_LEAST_PRICE_PT = 58.0
+_COLUMN_GAP_PT = 16.0
+
+
+@dataclass(frozen=True)
+class _Columns:
+    """Widths from the right margin to where figures end, and the room codes take."""
+
+    price: float
+    skeins: float
+    code_room: float
 
 
 def build_purchase_sheet(sheet: PurchaseSheet, paper: Paper) -> bytes:
@@ -61,26 +72,34 @@ def _with_currency(sheet: PurchaseSheet) -> str:
 def _blocks(sheet: PurchaseSheet, paper: Paper) -> list[Block]:
     blocks = notice_blocks(sheet.notices, paper)
     orders = [order for order in sheet.suppliers if order.rows]
+    columns = _columns_for(orders)
     for order in orders:
-        heading = _supplier_heading(order, sheet.currency, paper)
-        code_room = _code_room(order)
+        heading = _supplier_heading(order, sheet.currency, columns, paper)
         for row in order.rows:
-            blocks.append(_row_block(row, heading, code_room, paper))
+            blocks.append(_row_block(row, heading, columns, paper))
         # The sum stays with its last row, so that no page holds a sum alone.
         last = blocks.pop()
-        blocks.append(_row_with_sum(last, order, paper))
+        blocks.append(_row_with_sum(last, order, columns, paper))
     if len(orders) > 1:
         blocks.append(_grand_total(sheet, paper))
     return blocks
 
 
-def _code_room(order: SupplierOrder) -> float:
-    """Width of the code column: as wide as the longest code, within reason."""
-    widest = max(width_of(printable(row.shade_code), STRONG, 11) for row in order.rows)
-    return min(max(widest, 24.0), 72.0)
+def _columns_for(orders: list[SupplierOrder]) -> _Columns:
+    """Make the columns as wide as the widest code and figures, the same for all suppliers."""
+    rows = [row for order in orders for row in order.rows]
+    costs = [money(row.cost) for row in rows] + [money(order.cost) for order in orders]
+    prices = [money(row.unit_price) for row in rows]
+    cost = max([_LEAST_PRICE_PT, *(width_of(each, STRONG, 11) for each in costs)])
+    price = max([_LEAST_PRICE_PT, *(width_of(each, REGULAR, 11) for each in prices)])
+    codes = [24.0, *(width_of(printable(row.shade_code), STRONG, 11) for row in rows)]
+    price_edge = cost + _COLUMN_GAP_PT
+    return _Columns(price_edge, price_edge + price + _COLUMN_GAP_PT, min(max(codes), 72.0))
 
 
-def _supplier_heading(order: SupplierOrder, currency: str, paper: Paper) -> Heading:
+def _supplier_heading(
+    order: SupplierOrder, currency: str, columns: _Columns, paper: Paper
+) -> Heading:
     def draw(pen: Pen, top: float, continued: bool) -> None:
         right = paper.width_pt - SIDE_PT
         label = "  (continued)" if continued else ""
@@ -88,44 +107,50 @@ def _supplier_heading(order: SupplierOrder, currency: str, paper: Paper) -> Head
         name = plain_text(order.supplier) or "Supplier not named"
         used = pen.text(SIDE_PT, top - 24, name, 14, font=STRONG, room=room)
         pen.text(SIDE_PT + used, top - 24, label, 10, colour=QUIET)
-        unit = f" ({plain_text(currency)[:8]})" if currency else ""
-        for text, offset in (("how many", _SKEINS), ("each" + unit, _PRICE), ("cost" + unit, 0)):
-            pen.text(right - offset, top - 41, text, 8.5, colour=QUIET, align="right")
+        unit = f" ({plain_text(currency)})" if plain_text(currency) else ""
+        for text, edge in (
+            ("how many", columns.skeins),
+            ("each" + unit, columns.price),
+            ("cost" + unit, 0),
+        ):
+            pen.text(
+                right - edge, top - 41, text, 8.5, colour=QUIET, align="right", room=_LEAST_PRICE_PT
+            )
         pen.text(SIDE_PT + 20, top - 41, "shade and put-up", 8.5, colour=QUIET)
         pen.rule(SIDE_PT, top - 46, body_width(paper), INK, 0.8)
 
     return Heading(_HEADING_PT, draw)
 
 
-def _row_block(row: PurchaseRow, heading: Heading, code_room: float, paper: Paper) -> Block:
+def _row_block(row: PurchaseRow, heading: Heading, columns: _Columns, paper: Paper) -> Block:
     def draw(pen: Pen, top: float) -> None:
         right = paper.width_pt - SIDE_PT
         base = top - 15
         pen.tick_box(SIDE_PT, base - 1.5, 10)
         pen.knot(SIDE_PT + 28, base + 3.5, 7.5, row.shade_colour)
         code_x = SIDE_PT + 44
-        pen.text(code_x, base, row.shade_code, 11, font=STRONG, room=code_room)
-        name_x = code_x + code_room + 10
-        name_room = right - _SKEINS - 40 - name_x
+        pen.text(code_x, base, row.shade_code, 11, font=STRONG, room=columns.code_room)
+        name_x = code_x + columns.code_room + 10
+        name_room = right - columns.skeins - 40 - name_x
         pen.text(name_x, base, row.shade_name, 11, room=name_room)
         under = joined((plain_text(row.put_up), plain_text(row.proof)))
         pen.text(name_x, base - 13, under, 9, colour=QUIET, room=right - name_x)
-        pen.text(right - _SKEINS, base, str(row.count), 13, font=STRONG, align="right")
-        pen.text(right - _PRICE, base, money(row.unit_price), 11, align="right")
-        pen.text(right - _COST, base, money(row.cost), 11, align="right")
+        pen.text(right - columns.skeins, base, str(row.count), 13, font=STRONG, align="right")
+        pen.text(right - columns.price, base, money(row.unit_price), 11, align="right")
+        pen.text(right, base, money(row.cost), 11, align="right")
         pen.rule(SIDE_PT, top - _ROW_PT + 2, body_width(paper), RULE, 0.4)
 
     return Block(_ROW_PT, draw, heading)
 
 
-def _row_with_sum(last: Block, order: SupplierOrder, paper: Paper) -> Block:
+def _row_with_sum(last: Block, order: SupplierOrder, columns: _Columns, paper: Paper) -> Block:
     def draw(pen: Pen, top: float) -> None:
         last.draw(pen, top)
         base = top - last.height - 12
         right = paper.width_pt - SIDE_PT
         count = sum(row.count for row in order.rows)
-        pen.text(right - _PRICE, base, "together", 9, colour=QUIET, align="right")
-        pen.text(right - _SKEINS, base, str(count), 11, font=STRONG, align="right")
+        pen.text(right - columns.price, base, "together", 9, colour=QUIET, align="right")
+        pen.text(right - columns.skeins, base, str(count), 11, font=STRONG, align="right")
         pen.text(right, base, money(order.cost), 11, font=STRONG, align="right")
 
     return Block(last.height + _TOTAL_PT, draw, last.heading)
@@ -136,6 +161,8 @@ def _grand_total(sheet: PurchaseSheet, paper: Paper) -> Block:
         right = paper.width_pt - SIDE_PT
         pen.rule(SIDE_PT, top - 2, body_width(paper), INK, 0.8)
         pen.text(SIDE_PT, top - 19, "All suppliers", 12, font=STRONG)
-        pen.text(right, top - 19, _with_currency(sheet), 13, font=STRONG, align="right")
+        room = body_width(paper) - 100
+        words = _with_currency(sheet)
+        pen.text(right, top - 19, words, 13, font=STRONG, align="right", room=room)
 
     return Block(30.0, draw)

@@ -6,7 +6,7 @@ All coordinates are points.
 from dataclasses import dataclass
 
 from inventory.measures import format_length, format_number
-from planner.sheets.bracelet import DrawingForms
+from planner.sheets.bracelet import DrawingForms, fitted_size
 from planner.sheets.codes import code_for, draw_code
 from planner.sheets.contents import Tag, TagPiece, TagSheet
 from planner.sheets.fonts import REGULAR, STRONG, printable
@@ -37,6 +37,7 @@ from planner.sheets.wording import counted, joined, market_words, plain_text, sh
 _NUMBER_PT = 31.0
 _CODE_INSET = 3.5
 _PICTURE_SHARE = 0.2
+_PICTURE_AIR_PT = 12.0
 
 
 def build_tag_sheet(sheet: TagSheet, paper: Paper) -> bytes:
@@ -138,10 +139,10 @@ class _TagDrawing:
         foot = self._draw_cautions()
         foot = self._draw_finish(foot)
         rows = -(-len(self.tag.pieces) // self.piece_columns)
-        spare = top - foot - PICTURE_PT - TABLE_HEAD_PT - rows * LEAST_ROW_PT
-        row_pt = min(MOST_ROW_PT, LEAST_ROW_PT + max(spare, 0) / max(rows, 1))
+        spare = max(0.0, top - foot - PICTURE_PT - TABLE_HEAD_PT - rows * LEAST_ROW_PT)
+        row_pt = min(MOST_ROW_PT, LEAST_ROW_PT + spare / max(rows, 1))
         spare -= rows * (row_pt - LEAST_ROW_PT)
-        picture = min(self.frame.height * _PICTURE_SHARE, PICTURE_PT + max(spare, 0) * 0.5)
+        picture = min(PICTURE_PT + spare, self._picture_height())
         self._draw_picture(top, picture)
         self._draw_pieces(top - picture, rows, row_pt)
 
@@ -195,10 +196,16 @@ class _TagDrawing:
             pen.text(self.frame.right, foot + 3, ending, 9.5, room=room, align="right")
         return foot + FINISH_PT
 
+    def _picture_height(self) -> float:
+        """Choose the picture's height: as wide as the tag allows, but no fifth of its height."""
+        most = self.frame.height * _PICTURE_SHARE
+        fitted = fitted_size(self.tag.drawing, self.frame.inner_width, most)[1]
+        return max(PICTURE_PT, fitted + _PICTURE_AIR_PT)
+
     def _draw_picture(self, top: float, height: float) -> None:
         """Show the bracelet lying along the tag."""
         self.forms.show(
-            self.tag.drawing, self.frame.left, top - height + 5, self.frame.inner_width, height - 7
+            self.tag.drawing, self.frame.left, top - height + 4, self.frame.inner_width, height - 8
         )
 
     def _draw_pieces(self, top: float, rows: int, row_pt: float) -> None:
@@ -226,9 +233,9 @@ class _TagDrawing:
 
     def _draw_piece(self, piece: TagPiece, x: float, base: float, columns: PieceColumns) -> None:
         pen, size, unit = self.pen, columns.size, self.unit
-        half = size * 0.62
+        half = columns.knot_half
         letter = plain_text(piece.slot)
-        pen.knot(x + half, base + size * 0.32, half, piece.shade_colour, letter, STRONG)
+        pen.knot(x + size * 0.62, base + size * 0.32, half, piece.shade_colour, letter, STRONG)
         room = columns.code - columns.strand - 3
         pen.text(x + columns.strand, base, strand_words(piece), size, room=room)
         room = columns.name - columns.code - 3

@@ -64,7 +64,7 @@ def piece(strands: tuple[int, ...], shade: int = 0, cut_mm: int = 1240, **change
     return TagPiece(**(fields | changes))
 
 
-def tag(number: int = 1, pieces: int = 3, **changes) -> Tag:
+def tag(number: int = 1, count: int = 3, **changes) -> Tag:
     fields = {
         "number": number,
         "code_text": f"http://192.168.178.24:8000/t/{number:06d}",
@@ -76,7 +76,7 @@ def tag(number: int = 1, pieces: int = 3, **changes) -> Tag:
         "due": date(2026, 12, 4),
         "pieces": tuple(
             piece((2 * place + 2, 2 * place + 1), place, 1240 + 65 * place)
-            for place in range(pieces)
+            for place in range(count)
         ),
         "rows": 118,
         "knotted_length_mm": 150,
@@ -104,10 +104,10 @@ def tag_sheet(*tags: Tag, unit: str = "cm") -> TagSheet:
 
 
 def stock(
-    first_tag: int, cuts: int, reckoned_mm: int = 7840, *, is_new: bool = True, **changes
+    first_tag: int, count: int, reckoned_mm: int = 7840, *, is_new: bool = True, **changes
 ) -> StockCut:
-    most = reckoned_mm // max(cuts, 1)
-    lengths = [min(most, 1245 - 65 * place) for place in range(cuts)]
+    most = reckoned_mm // max(count, 1)
+    lengths = [min(most, 1245 - 65 * place) for place in range(count)]
     left_mm = reckoned_mm - sum(lengths)
     fields = {
         "source": "New skein 1 of 3, lot bought now" if is_new else "Remnant, lot 41-B",
