@@ -2,7 +2,7 @@
 
 from dataclasses import dataclass
 from fractions import Fraction
-from math import ceil, isfinite
+from math import ceil
 from typing import Literal, get_args
 
 from patterns.geometry import StrandLength, StrandTable
@@ -107,12 +107,8 @@ def _check_whole_mm(name: str, value: int) -> None:
         raise EndingError(f"The {name} has to be a whole number from 0 to {MAX_ENDING_MM} mm.")
 
 
-def _is_number(value: float | Fraction) -> bool:
-    return (
-        isinstance(value, int | float | Fraction)
-        and not isinstance(value, bool)
-        and isfinite(value)
-    )
+def _is_number(value: float) -> bool:
+    return isinstance(value, int | float) and not isinstance(value, bool)
 
 
 def _as_written(value: float) -> Fraction:
@@ -283,12 +279,11 @@ def _fold_point_mm(lowest_mm: int, highest_mm: int, step_mm: int | Fraction) -> 
     """
     finer_mm = 5 if Fraction(step_mm).denominator == 1 else Fraction(step_mm) / 2
     middle = Fraction(lowest_mm + highest_mm, 2)
-    for mark_mm in (step_mm, finer_mm):
-        nearest = round(middle / mark_mm)
-        marks = (round((nearest + shift) * Fraction(mark_mm)) for shift in (0, -1, 1))
-        for mark in marks:
-            if lowest_mm <= mark <= highest_mm:
-                return mark
+    for between_marks_mm in (step_mm, finer_mm):
+        # If any mark lies between the two, the one nearest the middle does.
+        mark_mm = round(round(middle / between_marks_mm) * Fraction(between_marks_mm))
+        if lowest_mm <= mark_mm <= highest_mm:
+            return mark_mm
     return int(middle)
 
 

@@ -1,7 +1,7 @@
 """From counted knots to millimetres of thread: gauge, rows, width and strand lengths."""
 
 from dataclasses import dataclass
-from math import ceil, isfinite, pi, sqrt
+from math import ceil, pi, sqrt
 
 from patterns.knots import DiagonalPattern, Finish, StrandCount, count_strands
 
@@ -80,7 +80,7 @@ class Gauge:
 def _check_range(name: str, value: float, lowest: float, highest: float, unit: str) -> None:
     if isinstance(value, bool) or not isinstance(value, int | float):
         raise GaugeError(f"The {name} has to be a number.")
-    if not (isfinite(value) and lowest <= value <= highest):
+    if not lowest <= value <= highest:  # no comparison holds for nan
         raise GaugeError(f"The {name} has to be from {lowest} to {highest}{unit}.")
 
 

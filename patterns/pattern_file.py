@@ -15,7 +15,7 @@ from patterns.knots import (
 
 MAX_FILE_BYTES = 64 * 1024
 NO_KNOTS = "-"
-# A key of thousands of dotted parts takes the TOML reader minutes; no pattern needs one.
+# A key of thousands of dotted parts takes the TOML reader a minute; no pattern needs one.
 _MAX_DOTS_A_LINE = 100
 _KEYS = ("name", "technique", "strands", "rows", "finish")
 # Grid patterns join here: `Pattern: TypeAlias = DiagonalPattern | GridPattern`.

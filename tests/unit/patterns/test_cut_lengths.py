@@ -119,6 +119,29 @@ def test_pieces_for_fold_in_inches():
     assert (piece.cut_mm, piece.fold_mm) == (1283, 648)
 
 
+def test_pieces_for_fold_in_inches_takes_no_half_inch_more_than_needed():
+    # No ends but half a loop of 25: 133.3 + 25 = 158.3 twice is 316.6 -> 25 half inches = 317.5
+    # -> 318; a fold at 159 leaves both enough, though two halves of 159 are over 317.5.
+    short = Ending(**(FOLDED | {"end_tie_mm": 0, "closing_knot_mm": 0, "grip_mm": 0}))
+    table = table_of(("A", 133.3), ("A", 133.3))
+    (piece,) = pieces_for(table, short, CutRule(0, HALF_INCH_MM))
+    assert (piece.cut_mm, piece.fold_mm) == (318, 159)
+
+
+@pytest.mark.parametrize(
+    ("longer", "shorter", "step_mm", "cut_mm", "fold_mm"),
+    # Safety 0, end 220, half the loop 25. The coarser mark wins over one nearer the middle:
+    [
+        (651, 539, 25, 1700, 900),  # 896 to 916: 900 is on the step, 905 would be nearer
+        (607, 166, HALF_INCH_MM, 1270, 857),  # 852 to 859: 135 quarter inches are 857.25 mm
+    ],
+)
+def test_pieces_for_fold_prefers_the_coarser_mark(longer, shorter, step_mm, cut_mm, fold_mm):
+    table = table_of(("A", longer), ("A", shorter))
+    (piece,) = pieces_for(table, Ending(**FOLDED), CutRule(0, step_mm))
+    assert (piece.cut_mm, piece.fold_mm) == (cut_mm, fold_mm)
+
+
 def test_pieces_for_uneven_strands_pair_longest_with_shortest():
     table = table_of(("A", 500), ("A", 900), ("B", 700), ("A", 600), ("A", 800), ("B", 650))
     pieces = pieces_for(table, Ending(**FOLDED), METRIC)

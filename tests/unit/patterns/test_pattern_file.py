@@ -185,8 +185,17 @@ def test_read_pattern_hostile_text(text):
     assert len(str(caught.value)) < 400
 
 
+@pytest.mark.parametrize("filler", ["x", "é"])
+def test_read_pattern_at_most_64_kb(filler):
+    room = MAX_FILE_BYTES - len(f"{GOOD}# \n".encode())
+    full = GOOD + "# " + filler * (room // len(filler.encode())) + "\n"
+    assert read_pattern(full) == read_pattern(GOOD)
+    with pytest.raises(PatternError, match="The file is larger than 64 KB"):
+        read_pattern(full + "# more\n")
+
+
 def test_read_pattern_long_dotted_keys_are_refused_before_they_are_parsed():
-    # Parsed, this key would keep the TOML reader busy for minutes.
+    # Parsed, this key would keep the TOML reader busy for a minute.
     with pytest.raises(PatternError, match="Line 2 is not part of a pattern: too many dots"):
         read_pattern("# " + "." * 200 + "\na" + ".a" * 30_000 + " = 1")
 
