@@ -16,8 +16,8 @@ from planner.sheets.pages import (
     draw_document,
     notice_blocks,
 )
-from planner.sheets.paper import Paper
-from planner.sheets.pen import INK, QUIET, Pen
+from planner.sheets.paper import Paper, paper_named
+from planner.sheets.pen import INK, QUIET, RULE, Pen
 from planner.sheets.wording import counted, joined, market_words, plain_text
 
 _HEADING_PT = 40.0
@@ -33,7 +33,7 @@ _COLUMN_GAP = 18.0
 _MOST_CUTS = 36
 
 
-def build_cutting_sheet(sheet: CuttingSheet, paper: Paper) -> bytes:
+def build_cutting_sheet(sheet: CuttingSheet, paper: Paper | str) -> bytes:
     """Draw the cutting sheet as PDF.
 
     Parameters
@@ -41,17 +41,23 @@ def build_cutting_sheet(sheet: CuttingSheet, paper: Paper) -> bytes:
     sheet
         What to cut, with the unit the maker measures in.
     paper
-        The format to draw it on.
+        The format to draw it on, or its key in `PAPERS`.
 
     Returns
     -------
     bytes
         The same bytes for the same sheet.
+
+    Raises
+    ------
+    PaperError
+        When there is no such paper.
     """
+    form = paper_named(paper)
     title = f"What to cut for {market_words(sheet.head.batch, sheet.head.market_date)}"
-    pen = Pen(paper, title, sheet.head)
+    pen = Pen(form, title, sheet.head)
     return draw_document(
-        pen, sheet.head, Opening(title, _answer(sheet)), list(_blocks(sheet, paper))
+        pen, sheet.head, Opening(title, _answer(sheet)), list(_blocks(sheet, form))
     )
 
 
@@ -109,7 +115,7 @@ def _note(sheet: CuttingSheet, row_mm: int, paper: Paper) -> Block:
         (
             f"A bar as wide as this page is {format_length(row_mm, sheet.unit)} of thread",
             "numbers in it are tags",
-            "fold from the end of the first strand named" if folded else "",
+            "measure the fold from the end of the first strand named" if folded else "",
         )
     )
 
@@ -233,6 +239,7 @@ class _StockBlock:
     def _draw_cut(
         self, pen: Pen, cut: SheetCut, order: int, x: float, base: float, columns: _Columns
     ) -> None:
+        pen.rule(x + columns.cut - 24, base - 4.5, columns.width - columns.cut + 24, RULE, 0.3)
         pen.text(x + 11, base, str(order), 8.5, colour=QUIET, align="right", room=14)
         pen.tick_box(x + 15, base - 1, 10)
         pen.figure(x + columns.cut, base, format_number(cut.cut_mm, self.unit), 12.5, font=STRONG)

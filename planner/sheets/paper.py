@@ -51,16 +51,18 @@ def millimetres(length_mm: float) -> float:
     return length_mm * POINTS_PER_MM
 
 
-def paper_named(key: str) -> Paper:
-    """Find a paper format by its key.
+def paper_named(paper: "Paper | str") -> Paper:
+    """Find a paper format by its key; a `Paper` is returned as it is.
 
     Raises
     ------
     PaperError
         When there is no such format; the message lists those that exist.
     """
+    if isinstance(paper, Paper):
+        return paper
     try:
-        return PAPERS[key.lower()]
+        return PAPERS[paper.lower()]
     except KeyError:
         known = ", ".join(PAPERS)
-        raise PaperError(f"No paper called {key[:20]!r}. Choose one of: {known}.") from None
+        raise PaperError(f"No paper called {paper[:20]!r}. Choose one of: {known}.") from None

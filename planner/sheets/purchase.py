@@ -3,7 +3,7 @@
 from dataclasses import dataclass
 
 from planner.sheets.contents import PurchaseRow, PurchaseSheet, SupplierOrder
-from planner.sheets.fonts import REGULAR, STRONG, printable, width_of
+from planner.sheets.fonts import REGULAR, STRONG, printable, shortened, width_of
 from planner.sheets.pages import (
     SIDE_PT,
     Block,
@@ -13,7 +13,7 @@ from planner.sheets.pages import (
     draw_document,
     notice_blocks,
 )
-from planner.sheets.paper import Paper
+from planner.sheets.paper import Paper, paper_named
 from planner.sheets.pen import INK, QUIET, RULE, Pen
 from planner.sheets.wording import counted, joined, market_words, money, plain_text
 
@@ -33,7 +33,7 @@ class _Columns:
     code_room: float
 
 
-def build_purchase_sheet(sheet: PurchaseSheet, paper: Paper) -> bytes:
+def build_purchase_sheet(sheet: PurchaseSheet, paper: Paper | str) -> bytes:
     """Draw the purchase sheet as PDF.
 
     Parameters
@@ -41,17 +41,23 @@ def build_purchase_sheet(sheet: PurchaseSheet, paper: Paper) -> bytes:
     sheet
         What to buy.
     paper
-        The format to draw it on.
+        The format to draw it on, or its key in `PAPERS`.
 
     Returns
     -------
     bytes
         The same bytes for the same sheet.
+
+    Raises
+    ------
+    PaperError
+        When there is no such paper.
     """
+    form = paper_named(paper)
     title = f"What to buy for {market_words(sheet.head.batch, sheet.head.market_date)}"
-    pen = Pen(paper, title, sheet.head)
+    pen = Pen(form, title, sheet.head)
     opening = Opening(title, _answer(sheet))
-    return draw_document(pen, sheet.head, opening, _blocks(sheet, paper))
+    return draw_document(pen, sheet.head, opening, _blocks(sheet, form))
 
 
 def _answer(sheet: PurchaseSheet) -> str:
@@ -133,8 +139,12 @@ def _row_block(row: PurchaseRow, heading: Heading, columns: _Columns, paper: Pap
         name_x = code_x + columns.code_room + 10
         name_room = right - columns.skeins - 40 - name_x
         pen.text(name_x, base, row.shade_name, 11, room=name_room)
-        under = joined((plain_text(row.put_up), plain_text(row.proof)))
-        pen.text(name_x, base - 13, under, 9, colour=QUIET, room=right - name_x)
+        # The proof is what the maker trusts the number by: a long put-up gives way to it.
+        room = right - name_x
+        proof = printable(row.proof)
+        put_up_room = max(room - width_of(proof, REGULAR, 9) - 12, room / 3)
+        put_up = shortened(row.put_up, REGULAR, 9, put_up_room)
+        pen.text(name_x, base - 13, joined((put_up, proof)), 9, colour=QUIET, room=room)
         pen.text(right - columns.skeins, base, str(row.count), 13, font=STRONG, align="right")
         pen.text(right - columns.price, base, money(row.unit_price), 11, align="right")
         pen.text(right, base, money(row.cost), 11, align="right")

@@ -21,9 +21,10 @@ TABLE_HEAD_PT = 12.0
 LEAST_ROW_PT = 9.9
 MOST_ROW_PT = 14.5
 FINISH_PT = 15.0
-CAUTION_SIZE_PT = 7.0
-CAUTION_ROW_PT = 8.4
-_MOST_CAUTION_LINES = 8
+SMALL_SIZE_PT = 7.0
+SMALL_ROW_PT = 8.4
+_MOST_SMALL_LINES = 8
+FOLD_WORDS = "Measure the fold from the end of the first strand named."
 _WHOLE_PAGE = 12
 
 
@@ -90,17 +91,18 @@ def header_height(code: Code) -> float:
     return max(HEADER_PT, code.side_pt - PADDING_PT / 2)
 
 
-def caution_lines(tag: Tag, width: float) -> list[str]:
-    """Break a tag's cautions into lines."""
-    words = " ".join(tag.cautions)
-    return wrapped(words, REGULAR, CAUTION_SIZE_PT, width, _MOST_CAUTION_LINES)
+def small_print(tag: Tag, width: float) -> list[str]:
+    """Break into lines what stands at a tag's foot: how to fold, and the cautions."""
+    is_folded = any(piece.fold_mm is not None for piece in tag.pieces)
+    words = " ".join(([FOLD_WORDS] if is_folded else []) + list(tag.cautions))
+    return wrapped(words, REGULAR, SMALL_SIZE_PT, width, _MOST_SMALL_LINES)
 
 
 def least_height(tag: Tag, layout: TagLayout, paper: Paper) -> float:
     """Height that a tag needs in a layout, its rows at their closest [pt]."""
     width = tag_width(layout, paper) - 2 * PADDING_PT
     rows = -(-len(tag.pieces) // layout.piece_columns)
-    cautions = len(caution_lines(tag, width))
+    small_lines = len(small_print(tag, width))
     return (
         2 * PADDING_PT
         + header_height(code_for(tag.code_text))
@@ -108,7 +110,7 @@ def least_height(tag: Tag, layout: TagLayout, paper: Paper) -> float:
         + TABLE_HEAD_PT
         + rows * LEAST_ROW_PT
         + FINISH_PT
-        + (cautions * CAUTION_ROW_PT + 3 if cautions else 0)
+        + (small_lines * SMALL_ROW_PT + 3 if small_lines else 0)
     )
 
 

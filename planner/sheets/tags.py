@@ -11,24 +11,24 @@ from planner.sheets.codes import code_for, draw_code
 from planner.sheets.contents import Tag, TagPiece, TagSheet
 from planner.sheets.fonts import REGULAR, STRONG, printable
 from planner.sheets.pages import draw_foot
-from planner.sheets.paper import Paper
+from planner.sheets.paper import Paper, paper_named
 from planner.sheets.pen import INK, MADDER, QUIET, RULE, Pen
 from planner.sheets.piece_columns import PieceColumns, columns_for, strand_words
 from planner.sheets.tag_layouts import (
-    CAUTION_ROW_PT,
-    CAUTION_SIZE_PT,
     FINISH_PT,
     LEAST_ROW_PT,
     MOST_ROW_PT,
     PADDING_PT,
     PICTURE_PT,
     SIDE_PT,
+    SMALL_ROW_PT,
+    SMALL_SIZE_PT,
     TABLE_HEAD_PT,
     TOP_PT,
     TagRow,
     arrange,
-    caution_lines,
     header_height,
+    small_print,
     tag_width,
     tags_height,
 )
@@ -40,7 +40,7 @@ _PICTURE_SHARE = 0.2
 _PICTURE_AIR_PT = 12.0
 
 
-def build_tag_sheet(sheet: TagSheet, paper: Paper) -> bytes:
+def build_tag_sheet(sheet: TagSheet, paper: Paper | str) -> bytes:
     """Draw the cut tags as PDF.
 
     Parameters
@@ -48,7 +48,7 @@ def build_tag_sheet(sheet: TagSheet, paper: Paper) -> bytes:
     sheet
         The tags, with the unit the maker measures in.
     paper
-        The format to draw them on.
+        The format to draw them on, or its key in `PAPERS`.
 
     Returns
     -------
@@ -57,20 +57,23 @@ def build_tag_sheet(sheet: TagSheet, paper: Paper) -> bytes:
 
     Raises
     ------
+    PaperError
+        When there is no such paper.
     CodeTextError
         When a tag's `code_text` is empty or too long for its code.
     TagError
         When a tag has more pieces than a page holds.
     """
+    form = paper_named(paper)
     title = f"Tags for {market_words(sheet.head.batch, sheet.head.market_date)}"
-    pen = Pen(paper, title, sheet.head)
+    pen = Pen(form, title, sheet.head)
     forms = DrawingForms(pen.canvas)
-    pages = arrange(sheet.tags, paper) or [[]]
+    pages = arrange(sheet.tags, form) or [[]]
     for number, rows in enumerate(pages, start=1):
         if not rows:
             words = "No tags: this plan has no bracelets to make."
-            pen.text(SIDE_PT, paper.height_pt - TOP_PT - 24, words, 14, font=STRONG)
-        top = paper.height_pt - TOP_PT
+            pen.text(SIDE_PT, form.height_pt - TOP_PT - 24, words, 14, font=STRONG)
+        top = form.height_pt - TOP_PT
         for row in rows:
             top = _draw_row(pen, forms, row, sheet.unit, top)
         draw_foot(pen, sheet.head, number, len(pages), SIDE_PT)
@@ -135,9 +138,11 @@ class _TagDrawing:
         self.piece_columns = piece_columns
 
     def draw(self) -> None:
+        """Draw in reading order, so that the text of the page reads as it looks."""
+        lines = small_print(self.tag, self.frame.inner_width)
+        small_top = self.frame.y + PADDING_PT + (len(lines) * SMALL_ROW_PT + 3 if lines else 0)
+        foot = small_top + FINISH_PT
         top = self._draw_head()
-        foot = self._draw_cautions()
-        foot = self._draw_finish(foot)
         rows = -(-len(self.tag.pieces) // self.piece_columns)
         spare = max(0.0, top - foot - PICTURE_PT - TABLE_HEAD_PT - rows * LEAST_ROW_PT)
         row_pt = min(MOST_ROW_PT, LEAST_ROW_PT + spare / max(rows, 1))
@@ -145,6 +150,10 @@ class _TagDrawing:
         picture = min(PICTURE_PT + spare, self._picture_height())
         self._draw_picture(top, picture)
         self._draw_pieces(top - picture, rows, row_pt)
+        self._draw_finish(small_top)
+        for place, line in enumerate(lines, start=1):
+            base = small_top - 1.5 - place * SMALL_ROW_PT
+            self.pen.text(self.frame.left, base, line, SMALL_SIZE_PT)
 
     def _draw_head(self) -> float:
         pen, tag, frame = self.pen, self.tag, self.frame
@@ -173,18 +182,8 @@ class _TagDrawing:
         ]
         return [line for line in lines if line[0]]
 
-    def _draw_cautions(self) -> float:
-        """Write the cautions at the foot and return where they begin."""
-        y = self.frame.y + PADDING_PT
-        lines = caution_lines(self.tag, self.frame.inner_width)
-        if not lines:
-            return y
-        for place, line in enumerate(reversed(lines)):
-            self.pen.text(self.frame.left, y + 1.5 + place * CAUTION_ROW_PT, line, CAUTION_SIZE_PT)
-        return y + len(lines) * CAUTION_ROW_PT + 3
-
-    def _draw_finish(self, foot: float) -> float:
-        """Write what to tie, and return where that begins."""
+    def _draw_finish(self, foot: float) -> None:
+        """Write what to tie and how it ends."""
         tag, pen = self.tag, self.pen
         self.pen.rule(self.frame.left, foot + FINISH_PT - 2.5, self.frame.inner_width, RULE, 0.4)
         length = format_length(tag.knotted_length_mm, self.unit)
@@ -194,7 +193,6 @@ class _TagDrawing:
         if ending:
             room = self.frame.inner_width - used - 10
             pen.text(self.frame.right, foot + 3, ending, 9.5, room=room, align="right")
-        return foot + FINISH_PT
 
     def _picture_height(self) -> float:
         """Choose the picture's height: as wide as the tag allows, but no fifth of its height."""

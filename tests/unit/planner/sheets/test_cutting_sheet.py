@@ -104,7 +104,7 @@ def test_fold_and_strands_stand_beside_the_cut():
     assert "3 + 4 B" in text
     assert "59" in text
     assert "sliding piece E" in text
-    assert "fold from the end of the first strand named" in text
+    assert "measure the fold from the end of the first strand named" in text
 
 
 @PAPER_CASES

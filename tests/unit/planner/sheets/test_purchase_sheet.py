@@ -88,3 +88,9 @@ def test_names_of_any_kind_never_run_into_each_other(paper, name):
     assert overlapping(found) == []
     # Three rows, and the sum of the order that has one row.
     assert sum(run.text == "9999" for run in found) == 4
+
+
+def test_proof_is_whole_beside_a_long_put_up():
+    row = purchase_row(0, 3, put_up="W" * 80)
+    text = all_text(build_purchase_sheet(purchase_sheet(order("Quay Threads", row)), A4))
+    assert "… · fewer than 3 is impossible" in text
