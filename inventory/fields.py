@@ -154,3 +154,23 @@ class QuantityField(forms.CharField):
             return read_quantity(text, name=self.name, minimum=self.minimum, maximum=self.maximum)
         except MeasureError as error:
             raise ValidationError(str(error)) from None
+
+
+class TicksField(forms.ModelMultipleChoiceField):
+    """Rows to tick. A key that no row can have is one that is gone, not a database error."""
+
+    widget = forms.CheckboxSelectMultiple
+    default_error_messages = {
+        "invalid_choice": "One of the ticked lines is gone. Look through the list again.",
+        "invalid_pk_value": "One of the ticked lines is gone. Look through the list again.",
+    }
+
+    def clean(self, value: Any) -> Any:
+        if isinstance(value, list | tuple) and not all(_may_be_key(key) for key in value):
+            raise ValidationError(self.error_messages["invalid_choice"], code="invalid_choice")
+        return super().clean(value)
+
+
+def _may_be_key(key: Any) -> bool:
+    text = str(key)
+    return text.isascii() and text.isdigit() and len(text) <= 18

@@ -4,7 +4,7 @@ from typing import Any
 
 from django import forms
 
-from inventory.fields import LengthField, LineField, PriceField, QuantityField
+from inventory.fields import LengthField, LineField, PriceField, QuantityField, TicksField
 from inventory.models import PutUp, Shade, ShelfPiece, Supplier
 
 MOST_PIECES_AT_ONCE = 200
@@ -85,15 +85,8 @@ class PutUpForm(forms.ModelForm):
     length_mm = LengthField(label="Length")
     price = PriceField(label="Price")
     for_every_shade = forms.BooleanField(label="Sold in every shade", required=False, initial=True)
-    shades = forms.ModelMultipleChoiceField(
-        label="Sold in these shades only",
-        queryset=Shade.objects.all(),
-        widget=forms.CheckboxSelectMultiple,
-        required=False,
-        error_messages={
-            "invalid_choice": "One of the ticked shades is gone. Look through the list again.",
-            "invalid_pk_value": "One of the ticked shades is gone. Look through the list again.",
-        },
+    shades = TicksField(
+        label="Sold in these shades only", queryset=Shade.objects.all(), required=False
     )
 
     class Meta:

@@ -14,6 +14,7 @@ from inventory.models import Lot, PutUp, Shade, ShelfPiece
 
 PIECES_A_PAGE = 100
 SHORTEST_BAR = 0.4
+SHORTEST_BANDED_BAR = 12
 BANDS = {"whole": (0.2, 0.8), "started": (0.2,), "remnant": ()}
 """Paper bands round a skein, as shares of its bar: they tell the kinds apart without colour."""
 
@@ -78,7 +79,8 @@ def _by_lot(pieces: Iterable[ShelfPiece], lots: dict[int, Lot], longest_mm: int)
     for piece in pieces:
         lot = lots.get(piece.lot_id, piece.lot)
         width = max(SHORTEST_BAR, round(98 * piece.length_mm / longest_mm, 2))
-        bands = tuple(round(width * share, 2) for share in BANDS[piece.kind])
+        shares = BANDS[piece.kind] if width >= SHORTEST_BANDED_BAR else ()
+        bands = tuple(round(width * share, 2) for share in shares)
         found.setdefault(lot.pk, LotOnPage(lot)).bars.append(ThreadBar(piece, width, bands))
     return list(found.values())
 

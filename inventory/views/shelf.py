@@ -17,16 +17,25 @@ def shelf(request: HttpRequest) -> HttpResponse:
     form = SearchForm(request.GET)
     words = form.cleaned_data["q"] if form.is_valid() else ""
     shades = Shade.objects.for_shelf_page().search(words)
+    page = Paginator(shades, SHADES_A_PAGE).get_page(request.GET.get("page"))
     context = {
         "section": "shelf",
         "form": form,
         "words": words,
-        "page": Paginator(shades, SHADES_A_PAGE).get_page(request.GET.get("page")),
+        "page": page,
+        "longest_mm": max((shade.shelf_mm for shade in page), default=0),
     }
     if request.htmx and not request.htmx.history_restore_request:
         return render(request, "inventory/_shade_list.html", context)
-    context["shade_count"] = Shade.objects.count()
-    context["totals"] = ShelfPiece.objects.on_shelf().aggregate(
-        pieces=Count("pk"), length_mm=Sum("length_mm", default=0)
+    totals = ShelfPiece.objects.on_shelf().aggregate(
+        pieces=Count("pk"),
+        length_mm=Sum("length_mm", default=0),
+        shades=Count("lot__shade", distinct=True),
     )
+    shade_count = Shade.objects.count()
+    context |= {
+        "totals": totals,
+        "shade_count": shade_count,
+        "run_out": shade_count - totals["shades"],
+    }
     return render(request, "inventory/shelf.html", context)
