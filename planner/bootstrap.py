@@ -222,7 +222,8 @@ def _install(file: str) -> None:
     _say(f"installing what {file} lists; this takes a minute or two")
     UNFINISHED.touch()
     command = [str(PYTHON), "-P", "-m", "pip", "install", "--no-input", "--progress-bar", "off"]
-    command += ["--disable-pip-version-check", "-r", str(BASE_DIR / file)]
+    command += ["--disable-pip-version-check", "--log", str(PIP_LOG), "-r", str(BASE_DIR / file)]
+    PIP_LOG.unlink(missing_ok=True)
     process = subprocess.Popen(
         command,
         stdin=subprocess.DEVNULL,
@@ -244,22 +245,23 @@ def _install(file: str) -> None:
 
 
 def _follow(process: "subprocess.Popen[str]") -> str:
-    """Tell each of pip's steps in a line; keep all it said in a file."""
+    """Tell each of pip's steps in a line."""
     assert process.stdout is not None
     output = []
-    with process, PIP_LOG.open("w", encoding="utf-8") as log:
+    with process:
         for line in process.stdout:
             output.append(line)
-            log.write(line)
             if line.startswith("Collecting "):
                 _say(f"  fetching {line.split()[1]}")
             elif line.startswith("Installing collected packages:"):
-                _say(f"  unpacking {line.count(',') + 1} packages")
+                _say(f"  unpacking {line.count(',') + 1} of them")
     return "".join(output)
 
 
 def _reason(file: str, output: str) -> str:
-    if _NO_CONNECTION.search(output):
+    # What went wrong with a connection is told in the log alone where pip may not try again.
+    log = PIP_LOG.read_text(encoding="utf-8", errors="replace") if PIP_LOG.exists() else output
+    if _NO_CONNECTION.search(log):
         return (
             f"No network: Flosswright could not fetch what {file} lists. Connect to the internet "
             "for this first run, then run this again; later it works without."
