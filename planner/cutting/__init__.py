@@ -3,6 +3,16 @@
 Pure: neither Django nor a models module is imported here.
 """
 
+from planner.cutting.lot_problem import (
+    CutPiece,
+    Group,
+    Lot,
+    LotResult,
+    LotStock,
+    Offer,
+    Opened,
+)
+from planner.cutting.lots import solve_with_lots
 from planner.cutting.problem import (
     Cut,
     CuttingError,
@@ -17,8 +27,15 @@ from planner.cutting.solving import lower_bounds, solve
 
 __all__ = [
     "Cut",
+    "CutPiece",
     "CuttingError",
     "Demand",
+    "Group",
+    "Lot",
+    "LotResult",
+    "LotStock",
+    "Offer",
+    "Opened",
     "Problem",
     "PutUp",
     "Result",
@@ -26,4 +43,5 @@ __all__ = [
     "lower_bounds",
     "read_problem",
     "solve",
+    "solve_with_lots",
 ]

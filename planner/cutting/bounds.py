@@ -102,7 +102,7 @@ def length_bounds(
     usable = usable_lengths(demand, [*shelf, *sizes])
     need = sum(length * count for length, count in demand.items())
     need -= sum(usable[length] * count for length, count in shelf.items())
-    return _bounds_for_need(need, [usable[size] for size in sizes], prices)
+    return bounds_for_need(need, [usable[size] for size in sizes], prices)
 
 
 def rounded_bounds(
@@ -141,7 +141,7 @@ def rounded_bounds(
             holds = _held_weights(weights, capacities)
             need = sum(weights[length] * count for length, count in demand.items())
             need -= sum(holds[length] * count for length, count in shelf.items())
-            found = _bounds_for_need(need, [holds[size] for size in sizes], prices)
+            found = bounds_for_need(need, [holds[size] for size in sizes], prices)
             bounds = bounds.combined(found)
     return bounds
 
@@ -176,6 +176,30 @@ def usable_lengths(demand: dict[int, int], capacities: Sequence[int]) -> dict[in
     return usable
 
 
+def bounds_for_need(need: int, holds: Sequence[int], prices: Sequence[int]) -> Bounds:
+    """Bound what must be bought to hold a weight.
+
+    Parameters
+    ----------
+    need
+        The weight that the shelf cannot hold.
+    holds
+        The most weight each put-up can hold.
+    prices
+        Price of each put-up [smallest units of money].
+
+    Returns
+    -------
+    Bounds
+        Impossible when something is needed and nothing holds anything.
+    """
+    purchase = cheapest_purchase(holds, prices, need)
+    if purchase is None:
+        return Bounds(0, 0, (0,) * len(holds), possible=False)
+    fewest = -(-need // max(holds)) if need > 0 else 0
+    return Bounds(purchase.bound, fewest, purchase.counts)
+
+
 def _held_weights(weights: dict[int, int], capacities: list[int]) -> dict[int, int]:
     """Give the largest weight each capacity holds, were every piece wanted without end."""
     shortest: dict[int, int] = {}
@@ -190,11 +214,3 @@ def _held_weights(weights: dict[int, int], capacities: list[int]) -> dict[int, i
         weight = len(least)
         least.append(min(least[max(0, weight - w)] + length for w, length in shortest.items()))
     return {capacity: bisect_right(least, capacity) - 1 for capacity in capacities}
-
-
-def _bounds_for_need(need: int, holds: Sequence[int], prices: Sequence[int]) -> Bounds:
-    purchase = cheapest_purchase(holds, prices, need)
-    if purchase is None:
-        return Bounds(0, 0, (0,) * len(holds), possible=False)
-    fewest = -(-need // max(holds)) if need > 0 else 0
-    return Bounds(purchase.bound, fewest, purchase.counts)

@@ -79,28 +79,21 @@ class _Search:
         return -(-need * self.prices[first] // self.sizes[first])
 
     def visit(self, first: int, need: int, cost: int, counts: list[int]) -> None:
-        most = max(0, -(-need // self.sizes[first]))
-        if first == len(self.sizes) - 1 or need <= 0:
-            self._offer(cost + most * self.prices[first], [*counts, most])
+        """Try every useful count of put-up `first`, most of it first."""
+        size, price = self.sizes[first], self.prices[first]
+        most = -(-need // size)
+        self._offer(cost + most * price, [*counts, most])
+        if first == len(self.sizes) - 1:
             return
-        for count in range(most, -1, -1):
+        for count in range(most - 1, -1, -1):
             self.steps += 1
-            rest = need - count * self.sizes[first]
-            spent = cost + count * self.prices[first]
-            if self._cannot_improve(spent + max(0, self.least(first, rest))):
-                return  # fewer of the best put-up can only cost more
-            if self.steps > STEP_LIMIT and self.best_counts:
-                return
-            self._visit_rest(first, rest, spent, [*counts, count])
-
-    def _visit_rest(self, first: int, rest: int, spent: int, counts: list[int]) -> None:
-        if not self._cannot_improve(spent + max(0, self.least(first + 1, rest))):
-            self.visit(first + 1, rest, spent, counts)
-
-    def _cannot_improve(self, cost: int) -> bool:
-        return bool(self.best_counts) and cost >= self.best_cost
+            spent, rest = cost + count * price, need - count * size
+            if self.steps > STEP_LIMIT or self.best_cost <= spent + self.least(first, rest):
+                return  # that sum is the same for every smaller count
+            if self.best_cost > spent + self.least(first + 1, rest):
+                self.visit(first + 1, rest, spent, [*counts, count])
 
     def _offer(self, cost: int, counts: list[int]) -> None:
-        if not self._cannot_improve(cost):
+        if not self.best_counts or cost < self.best_cost:
             self.best_cost = cost
             self.best_counts = counts

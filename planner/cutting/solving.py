@@ -126,11 +126,14 @@ def _passes(task: Task, bounds: Bounds, work_limit: int) -> Iterator[list[Fillin
     if shelf is None:
         return
     routes = list(_routes(task, shelf, bounds))
+    alone: list[_Route] = [(shelf, [item]) for item in task.sold] if len(task.sold) > 1 else []
+    routes += [route for route in alone if _may_do_alone(task, route[1][0], bounds)]
     longest = max(task.demand, default=1)
     fillers: list[Filler] = [Fullest(), LongestFirst()]
     fillers += [MostValuable(longest, power) for power in POWERS]
     for filler in fillers:
-        for supplies, sold in routes:
+        # The longest-first rule is quick, and no plan may be dearer than it is with any put-up.
+        for supplies, sold in routes + alone if isinstance(filler, LongestFirst) else routes:
             yield _run(task, supplies, sold, filler)
             if time.monotonic() > task.deadline and filler is not fillers[0]:
                 return
@@ -160,9 +163,13 @@ def _routes(task: Task, shelf: list[Supply], bounds: Bounds) -> Iterator[_Route]
             yield order, task.sold
     if shelf and target:
         yield target + shelf, task.sold
-    if several:
-        for item in task.sold:
-            yield shelf, [item]
+
+
+def _may_do_alone(task: Task, item: SoldAs, bounds: Bounds) -> bool:
+    """Whether buying this put-up only can come near the bound: a fifth above it and one more."""
+    need = sum(length * count for length, count in task.demand.items())
+    need -= sum(supply.size * supply.count for supply in task.shelf)
+    return item.size > 0 and (need / item.size - 1) * item.price <= 1.2 * bounds.cost
 
 
 def _run(

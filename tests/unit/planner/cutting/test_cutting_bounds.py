@@ -3,7 +3,7 @@
 from itertools import product
 
 import pytest
-from hypothesis import given, settings
+from hypothesis import example, given, settings
 from hypothesis import strategies as st
 
 from planner.cutting import purchase
@@ -79,11 +79,12 @@ def test_longest_first_filling_skips_what_does_not_fit() -> None:
     assert LongestFirst().fill([3, 5, 7], [2, 2, 1], 11) == [(2, 1), (0, 1)]
 
 
-offers = st.lists(st.tuples(st.integers(0, 12), st.integers(0, 20)), min_size=1, max_size=3)
+offers = st.lists(st.tuples(st.integers(0, 12), st.integers(0, 20)), min_size=1, max_size=4)
 
 
-@settings(deadline=None)
-@given(offers, st.integers(-3, 40))
+@settings(deadline=None, max_examples=300)
+@given(offers, st.integers(-3, 30))
+@example([(7, 484), (10, 537), (9, 485)], 11)
 def test_cheapest_purchase_agrees_with_brute_force(
     offers: list[tuple[int, int]], need: int
 ) -> None:
