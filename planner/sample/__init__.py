@@ -1,0 +1,1 @@
+"""An invented stall in an invented harbour town, to look around in."""
