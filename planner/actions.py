@@ -12,7 +12,7 @@ from django.utils import timezone
 from inventory.models import Workshop
 from patterns.actions import load_defaults
 from planner.models import Batch, OrderDraft, OrderLine, Plan
-from planner.order_list.lines import GoodLine
+from planner.order_list.results import GoodLine
 from planner.planning.snapshot import Snapshot
 from planner.plans.store import store_snapshot
 from planner.plans.work_out import PlanError, work_out_plan

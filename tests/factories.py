@@ -6,8 +6,9 @@ from typing import Any
 
 from inventory.actions import AddThread, change_shelf
 from inventory.models import PutUp, Shade, ShelfPiece, Supplier, Workshop
-from patterns.actions import add_pattern, set_colourway
-from patterns.models import Colourway, Pattern
+from patterns.actions import add_pattern, load_defaults, set_colourway
+from patterns.models import Colourway, Ending, Pattern, Size
+from planner.models import Batch, OrderLine
 
 _numbers = itertools.count(1)
 
@@ -84,3 +85,37 @@ def make_colourway(pattern: Pattern, name: str = "Harbour", **shades: Shade) -> 
     for slot in sorted(set(pattern.definition.slots)):
         shades.setdefault(slot, make_shade())
     return set_colourway(pattern=pattern, name=name, shades=shades)
+
+
+def make_ready_workshop(**changes: Any) -> Workshop:
+    """A workshop with the usual sizes and endings, and one skein to buy in every shade."""
+    workshop = make_workshop(**changes)
+    load_defaults()
+    make_put_up()
+    return workshop
+
+
+def make_batch(name: str = "Saturday's market", **values: Any) -> Batch:
+    return Batch.objects.create(name=name, **values)
+
+
+def make_order(
+    batch: Batch,
+    colourway: Colourway,
+    *,
+    quantity: int = 1,
+    size: str = "Medium",
+    ending: str | None = None,
+    **values: Any,
+) -> OrderLine:
+    endings = Ending.objects.filter(name=ending) if ending else Ending.objects.filter(is_default=True)
+    return OrderLine.objects.create(
+        batch=batch,
+        position=batch.lines.count() + 1,
+        pattern=colourway.pattern,
+        colourway=colourway,
+        size=Size.objects.get(name=size),
+        ending=endings.get(),
+        quantity=quantity,
+        **values,
+    )

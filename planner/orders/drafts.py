@@ -8,7 +8,8 @@ from typing import Any
 from planner.models import OrderDraft
 from planner.order_list.catalogue import Catalogue
 from planner.order_list.columns import DEFAULT_ORDER
-from planner.order_list.lines import BadLine, GoodLine, Problem, Reading, read_rows
+from planner.order_list.lines import read_rows
+from planner.order_list.results import BadLine, GoodLine, Problem, Reading
 from planner.orders.grid import CELL_NAME, GridRow, grid_row
 
 DraftRow = dict[str, Any]
@@ -26,15 +27,15 @@ def draft_row(line: GoodLine | BadLine) -> DraftRow:
     return {
         "number": line.number,
         "cells": dict(zip(DEFAULT_ORDER, line.cells, strict=True)),
-        "problems": _beyond_cells(line),
+        "problems": _problems_of(line),
     }
 
 
-def _beyond_cells(line: GoodLine | BadLine) -> list[str]:
-    """Problems that the cells alone do not show any more: too many cells, a lost formula."""
+def _problems_of(line: GoodLine | BadLine) -> list[tuple[str | None, str]]:
+    """Kept because the cells alone may not show them again: too many cells, a lost formula."""
     if isinstance(line, GoodLine):
         return []
-    return [problem.message for problem in line.problems if problem.field is None]
+    return [(problem.field, problem.message) for problem in line.problems]
 
 
 def read_draft(
@@ -54,8 +55,8 @@ def read_draft(
     return replace(reading, good=tuple(good), bad=tuple(bad))
 
 
-def _held_back(line: GoodLine, messages: list[str]) -> BadLine:
-    problems = tuple(Problem(None, message) for message in messages)
+def _held_back(line: GoodLine, noted: list[tuple[Any, str]]) -> BadLine:
+    problems = tuple(Problem(field, message) for field, message in noted)
     return BadLine(line.number, line.cells, problems)
 
 
@@ -79,7 +80,9 @@ def corrected(draft: OrderDraft, posted: Mapping[str, str]) -> list[DraftRow]:
         changes = dict(typed.get(row["number"], {}))
         if len(use) == 3 and use[0] == str(row["number"]) and use[1] in DEFAULT_ORDER:
             changes[use[1]] = use[2]
-        rows.append({"number": row["number"], "cells": {**row["cells"], **changes}})
+        if changes:
+            row = {"number": row["number"], "cells": {**row["cells"], **changes}}
+        rows.append(row)
     removed = {
         int(match[1])
         for name, text in posted.items()

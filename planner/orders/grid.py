@@ -8,7 +8,8 @@ from datetime import date
 from planner.models import OrderLine
 from planner.order_list.catalogue import Catalogue
 from planner.order_list.columns import DEFAULT_ORDER
-from planner.order_list.lines import BadLine, GoodLine, read_rows
+from planner.order_list.lines import read_rows
+from planner.order_list.results import BadLine, GoodLine
 
 HIGHEST_ROW = 100_000
 CELL_NAME = re.compile(r"row-([0-9]{1,6})-([a-z_]+)\Z")

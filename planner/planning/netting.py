@@ -5,7 +5,8 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from decimal import ROUND_DOWN, Decimal
 
-from planner.cutting import Group, Lot, LotResult, LotStock, Offer, solve_with_lots, usable_length
+from planner.cutting import Group, Lot, LotResult, LotStock, Offer, solve_with_lots
+from planner.cutting.bounds import usable_lengths
 from planner.planning.demand import Bracelet, ExplodedKind
 
 
@@ -176,7 +177,8 @@ def usable_on_shelf(groups: list[Group], shelf: list[ShelfThread]) -> int:
     for group in groups:
         for length_mm in group.pieces_mm:
             wanted[length_mm] += 1
-    return sum(usable_length(thread.reckoned_mm, wanted) for thread in shelf)
+    usable = usable_lengths(wanted, [thread.reckoned_mm for thread in shelf])
+    return sum(usable[thread.reckoned_mm] for thread in shelf)
 
 
 def _lots(shelf: list[ShelfThread]) -> tuple[Lot, ...]:

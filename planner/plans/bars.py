@@ -38,8 +38,8 @@ def _segment(start: float, width: float, colour: str, label: str) -> SafeString:
     text = SafeString("")
     if width >= NARROWEST_LABEL_PER_CENT:
         text = format_html(
-            '<text x="{:.3f}%" y="27" text-anchor="middle" fill="currentColor">{}</text>',
-            start + width / 2,
+            '<text x="{}%" y="27" text-anchor="middle" fill="currentColor">{}</text>',
+            f"{start + width / 2:.3f}",
             label,
         )
     return format_html(

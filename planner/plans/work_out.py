@@ -24,10 +24,14 @@ def work_out_plan(
     market_date: date | None,
     plan_number: int,
     today: date,
+    strict: bool = False,
 ) -> Snapshot:
+    """Lines that cannot be planned are named in the snapshot; `strict` refuses them instead."""
     if not lines:
         raise PlanError("There are no orders to plan yet. Add some first.")
     loaded = load_orders(lines, workshop)
+    if strict and loaded.problems:
+        raise PlanError(" ".join(loaded.problems[:3]))
     if not loaded.orders:
         raise PlanError("None of the orders can be planned. " + " ".join(loaded.problems[:3]))
     kinds, bracelets = explode(loaded.orders)

@@ -13,7 +13,8 @@ from planner.actions import BatchChanged, confirm_draft, save_lines
 from planner.forms import BatchForm
 from planner.models import Batch, OrderDraft
 from planner.order_list.limits import MAX_FILE_BYTES, OrderListError
-from planner.order_list.lines import Reading, read_lines
+from planner.order_list.lines import read_lines
+from planner.order_list.results import Reading
 from planner.order_list.table import Table, read_pasted, read_table
 from planner.orders.catalogue import load_catalogue
 from planner.orders.drafts import (

@@ -11,7 +11,6 @@ from patterns.models import Colourway, Pattern
 from planner.actions import WorkshopExists, start_workshop
 from planner.forms import WorkshopForm
 from planner.models import Batch
-from planner.sample.load import load_sample
 
 
 @require_GET
@@ -71,6 +70,8 @@ def first_steps() -> list[dict[str, object]]:
 
 @require_POST
 def open_sample(request: HttpRequest) -> HttpResponse:
+    from planner.sample.load import load_sample
+
     try:
         load_sample()
     except WorkshopExists as reason:

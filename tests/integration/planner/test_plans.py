@@ -1,0 +1,243 @@
+"""Plans: right sums, a snapshot that stays, and pages that say what changed."""
+
+from collections import Counter
+from decimal import Decimal
+
+import pytest
+from django.db import connection
+from django.test import Client
+from django.test.utils import CaptureQueriesContext
+from django.urls import reverse
+
+from inventory.actions import ChangeThread, RemoveThread, change_shelf
+from inventory.models import PutUp, Shade
+from patterns.actions import change_pattern
+from patterns.models import Colourway, KnottedLength
+from planner.actions import make_plan
+from planner.models import Batch, Plan, PlanPiece
+from planner.plans.store import read_snapshot
+from planner.plans.work_out import PlanError
+from tests.factories import (
+    make_batch,
+    make_colourway,
+    make_order,
+    make_pattern,
+    pattern_text,
+    put_thread,
+)
+
+
+def plan_of(batch: Batch) -> Plan:
+    return make_plan(batch=batch, user=None)
+
+
+def shade_of(colourway: Colourway, slot: str) -> Shade:
+    return colourway.shades_by_slot()[slot]
+
+
+def test_plan_of_one_bracelet_worked_by_hand(colourway: Colourway, batch: Batch) -> None:
+    """6 strands all forward, Medium with the default ties: worked example.
+
+    Medium is 140 mm; ceil(140 / (sqrt 2 * 0.9)) = 110 rows. Every strand's piece is
+    knotted * 1.1 + ends, up to 10 mm; each slot has two strands, and one skein of
+    8 m * 0.98 = 7840 mm holds both.
+    """
+    make_order(batch, colourway)
+    plan = plan_of(batch)
+    assert plan.bracelet_count == 1
+    assert plan.piece_count == 6
+    kind = plan.kinds.get()
+    assert kind.rows == 110
+    for shade in plan.shades.all():
+        pieces = [piece.cut_mm for piece in shade.pieces.all()]
+        assert len(pieces) == 2
+        assert shade.need_mm == sum(pieces)
+        assert (shade.shelf_mm, shade.usable_mm, shade.bought) == (0, 0, 1)
+        assert shade.bought_lower_bound == 1
+        assert shade.left_mm == 7_840 - sum(pieces)
+    assert plan.cost == Decimal("3.60")
+    assert plan.status == "optimal"
+
+
+def test_plan_takes_the_shelf_first(colourway: Colourway, batch: Batch) -> None:
+    put_thread(shade_of(colourway, "A"), 7_000)
+    make_order(batch, colourway)
+    plan = plan_of(batch)
+    shade = plan.shades.get(code=shade_of(colourway, "A").code)
+    assert shade.bought == 0
+    assert shade.usable_mm == shade.need_mm
+    assert shade.left_mm == 7_000 - shade.need_mm
+
+
+def test_plan_keeps_each_bracelets_shade_in_one_lot(colourway: Colourway, batch: Batch) -> None:
+    shade = shade_of(colourway, "A")
+    for number in range(6):
+        put_thread(shade, 1_300, lot=f"L{number}")
+    make_order(batch, colourway, quantity=3)
+    plan = plan_of(batch)
+    lots: dict[int, set[tuple[bool, str]]] = {}
+    for piece in PlanPiece.objects.filter(shade__plan=plan).select_related("stock"):
+        assert piece.stock is not None
+        place = (piece.stock.is_new, piece.stock.lot_name)
+        lots.setdefault(piece.bracelet_id * 1_000 + piece.shade_id, set()).add(place)
+    assert all(len(found) == 1 for found in lots.values())
+
+
+def test_plan_stored_reads_back_the_same(colourway: Colourway, batch: Batch) -> None:
+    put_thread(shade_of(colourway, "B"), 900, 2_000, 5_000)
+    make_order(batch, colourway, quantity=4, for_whom="the choir")
+    make_order(batch, colourway, quantity=2, ending="Folded start, plaited end")
+    plan = plan_of(batch)
+    snapshot = read_snapshot(plan)
+    pieces = Counter(
+        (cut.tag_number, cut.piece_index)
+        for shade in snapshot.shades
+        for stock in shade.stock
+        for cut in stock.cuts
+    )
+    wanted = Counter(
+        (bracelet.number, index)
+        for bracelet in snapshot.bracelets
+        for index in range(len(snapshot.kinds[bracelet.kind_index].pieces))
+    )
+    assert pieces == wanted
+    for shade in snapshot.shades:
+        for stock in shade.stock:
+            assert sum(cut.cut_mm for cut in stock.cuts) + stock.left_mm == stock.reckoned_mm
+    assert snapshot.cost == plan.cost
+
+
+def test_plan_stays_when_everything_behind_it_changes(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    (thread,) = put_thread(shade_of(colourway, "A"), 7_000)
+    line = make_order(batch, colourway, quantity=2, for_whom="the choir")
+    plan = plan_of(batch)
+    before = read_snapshot(plan)
+    change_pattern(
+        pattern=colourway.pattern,
+        text=pattern_text("Wave", strands="A A B B C C", rows=("b b b", "b b")),
+    )
+    KnottedLength.objects.update(knotted_length_mm=500)
+    Shade.objects.update(name="renamed", colour="#000000")
+    PutUp.objects.update(price=Decimal(9))
+    change_shelf(changes=[ChangeThread(thread.pk, "L9", "remnant", 400)])
+    line.delete()
+    assert read_snapshot(Plan.objects.get(pk=plan.pk)) == before
+    assert page.get(reverse("plan_detail", args=[plan.pk])).status_code == 200
+    for bracelet in plan.bracelets.all():
+        assert page.get(reverse("bracelet", args=[bracelet.pk])).status_code == 200
+
+
+def test_plan_page_says_that_the_shelf_has_changed(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    (thread,) = put_thread(shade_of(colourway, "A"), 7_000)
+    make_order(batch, colourway)
+    address = reverse("plan_detail", args=[plan_of(batch).pk])
+    assert "changed since" not in page.get(address).content.decode()
+    change_shelf(changes=[RemoveThread(thread.pk)])
+    assert "The shelf has changed since" in page.get(address).content.decode()
+
+
+def test_plan_page_says_that_the_orders_have_changed(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    make_order(batch, colourway)
+    address = reverse("plan_detail", args=[plan_of(batch).pk])
+    make_order(batch, colourway)
+    text = page.get(address).content.decode()
+    assert "have changed since" in text
+    assert "Make a new plan" in text
+
+
+def test_plan_without_put_ups_names_the_tags_left_out(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    PutUp.objects.all().delete()
+    make_order(batch, colourway, quantity=2)
+    plan = plan_of(batch)
+    assert plan.status == "feasible"
+    text = page.get(reverse("plan_detail", args=[plan.pk])).content.decode()
+    assert "tags 1, 2" in text
+
+
+def test_plan_leaves_out_a_line_without_knotted_length_and_says_so(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    make_order(batch, colourway)
+    lost = make_order(batch, colourway, size="Large")
+    KnottedLength.objects.filter(size=lost.size, ending=lost.ending).delete()
+    plan = plan_of(batch)
+    assert plan.bracelet_count == 1
+    assert plan.problems == [
+        f"Row 2: Large has no knotted length for {lost.ending}. Give it one under Sizes."
+    ]
+
+
+def test_plan_of_nothing_is_refused(page: Client, colourway: Colourway, batch: Batch) -> None:
+    with pytest.raises(PlanError, match="no orders"):
+        plan_of(batch)
+    response = page.post(reverse("plan_new", args=[batch.pk]), follow=True)
+    assert "no orders to plan yet" in response.content.decode()
+
+
+def test_plan_new_by_get_is_refused(page: Client, batch: Batch) -> None:
+    assert page.get(reverse("plan_new", args=[batch.pk])).status_code == 405
+
+
+def test_plan_numbers_count_up_within_the_batch(colourway: Colourway, batch: Batch) -> None:
+    other = make_batch("Other")
+    for owner in (batch, other):
+        make_order(owner, colourway)
+    assert [plan_of(batch).number, plan_of(batch).number, plan_of(other).number] == [1, 2, 1]
+
+
+def test_shade_page_full_and_fragment(page: Client, colourway: Colourway, batch: Batch) -> None:
+    make_order(batch, colourway)
+    plan = plan_of(batch)
+    shade = plan.shades.all()[0]
+    address = reverse("plan_shade", args=[plan.pk, shade.pk])
+    whole = page.get(address)
+    part = page.get(address, headers={"HX-Request": "true"})
+    assert "<html" in whole.content.decode()
+    assert "<html" not in part.content.decode()
+    assert "HX-Request" in part["Vary"]
+    assert page.get(reverse("plan_shade", args=[plan.pk + 1, shade.pk])).status_code == 404
+
+
+def test_plan_pages_query_count_is_flat(page: Client, colourway: Colourway) -> None:
+    def queries(kinds: int, quantity: int) -> list[int]:
+        batch = make_batch()
+        for number in range(kinds):
+            pattern = make_pattern(f"Pattern {kinds} {number}")
+            make_order(batch, make_colourway(pattern), quantity=quantity)
+        plan = plan_of(batch)
+        bracelet = plan.bracelets.all()[0]
+        shade = plan.shades.all()[0]
+        counts = []
+        for address in (
+            reverse("plan_detail", args=[plan.pk]),
+            reverse("plan_shade", args=[plan.pk, shade.pk]),
+            reverse("plan_bracelets", args=[plan.pk]),
+            reverse("bracelet", args=[bracelet.pk]),
+            reverse("plan_sheet", args=[plan.pk, "tags", "pdf"]),
+        ):
+            with CaptureQueriesContext(connection) as captured:
+                assert page.get(address).status_code == 200
+            counts.append(len(captured))
+        return counts
+
+    assert queries(2, 3) == queries(4, 6)
+
+
+def test_make_plan_query_count_is_flat(colourway: Colourway) -> None:
+    def queries(kinds: int) -> int:
+        batch = make_batch()
+        for number in range(kinds):
+            make_order(batch, make_colourway(make_pattern(f"Kind {kinds} {number}")), quantity=2)
+        with CaptureQueriesContext(connection) as captured:
+            plan_of(batch)
+        return len(captured)
+
+    assert queries(3) == queries(6)

@@ -1,0 +1,48 @@
+"""What a plan says of itself is what was proven, no more."""
+
+from dataclasses import dataclass
+from decimal import Decimal
+
+import pytest
+
+from planner.planning.wording import proof_of_plan, proof_of_shade, skeins
+
+
+@dataclass(frozen=True)
+class Shade:
+    bought: int
+    bought_lower_bound: int
+    cost: Decimal
+    lower_bound: Decimal
+    unplaced: tuple[int, ...] = ()
+
+
+@pytest.mark.parametrize(
+    ("bought", "bound", "cost", "lower", "sentence"),
+    [
+        (0, 0, "0", "0", "the shelf has enough"),
+        (3, 3, "3", "3", "fewer than 3 is impossible"),
+        (3, 2, "3", "3", "cheaper is impossible"),
+        (3, 2, "3", "2", "at least 2; not proven to be the fewest"),
+    ],
+)
+def test_proof_of_shade_says_what_the_bound_proves(
+    bought: int, bound: int, cost: str, lower: str, sentence: str
+) -> None:
+    assert proof_of_shade(Shade(bought, bound, Decimal(cost), Decimal(lower))) == sentence
+
+
+def test_proof_of_shade_without_thread_says_so() -> None:
+    shade = Shade(0, 0, Decimal(0), Decimal(0), unplaced=(4,))
+    assert "not enough thread" in proof_of_shade(shade)
+
+
+def test_proof_of_plan_claims_nothing_above_the_bound() -> None:
+    open_shade = Shade(3, 2, Decimal(3), Decimal(2))
+    proven = Shade(3, 3, Decimal(3), Decimal(3))
+    assert "Not proven" in proof_of_plan(open_shade, [open_shade])
+    assert proof_of_plan(proven, [proven]) == "Cheaper is impossible."
+
+
+def test_skeins_speaks_of_one_in_the_singular() -> None:
+    assert (skeins(1), skeins(2), skeins(0)) == ("1 skein", "2 skeins", "0 skeins")
