@@ -12,7 +12,7 @@ from django.db.models.deletion import ProtectedError
 
 from inventory.models import Shade, Workshop
 from patterns.cut_lengths import CutRule
-from patterns.defaults import BUTTONED_ENDINGS, DEFAULT_ENDINGS, DEFAULT_SIZES
+from patterns.defaults import BUTTONED_ENDINGS, DEFAULT_ENDINGS, DEFAULT_SIZES, SizeDefault
 from patterns.knots import DiagonalPattern
 from patterns.models import (
     Colourway,
@@ -216,19 +216,24 @@ def load_defaults() -> None:
     endings = {core.name: _default_ending(asdict(core)) for core in DEFAULT_ENDINGS}
     if not Ending.objects.filter(is_default=True).exists():
         set_default_ending(ending=next(iter(endings.values())))
-    for default in DEFAULT_SIZES:
-        size = Size.objects.filter(name__iexact=default.name).first() or Size.objects.create(
-            name=default.name,
-            wrist_min_mm=default.wrist_min_mm,
-            wrist_max_mm=default.wrist_max_mm,
-            is_child=default.is_child,
-        )
-        for ending_name, length_mm in default.knotted_length_mm:
-            KnottedLength.objects.get_or_create(
-                size=size,
-                ending=endings[ending_name],
-                defaults={"knotted_length_mm": length_mm},
-            )
+    sizes = {default: _default_size(default) for default in DEFAULT_SIZES}
+    KnottedLength.objects.bulk_create(
+        [
+            KnottedLength(size=size, ending=endings[name], knotted_length_mm=length_mm)
+            for default, size in sizes.items()
+            for name, length_mm in default.knotted_length_mm
+        ],
+        ignore_conflicts=True,
+    )
+
+
+def _default_size(default: SizeDefault) -> Size:
+    return Size.objects.filter(name__iexact=default.name).first() or Size.objects.create(
+        name=default.name,
+        wrist_min_mm=default.wrist_min_mm,
+        wrist_max_mm=default.wrist_max_mm,
+        is_child=default.is_child,
+    )
 
 
 def _default_ending(values: dict[str, Any]) -> Ending:

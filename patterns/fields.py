@@ -14,6 +14,8 @@ from patterns.pattern_file import MAX_FILE_BYTES
 class BlockField(forms.CharField):
     """Text of many lines, kept as typed but for its line ends; hidden characters are refused."""
 
+    default_error_messages = {"required": "Fill this in."}
+
     def __init__(self, **kwargs: Any) -> None:
         kwargs.setdefault("widget", forms.Textarea(attrs={"class": "code", "spellcheck": "false"}))
         super().__init__(strip=False, **kwargs)
@@ -33,6 +35,8 @@ class BlockField(forms.CharField):
 class NumberField(forms.CharField):
     """A plain number with a decimal point or comma, as Decimal."""
 
+    default_error_messages = {"required": "Fill this in."}
+
     def __init__(
         self, *, name: str, minimum: str, maximum: str, places: int, **kwargs: Any
     ) -> None:
@@ -48,7 +52,7 @@ class NumberField(forms.CharField):
 
     def to_python(self, value: Any) -> Decimal | None:  # type: ignore[override]
         text = super().to_python(value)
-        if text in self.empty_values:
+        if text is None or text == "":
             return None
         try:
             return parse_decimal(

@@ -15,6 +15,7 @@ from patterns.knots import MAX_NAME_LENGTH, DiagonalPattern, Finish, PatternErro
 from patterns.models import Colourway, Ending, Gauge, Pattern, Size
 from patterns.pattern_file import MAX_FILE_BYTES, read_pattern, write_pattern
 
+NOT_ON_LIST = "Choose one from the list."
 FINISH_CHOICES = [
     (Finish.EXACT.value, "after the rows that the length takes"),
     (Finish.NEAREST.value, "after whole repeats: the nearest number"),
@@ -58,7 +59,7 @@ class PatternFileForm(forms.Form):
         try:
             text = BlockField().clean(_decoded(upload))
         except ValidationError as error:
-            self.add_error("file", "The file is empty." if error.code == "required" else error)  # type: ignore[attr-defined]
+            self.add_error("file", "The file is empty." if error.code == "required" else error)
             return None
         self._show_in_box(text)
         return text
@@ -123,7 +124,11 @@ class PatternRowsForm(forms.Form):
         ),
         widget=forms.Textarea(attrs={"class": "code", "rows": 10, "spellcheck": "false"}),
     )
-    finish = forms.ChoiceField(label="The band ends", choices=FINISH_CHOICES)
+    finish = forms.ChoiceField(
+        label="The band ends",
+        choices=FINISH_CHOICES,
+        error_messages={"required": NOT_ON_LIST, "invalid_choice": NOT_ON_LIST},
+    )
 
     def clean(self) -> dict[str, Any]:
         cleaned = super().clean() or self.cleaned_data
@@ -268,7 +273,13 @@ class SizeForm(NamedForm):
 
     def __init__(self, *args: Any, unit: str, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
-        wrist = {"unit": unit, "minimum_mm": 50, "maximum_mm": 400}
+        required = {"required": "Type the girth of a wrist."}
+        wrist: dict[str, Any] = {
+            "unit": unit,
+            "minimum_mm": 50,
+            "maximum_mm": 400,
+            "error_messages": required,
+        }
         self.fields["wrist_min_mm"] = LengthField(label="Smallest wrist", **wrist)
         self.fields["wrist_max_mm"] = LengthField(label="Largest wrist", **wrist)
         self.endings = {ending.pk: ending for ending in Ending.objects.all()}
@@ -349,6 +360,7 @@ class EndingForm(NamedForm):
         Ending.objects.all(),
         required=False,
         empty_label="none yet",
+        error_messages={"invalid_choice": NOT_ON_LIST},
         label="Take the knotted lengths of every size from",
         help_text="Sizes have a knotted length for each ending. Start from those of a similar one.",
     )
@@ -360,6 +372,7 @@ class EndingForm(NamedForm):
             "start": "How it starts",
             "has_metal_or_button": "It has a button, bead or metal part: tags carry a caution",
         }
+        error_messages = {"start": {"required": NOT_ON_LIST, "invalid_choice": NOT_ON_LIST}}
 
     field_order = [
         "name", "start", "start_tie_mm", "end_tie_mm", "take_up", "closing_knot_mm", "grip_mm",
@@ -370,7 +383,12 @@ class EndingForm(NamedForm):
         super().__init__(*args, **kwargs)
         for name, (label, help_text) in ENDING_LENGTHS.items():
             self.fields[name] = LengthField(
-                label=label, help_text=help_text, unit=unit, minimum_mm=0, maximum_mm=2_000
+                label=label,
+                help_text=help_text,
+                unit=unit,
+                minimum_mm=0,
+                maximum_mm=2_000,
+                error_messages={"required": "Type a length; 0 where it takes none."},
             )
         if self.instance.pk is not None:
             del self.fields["lengths_like"]

@@ -1,5 +1,7 @@
 """What the pattern pages have in common."""
 
+from collections.abc import Mapping
+
 from django import forms
 from django.contrib import messages
 from django.db import models
@@ -28,10 +30,10 @@ def wants_fragment(request: HttpRequest) -> bool:
 
 
 def render_either(
-    request: HttpRequest, page: str, fragment: str, context: dict[str, object]
+    request: HttpRequest, page: str, fragment: str, context: Mapping[str, object]
 ) -> HttpResponse:
     template = fragment if wants_fragment(request) else page
-    response = render(request, template, {"section": "patterns"} | context)
+    response = render(request, template, {"section": "patterns", **context})
     patch_vary_headers(response, ["HX-Request"])
     return response
 
