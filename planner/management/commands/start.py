@@ -46,20 +46,28 @@ class Command(BaseCommand):
             raise CannotRun("Give --data once, and in full: --data DIR.")
         owner = prepare(settings.DATA_DIR)
         listener = listen(port)
+        server = make_server(listener)
         taken = listener.getsockname()[1]
         if taken != port:
             self.stderr.write(f"Port {port} is taken; using {taken}.")
-        address = f"http://{HOST}:{taken}{make_link_path(owner.get_username())}"
+        signal.signal(signal.SIGTERM, signal.default_int_handler)
+        try:
+            self.announce(f"http://{HOST}:{taken}{make_link_path(owner.get_username())}", browser)
+            # Returns on Ctrl-C, after the requests at hand are answered.
+            server.run()
+        except KeyboardInterrupt:
+            pass
+        self.stderr.write("The workshop is closed.")
+
+    def announce(self, address: str, browser: bool) -> None:
         self.stdout.write(f"Your workshop is open: {address}")
+        self.stdout.flush()
         self.stderr.write(
             f"The address works once, within {LIFETIME.total_seconds() / 60:.0f} minutes. "
             "Leave this window open; Ctrl-C closes the workshop."
         )
-        self.stdout.flush()
         if browser:
             threading.Thread(target=open_browser, args=[address], daemon=True).start()
-        serve(listener)
-        self.stderr.write("The workshop is closed.")
 
 
 def listen(port: int) -> socket.socket:
@@ -94,10 +102,10 @@ def open_browser(address: str) -> None:
         pass
 
 
-def serve(listener: socket.socket) -> None:
+def make_server(listener: socket.socket) -> Any:
     from waitress import create_server
 
-    server = create_server(
+    return create_server(
         get_wsgi_application(),
         sockets=[listener],
         threads=8,
@@ -106,6 +114,3 @@ def serve(listener: socket.socket) -> None:
         max_request_body_size=10 * settings.LARGEST_REQUEST_BYTES,
         clear_untrusted_proxy_headers=True,
     )
-    signal.signal(signal.SIGTERM, signal.default_int_handler)
-    # Returns on Ctrl-C, after the requests at hand are answered.
-    server.run()
