@@ -1,9 +1,11 @@
 """Batches of orders, and plans: what a batch needs, frozen at one moment."""
 
+from datetime import date
+
 from django.conf import settings
 from django.core.validators import MaxValueValidator, MinValueValidator
 from django.db import models
-from django.db.models import Count, Max, Q, QuerySet, Sum
+from django.db.models import Count, Max, OuterRef, Q, QuerySet, Subquery, Sum
 
 from patterns.models import Colourway, Ending, Pattern, Size
 
@@ -15,6 +17,21 @@ class BatchQuerySet(QuerySet["Batch"]):
         return self.annotate(
             line_count=Count("lines", distinct=True), latest_plan=Max("plans__number")
         ).order_by(models.F("market_date").desc(nulls_first=True), "-pk")
+
+
+    def for_home(self, today: date) -> "BatchQuerySet":
+        """Markets ahead, the next first; batches without a date come last."""
+        plans = Plan.objects.filter(batch=OuterRef("pk")).order_by("-number")
+        ahead = Q(market_date__isnull=True) | Q(market_date__gte=today)
+        return (
+            self.filter(ahead)
+            .annotate(
+                line_count=Count("lines", distinct=True),
+                latest_plan=Max("plans__number"),
+                latest_plan_pk=Subquery(plans.values("pk")[:1]),
+            )
+            .order_by(models.F("market_date").asc(nulls_last=True), "-pk")
+        )
 
 
 class Batch(models.Model):

@@ -18,14 +18,15 @@ def home(request: HttpRequest) -> HttpResponse:
     if Workshop.current() is None:
         return render(request, "planner/welcome.html")
     today = timezone.localdate()
-    batches = Batch.objects.for_batch_list()
-    upcoming = [
-        batch for batch in batches[:50] if not batch.market_date or batch.market_date >= today
-    ]
-    upcoming.sort(
-        key=lambda batch: (batch.market_date is None, batch.market_date or today, -batch.pk)
-    )
-    context = {"upcoming": upcoming[:6], "today": today, "steps": first_steps()}
+    upcoming = list(Batch.objects.for_home(today)[:7])
+    next_batch = upcoming[0] if upcoming else None
+    dated = next_batch and next_batch.market_date
+    context = {
+        "next_batch": next_batch,
+        "days_left": (dated - today).days if dated else None,
+        "upcoming": upcoming[1:],
+        "steps": first_steps(),
+    }
     return render(request, "planner/home.html", context)
 
 
