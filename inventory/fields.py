@@ -75,8 +75,8 @@ class LengthField(forms.CharField):
         return format_length(value, self.unit) if isinstance(value, int) else value
 
     def to_python(self, value: Any) -> int | None:  # type: ignore[override]
-        text = super().to_python(value)
-        if text in self.empty_values:
+        text = str(super().to_python(value))
+        if not text:
             return None
         # Inches are shown to the nearest sixteenth: what was left as shown keeps its millimetres.
         if self._initial_mm is not None and text == self.prepare_value(self._initial_mm):
@@ -122,8 +122,8 @@ class PriceField(forms.CharField):
         return f"{value:.2f}" if isinstance(value, Decimal) else value
 
     def to_python(self, value: Any) -> Decimal | None:  # type: ignore[override]
-        text = super().to_python(value)
-        if text in self.empty_values:
+        text = str(super().to_python(value))
+        if not text:
             return None
         try:
             return parse_decimal(
@@ -147,8 +147,8 @@ class QuantityField(forms.CharField):
         self.widget.attrs.setdefault("autocomplete", "off")
 
     def to_python(self, value: Any) -> int | None:  # type: ignore[override]
-        text = super().to_python(value)
-        if text in self.empty_values:
+        text = str(super().to_python(value))
+        if not text:
             return None
         try:
             return read_quantity(text, name=self.name, minimum=self.minimum, maximum=self.maximum)

@@ -14,6 +14,12 @@ LENGTH_HINT = {
 }
 
 
+def _set_unit(field: forms.Field, unit: str) -> None:
+    assert isinstance(field, LengthField)
+    field.unit = unit
+    field.help_text = LENGTH_HINT[unit]
+
+
 class SearchForm(forms.Form):
     q = LineField(label="Search", required=False, max_length=100)
 
@@ -65,9 +71,7 @@ class ThreadForm(forms.Form):
         super().__init__(*args, **kwargs)
         # Lots that are used up stay in the list: their thread may come back from a bracelet bag.
         self.lot_names = [lot.name for lot in shade.lots.all()]
-        length = self.fields["length"]
-        length.unit = unit
-        length.help_text = LENGTH_HINT[unit]
+        _set_unit(self.fields["length"], unit)
         self.fields["lot_name"].widget.attrs.update(list="lot-names", autocomplete="off")
 
 
@@ -96,8 +100,7 @@ class PutUpForm(forms.ModelForm):
     def __init__(self, *args: Any, unit: str, currency: str, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
         self.supplier_names = list(Supplier.objects.values_list("name", flat=True))
-        self.fields["length_mm"].unit = unit
-        self.fields["length_mm"].help_text = LENGTH_HINT[unit]
+        _set_unit(self.fields["length_mm"], unit)
         self.fields["price"].help_text = f"Of one, in {currency}."
         supplier = self.fields["supplier_name"]
         supplier.widget.attrs.update(list="supplier-names", autocomplete="off")

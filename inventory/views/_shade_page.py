@@ -1,6 +1,6 @@
 """The page of one shade, which several views show: its threads as bars, and a form to add more."""
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 
 from django.core.paginator import Paginator
@@ -74,7 +74,9 @@ def render_shade_page(request: HttpRequest, shade: Shade, form: ThreadAddForm) -
     return render(request, "inventory/shade_detail.html", context)
 
 
-def _by_lot(pieces: Iterable[ShelfPiece], lots: dict[int, Lot], longest_mm: int) -> list[LotOnPage]:
+def _by_lot(
+    pieces: Iterable[ShelfPiece], lots: Mapping[int, Lot], longest_mm: int
+) -> list[LotOnPage]:
     found: dict[int, LotOnPage] = {}
     for piece in pieces:
         lot = lots.get(piece.lot_id, piece.lot)

@@ -1,6 +1,7 @@
 """What the shelf's views have in common."""
 
-from collections.abc import Callable
+import secrets
+from collections.abc import Callable, Sequence
 
 from django import forms
 from django.contrib import messages
@@ -16,15 +17,23 @@ def habits() -> Workshop:
     return Workshop.current() or Workshop()
 
 
+def wants_fragment(request: HttpRequest) -> bool:
+    """When htmx restores a page from its history it needs the whole page."""
+    htmx = request.htmx  # type: ignore[attr-defined]
+    return bool(htmx) and not htmx.history_restore_request
+
+
 def say_with_undo(
     request: HttpRequest,
     text: str,
     *,
     undo_url: str,
-    values: list[tuple[str, object]] | None = None,
+    values: Sequence[tuple[str, object]] = (),
 ) -> None:
     """Tell what was done, with a button that posts `values` to `undo_url`."""
-    context = {"text": text, "undo_url": undo_url, "values": values or []}
+    # The button names its form by id: a message may stand in a paragraph, which holds no form.
+    form_id = f"undo-{secrets.token_hex(4)}"
+    context = {"text": text, "undo_url": undo_url, "values": values, "form_id": form_id}
     # The rendered text is marked safe, and messages keep that mark.
     messages.success(request, render_to_string("inventory/_undo.html", context, request))
 

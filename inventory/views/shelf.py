@@ -7,6 +7,7 @@ from django.views.decorators.vary import vary_on_headers
 
 from inventory.forms import SearchForm
 from inventory.models import Shade, ShelfPiece
+from inventory.views._shared import wants_fragment
 
 SHADES_A_PAGE = 100
 
@@ -18,14 +19,15 @@ def shelf(request: HttpRequest) -> HttpResponse:
     words = form.cleaned_data["q"] if form.is_valid() else ""
     shades = Shade.objects.for_shelf_page().search(words)
     page = Paginator(shades, SHADES_A_PAGE).get_page(request.GET.get("page"))
+    longest = (shade.shelf_mm for shade in page)  # type: ignore[attr-defined]  # annotated
     context = {
         "section": "shelf",
         "form": form,
         "words": words,
         "page": page,
-        "longest_mm": max((shade.shelf_mm for shade in page), default=0),
+        "longest_mm": max(longest, default=0),
     }
-    if request.htmx and not request.htmx.history_restore_request:
+    if wants_fragment(request):
         return render(request, "inventory/_shade_list.html", context)
     totals = ShelfPiece.objects.on_shelf().aggregate(
         pieces=Count("pk"),
