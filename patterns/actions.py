@@ -6,7 +6,6 @@ from decimal import Decimal
 from fractions import Fraction
 from typing import Any
 
-from django.core.exceptions import ValidationError
 from django.db import IntegrityError, models, transaction
 from django.db.models.deletion import ProtectedError
 
@@ -70,10 +69,9 @@ def _fill(pattern: Pattern, text: str) -> DiagonalPattern:
 def _save_once(thing: models.Model, taken: str) -> None:
     """Two requests may both find the name free, so the constraint has the last word."""
     try:
-        thing.validate_constraints()
         with transaction.atomic():
             thing.save()
-    except (ValidationError, IntegrityError):
+    except IntegrityError:
         raise LibraryError(taken) from None
 
 

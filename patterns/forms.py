@@ -130,6 +130,16 @@ class PatternRowsForm(forms.Form):
         error_messages={"required": NOT_ON_LIST, "invalid_choice": NOT_ON_LIST},
     )
 
+    def clean_strands(self) -> str:
+        """Read with rows that may not fit: what is wrong without naming a row is the strands."""
+        strands: str = self.cleaned_data["strands"]
+        try:
+            read_pattern(_as_file(PROBE | {"strands": strands}))
+        except PatternError as error:
+            if error.row is None:
+                raise ValidationError(str(error)) from None
+        return strands
+
     def clean(self) -> dict[str, Any]:
         cleaned = super().clean() or self.cleaned_data
         if not self.errors:
@@ -137,6 +147,9 @@ class PatternRowsForm(forms.Form):
         if "definition" in cleaned:
             cleaned["pattern_text"] = write_pattern(cleaned["definition"])
         return cleaned
+
+
+PROBE = {"name": "Probe", "rows": "f\nf", "finish": Finish.EXACT.value}
 
 
 def _as_file(cleaned: dict[str, Any]) -> str:

@@ -86,6 +86,18 @@ def test_pattern_new_typed_wrong_says_what_and_where(maker, change, words):
     assert words in errors(response)
 
 
+@pytest.mark.parametrize("strands", ["A", "A B ! C", "AB C", "A " * 61])
+def test_pattern_new_typed_wrong_strands_are_marked_there(maker, strands):
+    form = maker.post(NEW, ROWS | {"strands": strands}).context["rows_form"]
+    assert list(form.errors) == ["strands"]
+
+
+@pytest.mark.parametrize("strands", ["A B", "A B C", "A B C D", "A B C D E"])
+def test_pattern_new_typed_wrong_rows_are_marked_there(maker, strands):
+    data = ROWS | {"strands": strands, "rows": "f f f f\nf"}
+    assert list(maker.post(NEW, data).context["rows_form"].errors) == ["rows"]
+
+
 def test_pattern_new_typed_wrong_loses_nothing(maker):
     page = maker.post(NEW, ROWS | {"rows": "f b\nf q"}).content.decode()
     assert 'value="Quay"' in page
