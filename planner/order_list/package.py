@@ -66,7 +66,10 @@ def _check_sizes(entries: list[zipfile.ZipInfo]) -> None:
         raise OrderListError(f"The workbook is locked with a password. {_SAVE_AS}")
     unpacked = sum(entry.file_size for entry in entries)
     if unpacked > MAX_UNPACKED_BYTES or any(_is_too_dense(entry) for entry in entries):
-        raise _too_large()
+        raise OrderListError(
+            f"The workbook unpacks to more than {MAX_UNPACKED_BYTES // 1024**2} MB, the limit, "
+            f"or is mostly empty rows. {_COPY_ORDERS}"
+        )
 
 
 def _is_too_dense(entry: zipfile.ZipInfo) -> bool:
@@ -75,22 +78,14 @@ def _is_too_dense(entry: zipfile.ZipInfo) -> bool:
     return entry.file_size > MAX_UNPACKED_RATIO * entry.compress_size
 
 
-def _too_large() -> OrderListError:
-    return OrderListError(
-        f"The workbook unpacks to more than {MAX_UNPACKED_BYTES // 1024**2} MB, the limit, "
-        f"or is mostly empty rows. {_COPY_ORDERS}"
-    )
-
-
 def _copy_parts(archive: zipfile.ZipFile, entries: list[zipfile.ZipInfo]) -> io.BytesIO:
     target = io.BytesIO()
-    left, tags = MAX_UNPACKED_BYTES, 0
+    tags = 0
     with zipfile.ZipFile(target, "w") as copy:
         for name in dict.fromkeys(entry.filename for entry in entries):
             if not name.casefold().endswith((".xml", ".rels")):
                 continue
-            part = _read_part(archive, name, left)
-            left -= len(part)
+            part = _read_part(archive, name)
             tags += part.count(b"<")
             _check_part(part, tags)
             copy.writestr(name, part)
@@ -98,16 +93,11 @@ def _copy_parts(archive: zipfile.ZipFile, entries: list[zipfile.ZipInfo]) -> io.
     return target
 
 
-def _read_part(archive: zipfile.ZipFile, name: str, left: int) -> bytes:
-    # In chunks: reading a part at once unpacks all of it first, whatever size its header gives.
-    chunks = []
+def _read_part(archive: zipfile.ZipFile, name: str) -> bytes:
+    # In chunks zipfile stops at the size in the header, and then misses the checksum if that was a
+    # lie. A part read at once is unpacked whole first, whatever its header says.
     with archive.open(name) as part:
-        while chunk := part.read(_CHUNK_BYTES):
-            left -= len(chunk)
-            if left < 0:
-                raise _too_large()
-            chunks.append(chunk)
-    return b"".join(chunks)
+        return b"".join(iter(lambda: part.read(_CHUNK_BYTES), b""))
 
 
 def _check_part(part: bytes, tags: int) -> None:

@@ -134,7 +134,7 @@ def test_size_written_in_a_sheet_does_not_matter(dimension: str) -> None:
     ("changes", "sentence"),
     [
         ({"xl/vbaProject.bin": b"x"}, "holds macros"),
-        ({"xl/media/a.bin": b" " * 51 * 1024**2}, "unpacks to more than 50 MB"),
+        ({f"xl/media/{n}.bin": b" " * 1024**2 for n in range(51)}, "unpacks to more than 50 MB"),
         ({"xl/a.xml": b" " * 2 * 1024**2}, "is mostly empty rows"),
         ({STRINGS: b"<!DOCTYPE a><sst/>"}, "declares XML entities"),
         ({STRINGS: "<!ENTITY a>".encode("utf-16")}, "declares XML entities"),
@@ -149,6 +149,19 @@ def test_workbook_refused_says_why(changes: dict[str, bytes], sentence: str) -> 
     # Noise beside a dense part must not hide how dense it is.
     with pytest.raises(OrderListError, match=sentence):
         read_table(zipped(parts | changes | {"xl/noise.bin": bytes(range(256)) * 10}))
+
+
+def test_workbook_with_a_password_is_refused() -> None:
+    locked = bytearray(zipped(parts_of([["Wave", "Large"]])))
+    for signature, flags in ((b"PK\x01\x02", 8), (b"PK\x03\x04", 6)):
+        locked[locked.find(signature) + flags] |= 1
+    with pytest.raises(OrderListError, match="locked with a password"):
+        read_table(bytes(locked))
+
+
+def test_sheet_that_spans_a_million_cells_is_refused() -> None:
+    with pytest.raises(OrderListError, match="spans more than 1,000,000 cells"):
+        read_sheet(*['<row><c r="XFD1" s="1"/></row>'] * 62)
 
 
 def test_zip_without_a_workbook_is_refused() -> None:
