@@ -121,12 +121,15 @@ def test_inches_keep_their_fractions_and_their_room(paper):
 
 
 @PAPER_CASES
-def test_long_list_of_one_thread_is_continued(paper):
-    cuts = tuple(SheetCut(n, (1,), "A", 400, None) for n in range(1, 251))
-    spool = stock(1, 1, 100_000, cuts=cuts, left_mm=0, source="Spool of 100 m")
+@pytest.mark.parametrize("count", [36, 37, 250])
+def test_long_list_of_one_thread_is_continued(paper, count):
+    cuts = tuple(SheetCut(n, (1,), "A", 400, None) for n in range(1, count + 1))
+    spool = stock(1, 1, 100_000, cuts=cuts, left_mm=100_000 - 400 * count, source="Spool of 100 m")
     document = build_cutting_sheet(cutting_sheet(shade_cuts(0, spool)), paper)
-    assert listed(document) == [("40", str(n)) for n in range(1, 251)]
-    assert "Spool of 100 m (continued)" in all_text(document)
+    assert listed(document) == [("40", str(n)) for n in range(1, count + 1)]
+    order = [run.text for run in runs(document) if run.size == 8.5 and run.text.isdigit()]
+    assert order == [str(n) for n in range(1, count + 1)]
+    assert ("Spool of 100 m (continued)" in all_text(document)) == (count > 36)
     assert overlapping(runs(document)) == []
 
 

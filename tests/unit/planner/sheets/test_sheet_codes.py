@@ -72,6 +72,18 @@ def test_quiet_zone_of_4_modules_is_white_on_the_page(paper, address):
         assert around.min() >= 250
 
 
+@pytest.mark.parametrize("paper", PAPERS.values(), ids=PAPERS.keys())
+def test_quiet_zone_stays_on_its_own_tag_when_cut(paper):
+    document = build_tag_sheet(tag_sheet(*[tag(number) for number in range(1, 9)]), paper)
+    edge, dots = millimetres(8), PRINTER_DPI / 72
+    width = (paper.width_pt - 2 * edge) / 2
+    for code in decoded(rendered(document, PRINTER_DPI)):
+        right = code.position.top_right.x / dots
+        module = (right - code.position.top_left.x / dots) / code_for(code.text).modules
+        cut_line = edge + width * (1 if right < paper.width_pt / 2 else 2)
+        assert cut_line - right >= 4 * module
+
+
 def tag_with(each, address):
     return tag(
         each.number,

@@ -5,6 +5,7 @@ import subprocess
 import sys
 from functools import cache
 from io import BytesIO
+from itertools import pairwise
 from pathlib import Path
 
 import numpy as np
@@ -12,6 +13,7 @@ import pytest
 from pypdf import PdfReader
 from sheet_factories import (
     CAUTIONS,
+    HEAD,
     cutting_sheet,
     order,
     purchase_row,
@@ -24,9 +26,9 @@ from sheet_factories import (
 from sheet_reading import page_count, page_texts, rendered
 
 from planner.sheets.cutting import build_cutting_sheet
-from planner.sheets.pages import Block, Heading, paginate
+from planner.sheets.pages import Block, Heading, Opening, draw_document, paginate
 from planner.sheets.paper import PAPERS
-from planner.sheets.pen import letter_colour_on, thread_colour
+from planner.sheets.pen import Pen, letter_colour_on, thread_colour
 from planner.sheets.purchase import build_purchase_sheet
 from planner.sheets.tags import build_tag_sheet
 
@@ -147,6 +149,22 @@ def test_paginate_keeps_a_heading_with_its_first_block():
     mixed = blocks_of([50]) + blocks_of([40], heading)
     assert [len(page) for page in paginate(mixed, first=109, later=200)] == [1, 1]
     assert [len(page) for page in paginate(mixed, first=110, later=200)] == [2]
+
+
+@PAPER_CASES
+def test_blocks_stand_below_each_other_and_above_the_foot(paper):
+    drawn = []
+
+    def recorded(height):
+        return Block(height, lambda pen, top: drawn.append((top, top - height)))
+
+    heights = [90.0, 30.0, 200.0, 10.0] * 9
+    pen = Pen(paper, "Recorded", HEAD)
+    draw_document(pen, HEAD, Opening("Recorded", ""), [recorded(each) for each in heights])
+    assert [round(top - foot, 6) for top, foot in drawn] == heights
+    for (_, foot), (top, _) in pairwise(drawn):
+        assert top == pytest.approx(foot) or top > paper.height_pt - 100
+    assert min(foot for _, foot in drawn) >= 16 / 25.4 * 72 - 1e-6
 
 
 def test_letters_on_thread_are_readable():

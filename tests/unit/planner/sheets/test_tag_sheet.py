@@ -192,6 +192,9 @@ def test_lengths_are_in_the_makers_unit():
 
 
 def test_shared_drawing_is_stored_once():
+    equal = [tag(1), tag(2, drawing=replace(band(6)))]
+    assert equal[0].drawing is not equal[1].drawing
+    assert build_tag_sheet(tag_sheet(*equal), A4).count(b"/Subtype /Form") == 1
     shared = build_tag_sheet(tag_sheet(*[tag(number) for number in range(1, 9)]), A4)
     own = [tag(number, drawing=band(6, 100 + number)) for number in range(1, 9)]
     assert shared.count(b"/Subtype /Form") == 1
