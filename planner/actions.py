@@ -2,7 +2,6 @@
 
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import replace
-from decimal import Decimal
 from typing import Any
 
 from django.db import transaction
@@ -38,31 +37,11 @@ class BatchChanged(ValueError):
 
 
 @transaction.atomic
-def start_workshop(
-    *,
-    name: str,
-    length_unit: str = "cm",
-    currency: str = "EUR",
-    paper: str = "A4",
-    rounding_step_mm: Decimal = Decimal(10),
-    safety_share: Decimal = Decimal("0.1"),
-    short_measure_share: Decimal = Decimal("0.02"),
-    keep_length_mm: int = 300,
-) -> Workshop:
-    """Make the workshop with the usual sizes, endings and gauge."""
-    if Workshop.current() is not None:
+def start_workshop(*, name: str, **habits: Any) -> Workshop:
+    """Make the workshop with the usual sizes, endings and gauge; `habits` are its other fields."""
+    workshop, is_new = Workshop.objects.get_or_create(pk=1, defaults={"name": name, **habits})
+    if not is_new:
         raise WorkshopExists("There is a workshop here already.")
-    workshop = Workshop.objects.create(
-        pk=1,
-        name=name,
-        length_unit=length_unit,
-        currency=currency,
-        paper=paper,
-        rounding_step_mm=rounding_step_mm,
-        safety_share=safety_share,
-        short_measure_share=short_measure_share,
-        keep_length_mm=keep_length_mm,
-    )
     load_defaults()
     return workshop
 
