@@ -2,6 +2,7 @@
 
 import math
 from decimal import Decimal
+from functools import lru_cache
 
 from django.core.validators import MaxValueValidator, MinValueValidator, RegexValidator
 from django.db import models
@@ -172,6 +173,12 @@ class PatternQuerySet(QuerySet["Pattern"]):
         return found
 
 
+@lru_cache(maxsize=128)
+def _read_once(text: str) -> DiagonalPattern:
+    """Lists read the same patterns again and again; what is read is frozen, so it can be shared."""
+    return pattern_file.read_pattern(text)
+
+
 class Pattern(models.Model):
     """A pattern as its own text; `definition` reads it for the cores."""
 
@@ -205,7 +212,7 @@ class Pattern(models.Model):
 
     @property
     def definition(self) -> DiagonalPattern:
-        return pattern_file.read_pattern(self.text)
+        return _read_once(self.text)
 
 
 class Colourway(models.Model):

@@ -40,7 +40,7 @@ def test_pattern_new_pasted_is_kept_as_typed(maker):
 @pytest.mark.parametrize("mark", [b"", b"\xef\xbb\xbf"])
 def test_pattern_new_uploaded(maker, mark):
     maker.post(NEW, upload(mark + pattern_text("Quay").encode()))
-    assert Pattern.objects.get().name == "Quay"
+    assert Pattern.objects.get().text == pattern_text("Quay")
 
 
 def test_pattern_new_typed_becomes_the_same_text_as_a_file(maker):

@@ -32,7 +32,9 @@ def test_answer_for_adds_up_over_strands_and_slots():
     assert found.total_mm == sum(line.piece.cut_mm for line in found.pieces)
     assert found.total_mm == sum(line.total_mm for line in found.slots)
     assert [(line.slot, line.pieces) for line in found.slots] == [("A", 2), ("B", 2), ("C", 2)]
-    assert found.shortest_mm <= found.longest_mm
+    cuts = sorted(line.piece.cut_mm for line in found.pieces)
+    assert cuts[0] < cuts[-1]
+    assert (found.shortest_mm, found.longest_mm) == (cuts[0], cuts[-1])
     assert not found.has_folds
 
 
