@@ -41,7 +41,7 @@ def _colourway_form(
         shades=Shade.objects.all(),
         initial=request.POST.dict() if only_look else _initial(colourway),
     )
-    if request.method == "POST" and not only_look and form.is_valid():
+    if form.is_valid():
         saved = _saved(form, pattern, colourway)
         if saved:
             messages.success(request, f"{saved.name} is saved. You can put it in an order now.")

@@ -46,7 +46,8 @@ def test_library_says_which_slots_wait_for_a_shade(maker):
 
 
 @pytest.mark.parametrize(
-    ("words", "found"), [("ferry", {"Ferry"}), ("e r", {"Ferry", "Pier"}), ("zz", set())]
+    ("words", "found"),
+    [("ferry", {"Ferry"}), ("ferry\0", {"Ferry"}), ("e r", {"Ferry", "Pier"}), ("zz", set())],
 )
 def test_library_search_finds_all_words(maker, words, found):
     for name in ("Ferry", "Pier", "Quay"):
