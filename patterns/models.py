@@ -246,6 +246,7 @@ class ColourwayShade(models.Model):
     shade = models.ForeignKey(Shade, on_delete=models.PROTECT, related_name="colourway_slots")
 
     class Meta:
+        verbose_name = "colourway slot"
         ordering = ["slot"]
         constraints = [
             models.UniqueConstraint(fields=["colourway", "slot"], name="colourway_slot_once"),

@@ -39,12 +39,6 @@ def length_unit_name(context: Context) -> str:
 
 
 @register.simple_tag(takes_context=True)
-def length_total(context: Context, length_mm: int) -> str:
-    """A total in the larger unit, as a bare number: metres, or yards for those who use inches."""
-    return f"{int(length_mm) / (914.4 if unit_of(context) == 'in' else 1000):,.2f}"
-
-
-@register.simple_tag(takes_context=True)
 def money(context: Context, amount: Decimal) -> str:
     currency = context.get("currency")
     workshop = context.get("workshop")

@@ -116,6 +116,7 @@ class Migration(migrations.Migration):
                 ('shade', models.ForeignKey(on_delete=django.db.models.deletion.PROTECT, related_name='colourway_slots', to='inventory.shade')),
             ],
             options={
+                'verbose_name': 'colourway slot',
                 'ordering': ['slot'],
                 'constraints': [models.UniqueConstraint(fields=('colourway', 'slot'), name='colourway_slot_once')],
             },

@@ -24,6 +24,7 @@ from planner.sheets.contents import (
 )
 
 ROWS_DRAWN_ON_A_TAG = 40
+MOST_TAGS_NAMED = 20
 
 
 def sheet_head(snapshot: Snapshot) -> SheetHead:
@@ -65,7 +66,21 @@ def purchase_sheet(snapshot: Snapshot) -> PurchaseSheet:
             for supplier, found in sorted(rows.items())
         ),
         cost=snapshot.cost,
+        notices=left_out(snapshot),
     )
+
+
+def left_out(snapshot: Snapshot) -> tuple[str, ...]:
+    """Say what the sheet lacks: lines that could not be planned, tags without thread."""
+    without_thread = (
+        f"No thread of {shade.code} {shade.name} for "
+        + ("tag " if len(shade.unplaced) == 1 else "tags ")
+        + ", ".join(str(number) for number in shade.unplaced[:MOST_TAGS_NAMED])
+        + (" and more." if len(shade.unplaced) > MOST_TAGS_NAMED else ".")
+        for shade in snapshot.shades
+        if shade.unplaced
+    )
+    return (*(f"Not in this plan: {problem}" for problem in snapshot.problems), *without_thread)
 
 
 def cutting_sheet(snapshot: Snapshot) -> CuttingSheet:
@@ -95,6 +110,7 @@ def cutting_sheet(snapshot: Snapshot) -> CuttingSheet:
             for shade in snapshot.shades
             if shade.stock
         ),
+        notices=left_out(snapshot),
     )
 
 

@@ -44,6 +44,8 @@ def proof_of_shade(shade: ShadeResult) -> str:
         return "not enough thread, and nothing to buy it from"
     if shade.bought == 0:
         return "the shelf has enough"
+    if shade.bought == shade.bought_lower_bound == 1:
+        return "the shelf alone is not enough"
     if shade.bought == shade.bought_lower_bound:
         return f"fewer than {shade.bought} is impossible"
     if shade.cost == shade.lower_bound:

@@ -6,10 +6,10 @@ from typing import Any
 from django.utils import timezone
 
 from inventory.models import Workshop
-from patterns.drawing import to_svg
 from patterns.geometry import Gauge
+from patterns.pattern_file import read_pattern
+from patterns.pictures import band_picture
 from planner.models import Plan, PlanBracelet, PlanPiece, PlanShade, PlanStock
-from planner.planning.sheet_contents import kind_drawing
 from planner.planning.wording import proof_of_plan, proof_of_shade, skeins
 from planner.plans.bars import stock_bar
 from planner.plans.load import load_orders, load_shelf, orders_stamp
@@ -133,5 +133,10 @@ def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
         "gauge": gauge,
         "safety_share": making["safety_share"],
         "rounding_step_mm": making["rounding_step_mm"],
-        "drawing": to_svg(kind_drawing(kind), title=f"{kind.pattern_name} as it looks when tied"),
+        "drawing": band_picture(
+            read_pattern(kind.pattern_text),
+            kind.rows,
+            kind.colours,
+            title=f"{kind.pattern_name} as it looks when tied",
+        ),
     }

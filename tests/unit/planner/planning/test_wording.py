@@ -21,6 +21,7 @@ class Shade:
     ("bought", "bound", "cost", "lower", "sentence"),
     [
         (0, 0, "0", "0", "the shelf has enough"),
+        (1, 1, "1", "1", "the shelf alone is not enough"),
         (3, 3, "3", "3", "fewer than 3 is impossible"),
         (3, 2, "3", "3", "cheaper is impossible"),
         (3, 2, "3", "2", "at least 2; not proven to be the fewest"),
