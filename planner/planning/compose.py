@@ -186,7 +186,7 @@ def _stock(
     if opened.offer_key is not None:
         offer = offers[opened.offer_key]
         return SnapshotStock(
-            source=f"new skein {new_count}: {offer.name}",
+            source=f"new thread {new_count}: {offer.name}",
             shelf_piece_number=None,
             lot_name="",
             is_new=True,

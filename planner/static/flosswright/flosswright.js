@@ -17,3 +17,17 @@ document.addEventListener("submit", (event) => {
 window.addEventListener("pageshow", () => {
   for (const form of document.querySelectorAll("form[data-sent]")) delete form.dataset.sent;
 });
+
+// A link that opens a place on the page closes it again at the second click.
+document.addEventListener("htmx:beforeRequest", (event) => {
+  const opener = event.detail.elt;
+  if (!opener.dataset || !opener.dataset.opens) return;
+  const place = document.getElementById(opener.dataset.opens);
+  const isOpen = place.childElementCount > 0;
+  if (isOpen) {
+    event.preventDefault();
+    place.replaceChildren();
+    place.textContent = "";
+  }
+  opener.setAttribute("aria-expanded", String(!isOpen));
+});
