@@ -17,6 +17,8 @@ SUM_CELLS = 200_000
 """Largest capacity whose reachable sums are searched; beyond it long pieces go in first."""
 VALUE_CELLS = 20_000
 """The same for the table of values, which costs far more a cell."""
+PASSES_BETWEEN_FRESH_STARTS = 10
+"""Luck is heavy-tailed: many short runs find a tight packing sooner than one long run (measured)."""
 STEP_WORK = 3_000
 """What starting one step of that table costs, in cells (measured)."""
 
@@ -125,7 +127,8 @@ class CorrectedValues(Filler):
     -----
     After a filling of capacity C that uses U, each length l in it gets the value
     (g v + (C / U) (l / longest)^p) / (g + 1), with g random and larger for a length that is still
-    plentiful. One object is used for many passes over the problem, so that it learns.
+    plentiful. One object is used for many passes over the problem, so that it learns; now
+    and then it starts afresh.
 
     References
     ----------
@@ -139,12 +142,16 @@ class CorrectedValues(Filler):
         self.longest = max(demand)
         self.random = random.Random(seed)
         self.power = 1.03
-        self.values = {length: (length / self.longest) ** self.power for length in demand}
+        self.values: dict[int, float] = {}
+        self.passes = 0
         self.work = 0
 
     def start_pass(self) -> None:
-        """Choose how much long pieces are preferred in the next pass."""
+        """Choose how much long pieces are preferred in the next pass; forget now and then."""
         self.power = self.random.uniform(1.0, 1.25)
+        if self.passes % PASSES_BETWEEN_FRESH_STARTS == 0:
+            self.values = {length: (length / self.longest) ** self.power for length in self.demand}
+        self.passes += 1
 
     def fill(self, lengths: Sequence[int], counts: Sequence[int], capacity: int) -> Pattern:
         def fill_exactly(lengths: Sequence[int], counts: Sequence[int], capacity: int) -> Pattern:
@@ -240,9 +247,10 @@ def most_valuable(
     for index, (length, count, value) in enumerate(zip(lengths, counts, values, strict=True)):
         for multiple in _split(min(count, capacity // length)):
             weight = length * multiple
+            without_it = best[weight:]
             with_it = best[: capacity + 1 - weight] + multiple * value
-            taken = with_it > best[weight:] + 1e-12
-            best[weight:][taken] = with_it[taken]
+            taken = with_it > without_it
+            np.maximum(without_it, with_it, out=without_it)
             steps.append((index, multiple, weight, taken))
     rest = int(best.argmax())
     chosen: dict[int, int] = {}
