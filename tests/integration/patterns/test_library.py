@@ -47,7 +47,7 @@ def test_library_says_which_slots_wait_for_a_shade(maker):
 
 @pytest.mark.parametrize(
     ("words", "found"),
-    [("ferry", {"Ferry"}), ("ferry\0", {"Ferry"}), ("e r", {"Ferry", "Pier"}), ("zz", set())],
+    [("ferry", {"Ferry"}), ("e r", {"Ferry", "Pier"}), ("zz", set())],
 )
 def test_library_search_finds_all_words(maker, words, found):
     for name in ("Ferry", "Pier", "Quay"):
@@ -92,6 +92,11 @@ def test_library_search_for_anything_is_answered(maker, words):
     response = maker.get(LIBRARY, {"q": words})
     assert response.status_code == 200
     assert b"<script>alert" not in response.content
+
+
+def test_library_search_with_a_null_looks_for_the_rest(maker):
+    # SQLite would bear it; PostgreSQL refuses a text with it.
+    assert maker.get(LIBRARY, {"q": "fer\0ry"}).context["words"] == "fer ry"
 
 
 def test_library_refuses_other_methods(maker):
