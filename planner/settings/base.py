@@ -154,7 +154,10 @@ LOGGING: dict[str, Any] = {
         "django": {"handlers": [], "level": "WARNING", "propagate": True},
         # Pages not found are no news to a maker; failures (5xx) are.
         "django.request": {"level": "ERROR"},
-        # Anybody can send a wrong Host; the answer is a 400 and needs no traceback.
+        # Anybody can send these; the page says what was wrong, and no traceback is needed.
         "django.security.DisallowedHost": {"level": "CRITICAL"},
+        "django.security.RequestDataTooBig": {"level": "CRITICAL"},
+        "django.security.TooManyFieldsSent": {"level": "CRITICAL"},
+        "django.security.TooManyFilesSent": {"level": "CRITICAL"},
     },
 }
