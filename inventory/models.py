@@ -39,7 +39,7 @@ class Workshop(models.Model):
         max_digits=5,
         decimal_places=2,
         default=Decimal(10),
-        validators=[MinValueValidator(Decimal(1)), MaxValueValidator(Decimal(200))],
+        validators=[MinValueValidator(Decimal(1)), MaxValueValidator(Decimal(100))],
     )
     keep_length_mm = models.PositiveIntegerField(default=300, validators=length_validators)
     short_measure_share = models.DecimalField(

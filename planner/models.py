@@ -18,7 +18,6 @@ class BatchQuerySet(QuerySet["Batch"]):
             line_count=Count("lines", distinct=True), latest_plan=Max("plans__number")
         ).order_by(models.F("market_date").desc(nulls_first=True), "-pk")
 
-
     def for_home(self, today: date) -> "BatchQuerySet":
         """Markets ahead, the next first; batches without a date come last."""
         plans = Plan.objects.filter(batch=OuterRef("pk")).order_by("-number")
@@ -269,18 +268,17 @@ class PlanStock(models.Model):
 
 
 class PlanPiece(models.Model):
-    """One piece to cut: from which stock, in which order, for which bracelet and strands."""
+    """One piece to cut: from which stock, in which order, for which bracelet.
+
+    `index` is its place among the pieces of the bracelet's kind, where strands and fold stand.
+    """
 
     bracelet = models.ForeignKey(PlanBracelet, on_delete=models.CASCADE, related_name="pieces")
     shade = models.ForeignKey(PlanShade, on_delete=models.CASCADE, related_name="pieces")
     stock = models.ForeignKey(PlanStock, on_delete=models.CASCADE, related_name="pieces", null=True)
     cut_position = models.PositiveIntegerField(null=True)
     index = models.PositiveIntegerField()
-    slot = models.CharField(max_length=1)
-    strands = models.JSONField()
     cut_mm = models.PositiveIntegerField()
-    fold_mm = models.PositiveIntegerField(null=True)
-    is_sliding = models.BooleanField(default=False)
 
     class Meta:
         ordering = ["bracelet_id", "index"]

@@ -1,6 +1,7 @@
 """What the pages of a plan show: the answer, and how each number was made."""
 
 from collections import Counter, defaultdict
+from dataclasses import dataclass
 from typing import Any
 
 from django.utils import timezone
@@ -9,11 +10,21 @@ from inventory.models import Workshop
 from patterns.geometry import Gauge
 from patterns.pattern_file import read_pattern
 from patterns.pictures import band_picture
-from planner.models import Plan, PlanBracelet, PlanPiece, PlanShade, PlanStock
+from planner.models import Plan, PlanBracelet, PlanShade, PlanStock
+from planner.planning.snapshot import SnapshotPiece
 from planner.planning.wording import proof_of_plan, proof_of_shade, skeins
 from planner.plans.bars import stock_bar
 from planner.plans.load import load_orders, load_shelf, orders_stamp
 from planner.plans.store import read_habits, read_kind
+
+
+@dataclass(frozen=True)
+class Cut:
+    """One cut of a stock piece, as the page of a shade lists it."""
+
+    bracelet_key: int
+    tag_number: int
+    piece: SnapshotPiece
 
 
 def plan_page(plan: Plan) -> dict[str, Any]:
@@ -78,12 +89,14 @@ def shade_page(shade: PlanShade) -> dict[str, Any]:
     }
 
 
-def _cuts_by_stock(shade: PlanShade) -> dict[int, list[PlanPiece]]:
-    cuts: dict[int, list[PlanPiece]] = defaultdict(list)
-    pieces = shade.pieces.filter(stock__isnull=False).select_related("bracelet")
-    for piece in pieces.order_by("stock_id", "cut_position"):
-        assert piece.stock_id is not None
-        cuts[piece.stock_id].append(piece)
+def _cuts_by_stock(shade: PlanShade) -> dict[int, list[Cut]]:
+    pieces_of = {row.pk: read_kind(row).pieces for row in shade.plan.kinds.all()}
+    cuts: dict[int, list[Cut]] = defaultdict(list)
+    rows = shade.pieces.filter(stock__isnull=False).select_related("bracelet")
+    for row in rows.order_by("stock_id", "cut_position"):
+        assert row.stock_id is not None
+        piece = pieces_of[row.bracelet.kind_id][row.index]
+        cuts[row.stock_id].append(Cut(row.bracelet_id, row.bracelet.number, piece))
     return cuts
 
 
@@ -96,7 +109,7 @@ def _need_by_length(shade: PlanShade) -> list[dict[str, int]]:
 
 
 def _stock_row(
-    row: PlanStock, cuts: list[PlanPiece], longest_mm: int, shade: PlanShade
+    row: PlanStock, cuts: list[Cut], longest_mm: int, shade: PlanShade
 ) -> dict[str, Any]:
     return {
         "row": row,
@@ -106,7 +119,7 @@ def _stock_row(
             colour=shade.colour,
             length_mm=row.reckoned_mm,
             scale_mm=longest_mm,
-            segments=[(str(piece.bracelet.number), piece.cut_mm) for piece in cuts],
+            segments=[(str(cut.tag_number), cut.piece.cut_mm) for cut in cuts],
         ),
     }
 
@@ -118,12 +131,13 @@ def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
     strands = {strand["strand"]: strand for strand in making["strands"]}
     pieces = [
         {
-            "row": piece,
-            "shade": piece.shade,
-            "strands": [strands[number] for number in piece.strands],
-            "ends_mm": making["ends_mm"][piece.index],
+            "piece": kind.pieces[row.index],
+            "shade": row.shade,
+            "stock": row.stock,
+            "strands": [strands[number] for number in kind.pieces[row.index].strands],
+            "ends_mm": making["ends_mm"][row.index],
         }
-        for piece in bracelet.pieces.all()
+        for row in bracelet.pieces.all()
     ]
     return {
         **plan_context(bracelet.plan),

@@ -174,11 +174,7 @@ def _piece_row(
         stock=stock,
         cut_position=cut_position,
         index=index,
-        slot=piece.slot,
-        strands=list(piece.strands),
         cut_mm=piece.cut_mm,
-        fold_mm=piece.fold_mm,
-        is_sliding=piece.is_sliding,
     )
 
 
