@@ -100,7 +100,8 @@ def test_date_at_the_edge_of_the_range(text: str) -> None:
 
 
 @pytest.mark.parametrize(
-    "text", ["soon", "5", "Dec", "5 Jui 2026", "5.12-2026", "5 Dec 202", "1e5", "٥ Dec 2026"]
+    "text",
+    ["soon", "5", "Dec", "5 Jui 2026", "5 Fe 2026", "5.12-2026", "5 Dec 202", "1e5", "٥ Dec 2026"],
 )
 def test_date_that_is_none(text: str) -> None:
     with pytest.raises(CellProblem, match="is not a due date"):
