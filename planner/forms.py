@@ -5,7 +5,8 @@ from typing import Any
 
 from django import forms
 
-from inventory.measures import MeasureError, parse_decimal, parse_length, to_whole_mm
+from inventory.fields import LengthField, LineField
+from inventory.measures import MeasureError, parse_decimal
 from inventory.models import Workshop
 from planner.models import Batch
 
@@ -59,7 +60,8 @@ class PerCentField(forms.CharField):
         return (number / 100).quantize(Decimal("0.001"))
 
 
-class WorkshopForm(forms.ModelForm):  # type: ignore[type-arg]
+class WorkshopForm(forms.ModelForm):
+    name = LineField(label="What is your workshop called?", max_length=80)
     rounding_step_mm = forms.TypedChoiceField(
         label="Cut lengths are rounded up to", choices=ROUNDING_STEPS, coerce=Decimal, initial="10"
     )
@@ -76,10 +78,10 @@ class WorkshopForm(forms.ModelForm):  # type: ignore[type-arg]
         initial=Decimal("0.02"),
         help_text="How much less an unmeasured skein may hold than its band says.",
     )
-    keep_length_mm = forms.CharField(
+    keep_length_mm = LengthField(
         label="Keep length",
-        max_length=40,
-        initial="30 cm",
+        maximum_mm=5_000,
+        initial=300,
         help_text="A remnant at least this long goes back on the shelf; a shorter one is waste.",
     )
 
@@ -96,44 +98,36 @@ class WorkshopForm(forms.ModelForm):  # type: ignore[type-arg]
             "keep_length_mm",
         ]
         labels = {
-            "name": "What is your workshop called?",
             "length_unit": "You measure in",
             "paper": "You print on",
         }
 
     def __init__(self, *args: Any, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
-        if self.instance.pk:
-            from inventory.measures import format_length
-
-            step = f"{self.instance.rounding_step_mm:f}".rstrip("0").rstrip(".")
-            if step not in dict(ROUNDING_STEPS):
-                self.fields["rounding_step_mm"].choices = [  # type: ignore[attr-defined]
-                    *ROUNDING_STEPS,
-                    (step, f"{step} mm"),
-                ]
-            self.initial["rounding_step_mm"] = step
-            self.initial["keep_length_mm"] = format_length(
-                self.instance.keep_length_mm, self.instance.length_unit
-            )
-
-    def clean_keep_length_mm(self) -> int:
-        try:
-            length_mm = to_whole_mm(parse_length(self.cleaned_data["keep_length_mm"]))
-        except MeasureError as reason:
-            raise forms.ValidationError(str(reason)) from None
-        if not 1 <= length_mm <= 5_000:
-            raise forms.ValidationError("The keep length has to be between 1 mm and 5 m.")
-        return length_mm
+        if not self.instance.pk:
+            return
+        self.fields["keep_length_mm"].unit = self.instance.length_unit  # type: ignore[attr-defined]
+        step = f"{self.instance.rounding_step_mm.normalize():f}"
+        self.initial["rounding_step_mm"] = step
+        if step not in dict(ROUNDING_STEPS):
+            self.fields["rounding_step_mm"].choices = [  # type: ignore[attr-defined]
+                *ROUNDING_STEPS,
+                (step, f"{step} mm"),
+            ]
 
 
-class BatchForm(forms.ModelForm):  # type: ignore[type-arg]
+class BatchForm(forms.ModelForm):
+    name = LineField(
+        label="What is this batch for?",
+        max_length=80,
+        help_text="For example: Saturday's market.",
+    )
+
     class Meta:
         model = Batch
         fields = ["name", "market_date"]
-        labels = {"name": "What is this batch for?", "market_date": "Market date"}
+        labels = {"market_date": "Market date"}
         help_texts = {
-            "name": "For example: Saturday's market.",
             "market_date": "Orders without a due date of their own are due then.",
         }
         widgets = {"market_date": forms.DateInput(attrs={"type": "date"}, format="%Y-%m-%d")}

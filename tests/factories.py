@@ -108,7 +108,9 @@ def make_order(
     ending: str | None = None,
     **values: Any,
 ) -> OrderLine:
-    endings = Ending.objects.filter(name=ending) if ending else Ending.objects.filter(is_default=True)
+    endings = (
+        Ending.objects.filter(name=ending) if ending else Ending.objects.filter(is_default=True)
+    )
     return OrderLine.objects.create(
         batch=batch,
         position=batch.lines.count() + 1,

@@ -152,7 +152,7 @@ def read_grid(
     grid = PostedGrid()
     for number in sorted(texts):
         row = texts[number]
-        cells = {name: row.get(name, "") for name in DEFAULT_ORDER}
+        cells = {str(name): row.get(name, "") for name in DEFAULT_ORDER}
         grid.rows.append((number, _line_key(row.get("line", "")), cells, row.get("gone") == "yes"))
     kept = [(number, cells) for number, _, cells, removed in grid.rows if not removed]
     reading = read_rows(kept, catalogue, today=today, market_date=market_date)

@@ -1,8 +1,9 @@
 """Batches of orders: the grid, and lists added by pasting or as files."""
 
-from typing import Any
+from typing import Any, cast
 
 from django.contrib import messages
+from django.contrib.auth.models import User
 from django.core.paginator import Paginator
 from django.http import HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
@@ -99,7 +100,7 @@ def _grid_page(
     first = page.start_index() or 1
     refused = rows is not None
     if rows is None:
-        rows = saved_rows(page.object_list, first)
+        rows = saved_rows(list(page.object_list), first)
     last = max((row.number for row in rows), default=first - 1)
     context: dict[str, Any] = {
         "batch": batch,
@@ -135,7 +136,7 @@ def list_add(request: HttpRequest, pk: int) -> HttpResponse:
         return render(request, "planner/list_add.html", context, status=422)
     draft = OrderDraft.objects.create(
         batch=batch,
-        created_by=request.user,
+        created_by=cast(User, request.user),
         source_name=name[:200],
         rows=rows_of_reading(reading),
         notices=_notices(reading),
