@@ -4,12 +4,17 @@ from collections.abc import Sequence
 from datetime import date
 
 from inventory.models import Workshop
+from planner.cutting import CuttingError
 from planner.models import OrderLine
 from planner.planning.compose import compose
-from planner.planning.demand import explode
+from planner.planning.demand import Bracelet, ExplodedKind, Order, explode
 from planner.planning.netting import net
 from planner.planning.snapshot import Snapshot
 from planner.plans.load import habits_of, load_orders, load_shelf, orders_stamp
+
+MOST_BRACELETS = 20_000
+# A plan is stored in one transaction, and whoever saves meanwhile waits for it.
+MOST_PIECES = 60_000
 
 
 class PlanError(ValueError):
@@ -34,10 +39,15 @@ def work_out_plan(
         raise PlanError(" ".join(loaded.problems[:3]))
     if not loaded.orders:
         raise PlanError("None of the orders can be planned. " + " ".join(loaded.problems[:3]))
+    _check_bracelets(loaded.orders)
     kinds, bracelets = explode(loaded.orders)
+    _check_pieces(kinds, bracelets)
     shade_ids = {shade for kind in kinds for _, shade in kind.kind.shades}
     shelf = load_shelf(shade_ids, workshop)
-    netted = net(kinds, bracelets, shelf.threads, shelf.offers)
+    try:
+        netted = net(kinds, bracelets, shelf.threads, shelf.offers)
+    except CuttingError as reason:
+        raise PlanError(f"These orders cannot be cut in one plan. {reason}") from None
     return compose(
         batch_name=batch_name,
         market_date=market_date,
@@ -54,3 +64,22 @@ def work_out_plan(
         shelf_stamp=shelf.stamp,
         orders_stamp=orders_stamp(loaded.orders),
     )
+
+
+def _check_bracelets(orders: Sequence[Order]) -> None:
+    """Before they are told apart: a list of five thousand rows may ask for fifty million."""
+    bracelets = sum(order.quantity for order in orders)
+    if bracelets > MOST_BRACELETS:
+        raise PlanError(
+            f"{bracelets} bracelets are more than a plan takes: {MOST_BRACELETS} at most. "
+            "Split the batch, or look for a quantity that was mistyped."
+        )
+
+
+def _check_pieces(kinds: Sequence[ExplodedKind], bracelets: Sequence[Bracelet]) -> None:
+    pieces = sum(len(kinds[bracelet.kind_index].pieces) for bracelet in bracelets)
+    if pieces > MOST_PIECES:
+        raise PlanError(
+            f"{len(bracelets)} bracelets with {pieces} pieces are more than a plan takes: "
+            f"{MOST_PIECES} at most. Split the batch."
+        )
