@@ -6,7 +6,7 @@ Lengths are cells (see `planner.cutting.knapsack`). Bracelets that need the same
 
 from collections import Counter
 from collections.abc import Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 from planner.cutting.bounds import usable_lengths
 from planner.cutting.filling import Filling, Supply, fill_all
@@ -180,7 +180,7 @@ def place_first(kinds: Counter[Kind], lots: Sequence[LotFilling]) -> Counter[Kin
     return unplaced
 
 
-def fill_lot(kinds: Counter[Kind], lot: LotFilling, chooser: Filler) -> Counter[Kind]:
+def fill_lot(kinds: Counter[Kind], lot: LotFilling, choosers: Sequence[Filler]) -> Counter[Kind]:
     """Cut as much of the bracelets from a lot as can be found.
 
     Parameters
@@ -189,8 +189,8 @@ def fill_lot(kinds: Counter[Kind], lot: LotFilling, chooser: Filler) -> Counter[
         The bracelets wanted.
     lot
         The lot; it is filled.
-    chooser
-        How the bracelets are chosen by their totals.
+    choosers
+        Ways to choose the bracelets by their totals; the one that uses most of the lot is kept.
 
     Returns
     -------
@@ -203,8 +203,18 @@ def fill_lot(kinds: Counter[Kind], lot: LotFilling, chooser: Filler) -> Counter[
     not fit is tried again with a little less. What room is left is topped up one bracelet at a time.
     """
     fitting = Counter({kind: count for kind, count in kinds.items() if kind.longest <= lot.longest})
-    taken = _add_chosen(fitting, lot, chooser)
-    return kinds - taken - _top_up(fitting - taken, lot)
+    room = most_from_lot(fitting + lot.chosen, lot.supplies) - lot.used
+    best, best_taken = lot, Counter[Kind]()
+    for chooser in choosers:
+        trial = replace(lot)
+        taken = _add_chosen(fitting, trial, room, chooser)
+        taken += _top_up(fitting - taken, trial)
+        if trial.used > best.used:
+            best, best_taken = trial, taken
+        if best.used - lot.used >= room:
+            break
+    lot.chosen, lot.fillings = best.chosen, best.fillings
+    return kinds - best_taken
 
 
 def _top_up(left: Counter[Kind], lot: LotFilling) -> Counter[Kind]:
@@ -221,10 +231,11 @@ def _top_up(left: Counter[Kind], lot: LotFilling) -> Counter[Kind]:
     return added
 
 
-def _add_chosen(fitting: Counter[Kind], lot: LotFilling, chooser: Filler) -> Counter[Kind]:
+def _add_chosen(
+    fitting: Counter[Kind], lot: LotFilling, room: int, chooser: Filler
+) -> Counter[Kind]:
     if lot.add(fitting):
         return fitting
-    room = most_from_lot(fitting + lot.chosen, lot.supplies) - lot.used
     shrink = 1
     for _ in range(TARGETS):
         chosen = _choose(fitting, room, chooser)

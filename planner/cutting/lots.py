@@ -177,15 +177,19 @@ class _Way:
     """A way to use the shelf: which lots first, and how bracelets are chosen for one."""
 
     largest_lot_first: bool
-    chooser: Filler | None
+    choosers: tuple[Filler, ...]
 
 
-_WAYS = (_Way(False, Fullest()), _Way(True, Fullest()), _Way(False, None))
+_WAYS = (
+    _Way(False, (Fullest(), ShortestFirst())),
+    _Way(True, (Fullest(), ShortestFirst())),
+    _Way(False, ()),
+)
 _WAYS_WITHOUT_BUYING = (
-    _Way(False, Fullest()),
-    _Way(True, Fullest()),
-    _Way(False, ShortestFirst()),
-    _Way(True, ShortestFirst()),
+    _Way(False, (Fullest(),)),
+    _Way(True, (Fullest(),)),
+    _Way(False, (ShortestFirst(),)),
+    _Way(True, (ShortestFirst(),)),
 )
 
 
@@ -252,9 +256,8 @@ def _use_shelf(shade: _Shade, way: _Way, longest_sold: int | None) -> _Shelf:
         only_here = Counter({kind: left[kind] for kind in left if kind.longest > longest_sold})
         unplaced = place_first(only_here, [filling for _, filling in smallest_first])
         left = left - only_here
-    if way.chooser is not None:
-        for _, filling in smallest_first[::-1] if way.largest_lot_first else smallest_first:
-            left = fill_lot(left, filling, way.chooser)
+    for _, filling in smallest_first[::-1] if way.largest_lot_first else smallest_first:
+        left = fill_lot(left, filling, way.choosers)
     return _Shelf(lots, left, unplaced)
 
 

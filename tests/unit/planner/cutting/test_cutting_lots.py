@@ -317,6 +317,36 @@ def test_piece_that_is_no_length_is_refused(length: int) -> None:
         Group("bracelet", (length,))
 
 
+def used_of_shelf(result: LotResult) -> int:
+    return sum(piece.length_mm for one in result.opened if one.stock_key for piece in one.pieces)
+
+
+def test_lot_of_remnants_is_filled_with_what_fits_them() -> None:
+    # Three remnants of 1 m hold two of 450 mm each; one of 600 mm each would leave 400.
+    shade = (make_groups(*[[600]] * 20, *[[450]] * 20), make_lots([1000] * 3), (SKEIN,))
+    result = solve_with_lots(*shade)
+    check_lots(shade, result)
+    assert used_of_shelf(result) == 2700
+
+
+def test_lot_whose_fullest_choice_does_not_fit_is_tried_with_less() -> None:
+    # By length 9.9 m could come of ten remnants of 1 m, but a piece of 510 mm needs its own.
+    shade = (make_groups(*[[510, 330]] * 20, *[[330] * 3] * 3), make_lots([1000] * 10), (SKEIN,))
+    result = solve_with_lots(*shade)
+    check_lots(shade, result)
+    assert used_of_shelf(result) >= 8 * 840 + 2 * 990
+
+
+def test_room_in_a_lot_is_topped_up() -> None:
+    groups = make_groups(
+        [32, 47, 11], [11], [33, 14], [29, 31], [47], [19, 16, 27], [49, 10], [58], [15, 13, 33]
+    )
+    shade = (groups, make_lots([85, 22, 64], [90]), ())
+    result = solve_with_lots(*shade)
+    check_lots(shade, result)
+    assert len(result.unplaced) == 4  # 5 without
+
+
 def test_lot_gives_at_most_whole_groups() -> None:
     kinds = Counter({Kind((5, 4)): 2, Kind((20,)): 1})
     assert most_from_lot(kinds, [Supply(17, 17, 1)]) == 9

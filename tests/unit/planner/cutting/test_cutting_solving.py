@@ -128,6 +128,21 @@ def test_plan_buys_a_short_put_up_at_the_end() -> None:
     assert result.status == "optimal"
 
 
+def test_plan_buys_again_what_the_last_put_ups_hold() -> None:
+    # By price per length used the skein of 8 m takes 3 m as well; the card of 3 m does better.
+    problem = make_problem({3000: 1, 1900: 3}, {}, {8000: "1.07", 12000: "2.03", 3000: "0.45"})
+    result = solve(problem, work_limit=2_000_000)
+    assert result.cost == exact_cost(problem) == Decimal("1.52")
+
+
+def test_piece_only_the_shelf_can_hold_goes_where_it_fits_exactly() -> None:
+    result = solve(make_problem({9000: 1, 10000: 1}, {9000: 1, 10000: 1}, {8000: "1"}))
+    assert [(cut.length_mm, cut.pieces_mm) for cut in result.cuts] == [
+        (9000, (9000,)),
+        (10000, (10000,)),
+    ]
+
+
 def test_plan_with_a_piece_only_the_shelf_can_hold() -> None:
     result = solve(make_problem({9000: 1, 4000: 4}, {10000: 1}, {8000: "1"}))
     assert result.cost == 2
@@ -192,6 +207,7 @@ def test_problem_whose_plan_is_not_found_says_so() -> None:
 def test_cost_keeps_the_places_of_the_prices() -> None:
     assert str(solve(make_problem({1000: 9}, {}, {8000: "1.125"})).cost) == "2.250"
     assert str(solve(make_problem({1000: 9}, {}, {8000: "1E+2"})).cost) == "200.00"
+    assert str(solve(make_problem({1000: 9}, {}, {8000: "1.5000000"})).cost) == "3.00"
 
 
 def test_bought_lower_bound_uses_the_longest_put_up() -> None:
