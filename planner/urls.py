@@ -11,21 +11,23 @@ urlpatterns = [
     path("workshop/", workshop.workshop, name="workshop"),
     path("orders/", batches.batch_list, name="batch_list"),
     path("orders/new/", batches.batch_new, name="batch_new"),
-    path("orders/<int:pk>/", batches.batch_detail, name="batch_detail"),
-    path("orders/<int:pk>/edit/", batches.batch_edit, name="batch_edit"),
-    path("orders/<int:pk>/add-list/", batches.list_add, name="list_add"),
-    path("orders/<int:pk>/lists/<int:draft_pk>/", batches.list_check, name="list_check"),
-    path("orders/<int:pk>/lists/<int:draft_pk>/add/", batches.list_confirm, name="list_confirm"),
+    path("orders/<key:pk>/", batches.batch_detail, name="batch_detail"),
+    path("orders/<key:pk>/edit/", batches.batch_edit, name="batch_edit"),
+    path("orders/<key:pk>/add-list/", batches.list_add, name="list_add"),
+    path("orders/<key:pk>/lists/<key:draft_pk>/", batches.list_check, name="list_check"),
+    path("orders/<key:pk>/lists/<key:draft_pk>/add/", batches.list_confirm, name="list_confirm"),
     path(
-        "orders/<int:pk>/lists/<int:draft_pk>/discard/", batches.list_discard, name="list_discard"
+        "orders/<key:pk>/lists/<key:draft_pk>/discard/", batches.list_discard, name="list_discard"
     ),
-    path("orders/<int:pk>/plan/", plans.plan_new, name="plan_new"),
-    path("plans/<int:pk>/", plans.plan_detail, name="plan_detail"),
-    path("plans/<int:pk>/shades/<int:shade_pk>/", plans.plan_shade, name="plan_shade"),
-    path("plans/<int:pk>/bracelets/", plans.plan_bracelets, name="plan_bracelets"),
-    path("plans/<int:pk>/<slug:sheet>.<slug:ending>", plans.plan_sheet, name="plan_sheet"),
-    path("b/<int:pk>/", plans.bracelet, name="bracelet"),
+    path("orders/<key:pk>/plan/", plans.plan_new, name="plan_new"),
+    path("plans/<key:pk>/", plans.plan_detail, name="plan_detail"),
+    path("plans/<key:pk>/shades/<key:shade_pk>/", plans.plan_shade, name="plan_shade"),
+    path("plans/<key:pk>/bracelets/", plans.plan_bracelets, name="plan_bracelets"),
+    path("plans/<key:pk>/<slug:sheet>.<slug:ending>", plans.plan_sheet, name="plan_sheet"),
+    path("b/<key:pk>/", plans.bracelet, name="bracelet"),
     path("patterns/", include("patterns.urls")),
     path("shelf/", include("inventory.urls")),
     path("", include("planner.signin.urls")),
 ]
+
+handler400 = "planner.error_pages.bad_request"
