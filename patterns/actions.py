@@ -159,20 +159,25 @@ def set_size(*, size: Size, knotted_lengths_mm: Mapping[Ending, int | None]) -> 
     return size
 
 
-@transaction.atomic
 def set_default_gauge(*, gauge: Gauge) -> Gauge:
-    Gauge.objects.filter(is_default=True).update(is_default=False)
-    gauge.is_default = True
-    gauge.save(update_fields=["is_default"])
+    _set_default(gauge)
     return gauge
 
 
-@transaction.atomic
 def set_default_ending(*, ending: Ending) -> Ending:
-    Ending.objects.filter(is_default=True).update(is_default=False)
-    ending.is_default = True
-    ending.save(update_fields=["is_default"])
+    _set_default(ending)
     return ending
+
+
+@transaction.atomic
+def _set_default(thing: Gauge | Ending) -> None:
+    """One that was removed meanwhile must not leave the others without a default."""
+    rows = type(thing)._default_manager
+    if not rows.select_for_update().filter(pk=thing.pk):
+        raise LibraryError(f"{thing} was removed in another window.")
+    rows.filter(is_default=True).update(is_default=False)
+    rows.filter(pk=thing.pk).update(is_default=True)
+    thing.is_default = True
 
 
 def check_removable(thing: models.Model) -> None:
@@ -199,9 +204,13 @@ def _one_or_more(model: Any, count: int) -> str:
 
 @transaction.atomic
 def remove(*, thing: models.Model) -> None:
-    check_removable(thing)
+    """Look at it as it is now: another window may just have made it the default."""
+    locked = type(thing)._default_manager.select_for_update().filter(pk=thing.pk).first()
+    if locked is None:
+        raise LibraryError(f"{thing} was removed in another window.")
+    check_removable(locked)
     try:
-        thing.delete()
+        locked.delete()
     except ProtectedError:
         raise LibraryError(f"{thing} is in use. Take it out of the orders first.") from None
 

@@ -12,6 +12,7 @@ from inventory.models import Workshop
 from patterns.actions import load_defaults
 from planner.models import Batch, OrderDraft, OrderLine, Plan
 from planner.order_list.results import GoodLine
+from planner.orders.drafts import corrected
 from planner.planning.snapshot import Snapshot
 from planner.plans.store import store_snapshot
 from planner.plans.work_out import PlanError, work_out_plan
@@ -99,6 +100,17 @@ def _next_revision(batch: Batch, revision: int) -> Batch:
         )
     locked.revision += 1
     locked.save(update_fields=["revision"])
+    return locked
+
+
+@transaction.atomic
+def correct_draft(*, draft: OrderDraft, posted: Mapping[str, str]) -> OrderDraft:
+    """Correct the rows as they are now, not as they were when the page was opened."""
+    locked = OrderDraft.objects.select_for_update().filter(pk=draft.pk).first()
+    if locked is None:
+        raise BatchChanged("That list was added or put away in another window.")
+    locked.rows = corrected(locked, posted)
+    locked.save(update_fields=["rows"])
     return locked
 
 

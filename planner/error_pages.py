@@ -36,6 +36,10 @@ def too_large(request: HttpRequest) -> HttpResponse:
     )
 
 
+def changed_meanwhile(request: HttpRequest) -> HttpResponse:
+    return _page(request, "409.html", HTTPStatus.CONFLICT)
+
+
 def csrf_failure(request: HttpRequest, reason: str = "") -> HttpResponse:
     return _page(request, "403_csrf.html", HTTPStatus.FORBIDDEN)
 

@@ -66,8 +66,13 @@ def _saved(form: EndingForm) -> bool:
 
 @require_POST
 def ending_default(request: HttpRequest, pk: int) -> HttpResponse:
-    ending = set_default_ending(ending=get_object_or_404(Ending, pk=pk))
-    messages.success(request, f"{ending} is the default now.")
+    ending = get_object_or_404(Ending, pk=pk)
+    try:
+        set_default_ending(ending=ending)
+    except LibraryError as error:
+        messages.error(request, str(error))
+    else:
+        messages.success(request, f"{ending} is the default now.")
     return redirect("ending_list")
 
 

@@ -59,8 +59,13 @@ def _saved(form: GaugeForm) -> bool:
 
 @require_POST
 def gauge_default(request: HttpRequest, pk: int) -> HttpResponse:
-    gauge = set_default_gauge(gauge=get_object_or_404(Gauge, pk=pk))
-    messages.success(request, f"{gauge} is the default now.")
+    gauge = get_object_or_404(Gauge, pk=pk)
+    try:
+        set_default_gauge(gauge=gauge)
+    except LibraryError as error:
+        messages.error(request, str(error))
+    else:
+        messages.success(request, f"{gauge} is the default now.")
     return redirect("gauge_list")
 
 

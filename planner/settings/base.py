@@ -42,6 +42,7 @@ MIDDLEWARE = [
     "django.contrib.messages.middleware.MessageMiddleware",
     "django.middleware.clickjacking.XFrameOptionsMiddleware",
     "axes.middleware.AxesMiddleware",
+    "planner.middleware.ChangedMeanwhile",
 ]
 ROOT_URLCONF = "planner.urls"
 WSGI_APPLICATION = "planner.wsgi.application"

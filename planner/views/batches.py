@@ -10,7 +10,7 @@ from django.shortcuts import get_object_or_404, redirect, render
 from django.utils import timezone
 from django.views.decorators.http import require_GET, require_http_methods, require_POST
 
-from planner.actions import BatchChanged, confirm_draft, save_lines
+from planner.actions import BatchChanged, confirm_draft, correct_draft, save_lines
 from planner.forms import BatchForm
 from planner.models import Batch, OrderDraft
 from planner.order_list.limits import MAX_FILE_BYTES, OrderListError
@@ -20,7 +20,6 @@ from planner.order_list.table import Table, read_pasted, read_table
 from planner.orders.catalogue import load_catalogue
 from planner.orders.drafts import (
     bad_grid_rows,
-    corrected,
     draft_row,
     read_draft,
     resolved_rows,
@@ -55,7 +54,8 @@ def batch_edit(request: HttpRequest, pk: int) -> HttpResponse:
     batch = get_object_or_404(Batch, pk=pk)
     form = BatchForm(request.POST or None, instance=batch)
     if request.method == "POST" and form.is_valid():
-        form.save()
+        # Not the revision: it may have moved on while this request was read.
+        form.save(commit=False).save(update_fields=form.Meta.fields)
         return redirect("batch_detail", pk=pk)
     context = {"form": form, "batch": batch, "section": "orders"}
     return render(request, "planner/batch_form.html", context, status=422 if form.is_bound else 200)
@@ -176,9 +176,7 @@ def _notices(reading: Reading) -> list[str]:
 def list_check(request: HttpRequest, pk: int, draft_pk: int) -> HttpResponse:
     draft = get_object_or_404(OrderDraft.objects.select_related("batch"), pk=draft_pk, batch=pk)
     if request.method == "POST":
-        draft.rows = corrected(draft, request.POST.dict())
-        draft.save(update_fields=["rows"])
-        return redirect("list_check", pk=pk, draft_pk=draft_pk)
+        return _list_correct(request, draft)
     catalogue = load_catalogue()
     reading = read_draft(
         draft, catalogue, today=timezone.localdate(), market_date=draft.batch.market_date
@@ -195,6 +193,15 @@ def list_check(request: HttpRequest, pk: int, draft_pk: int) -> HttpResponse:
         "section": "orders",
     }
     return render(request, "planner/list_check.html", context)
+
+
+def _list_correct(request: HttpRequest, draft: OrderDraft) -> HttpResponse:
+    try:
+        correct_draft(draft=draft, posted=request.POST.dict())
+    except BatchChanged as reason:
+        messages.error(request, str(reason))
+        return redirect("batch_detail", pk=draft.batch_id)
+    return redirect("list_check", pk=draft.batch_id, draft_pk=draft.pk)
 
 
 @require_POST

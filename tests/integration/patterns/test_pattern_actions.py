@@ -149,6 +149,23 @@ def test_set_default_ending_leaves_one_default():
     assert Ending.objects.get(is_default=True) == ending
 
 
+def test_set_default_of_a_gauge_removed_meanwhile_keeps_the_old_default():
+    load_defaults()
+    second = set_gauge(gauge=Gauge(name="Second"))
+    Gauge.objects.filter(pk=second.pk).delete()
+    with pytest.raises(LibraryError, match="Second was removed in another window"):
+        set_default_gauge(gauge=second)
+    assert Gauge.objects.get().is_default
+
+
+def test_remove_a_gauge_made_the_default_meanwhile_is_refused():
+    load_defaults()
+    seen_before = set_gauge(gauge=Gauge(name="Second"))
+    set_default_gauge(gauge=Gauge.objects.get(pk=seen_before.pk))
+    with pytest.raises(LibraryError, match="is the default"):
+        remove(thing=seen_before)
+
+
 def test_set_gauge_makes_the_first_one_the_default():
     assert set_gauge(gauge=Gauge(name="First")).is_default
     assert not set_gauge(gauge=Gauge(name="Second")).is_default
