@@ -119,6 +119,7 @@ class Plan(models.Model):
     number = models.PositiveIntegerField()
     created_at = models.DateTimeField(auto_now_add=True)
     created_by = models.ForeignKey(settings.AUTH_USER_MODEL, on_delete=models.SET_NULL, null=True)
+    plan_date = models.DateField()
     batch_name = models.CharField(max_length=80)
     market_date = models.DateField(null=True)
     workshop = models.JSONField()

@@ -50,6 +50,7 @@ class Migration(migrations.Migration):
                 ('id', models.BigAutoField(auto_created=True, primary_key=True, serialize=False, verbose_name='ID')),
                 ('number', models.PositiveIntegerField()),
                 ('created_at', models.DateTimeField(auto_now_add=True)),
+                ('plan_date', models.DateField()),
                 ('batch_name', models.CharField(max_length=80)),
                 ('market_date', models.DateField(null=True)),
                 ('workshop', models.JSONField()),

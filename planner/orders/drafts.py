@@ -80,15 +80,27 @@ def corrected(draft: OrderDraft, posted: Mapping[str, str]) -> list[DraftRow]:
         changes = dict(typed.get(row["number"], {}))
         if len(use) == 3 and use[0] == str(row["number"]) and use[1] in DEFAULT_ORDER:
             changes[use[1]] = use[2]
-        if changes:
-            row = {"number": row["number"], "cells": {**row["cells"], **changes}}
-        rows.append(row)
+        rows.append(_with_changes(row, changes))
     removed = {
         int(match[1])
         for name, text in posted.items()
         if (match := CELL_NAME.match(name)) and match[2] == "gone" and text == "yes"
     }
     return [row for row in rows if row["number"] not in removed]
+
+
+def _with_changes(row: DraftRow, texts: Mapping[str, str]) -> DraftRow:
+    """A noted problem stays until its own cell changes; one of the whole row, until any does."""
+    changed = {name for name, text in texts.items() if text != row["cells"].get(name)}
+    return {
+        "number": row["number"],
+        "cells": {**row["cells"], **texts},
+        "problems": [
+            [field, message]
+            for field, message in row.get("problems", [])
+            if (field not in changed if field else not changed)
+        ],
+    }
 
 
 def resolved_rows(reading: Reading, catalogue: Catalogue) -> list[tuple[int, tuple[str, ...]]]:

@@ -41,16 +41,21 @@ def skeins(count: int) -> str:
 def proof_of_shade(shade: ShadeResult) -> str:
     """Say what is proven of the purchase of one shade."""
     if shade.unplaced:
-        return "not enough thread, and nothing to buy it from"
+        return "not enough thread, and nothing to buy that would do"
     if shade.bought == 0:
         return "the shelf has enough"
-    if shade.bought == shade.bought_lower_bound == 1:
-        return "the shelf alone is not enough"
-    if shade.bought == shade.bought_lower_bound:
-        return f"fewer than {shade.bought} is impossible"
-    if shade.cost == shade.lower_bound:
+    fewest = shade.bought == shade.bought_lower_bound
+    if shade.cost > shade.lower_bound:
+        return (
+            "fewer is impossible, but cheaper might be found"
+            if fewest
+            else f"at least {shade.bought_lower_bound}; not proven to be the fewest"
+        )
+    if not fewest:
         return "cheaper is impossible"
-    return f"at least {shade.bought_lower_bound}; not proven to be the fewest"
+    if shade.bought == 1:
+        return "the shelf alone is not enough"
+    return f"fewer than {shade.bought} is impossible"
 
 
 def proof_of_plan(plan: PlanResult, shades: Iterable[ShadeResult]) -> str:

@@ -3,7 +3,10 @@
 import hashlib
 import json
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
+from dataclasses import asdict, dataclass
+from itertools import count
+
+from django.db.models import prefetch_related_objects
 
 from inventory.models import PutUp, Shade, ShelfPiece, Workshop
 from patterns.actions import cut_rule
@@ -15,6 +18,19 @@ from planner.models import OrderLine
 from planner.planning.demand import Kind, Order, ShadeName
 from planner.planning.netting import ShelfThread, ThreadOffer, reckoned_length
 from planner.planning.snapshot import Habits
+
+ENDING_VALUES = (
+    "name",
+    "start",
+    "start_tie_mm",
+    "end_tie_mm",
+    "take_up",
+    "closing_knot_mm",
+    "grip_mm",
+    "fold_loop_mm",
+    "single_start_mm",
+    "sliding_piece_mm",
+)
 
 
 @dataclass(frozen=True)
@@ -32,15 +48,16 @@ class LoadedShelf:
     names: dict[int, ShadeName]
     threads: tuple[ShelfThread, ...]
     offers: tuple[ThreadOffer, ...]
+    keep_length_mm: int
 
     @property
     def stamp(self) -> str:
-        threads = [(t.number, t.shade, t.lot, t.kind, t.length_mm) for t in self.threads]
+        threads = [(t.number, t.shade, t.lot, t.kind, t.reckoned_mm) for t in self.threads]
         offers = [
-            (o.key, o.supplier_name, o.name, o.length_mm, str(o.price), sorted(o.shades or []))
+            (o.key, o.supplier_name, o.name, o.reckoned_mm, str(o.price), sorted(o.shades or []))
             for o in self.offers
         ]
-        return _stamp([sorted(threads), sorted(offers)])
+        return _stamp([sorted(threads), sorted(offers), self.keep_length_mm])
 
 
 def habits_of(workshop: Workshop) -> Habits:
@@ -56,8 +73,13 @@ def habits_of(workshop: Workshop) -> Habits:
     )
 
 
-def load_orders(lines: Sequence[OrderLine], workshop: Workshop) -> LoadedOrders:
-    """Turn order lines into orders; `lines` may be unsaved. Four queries, however many lines."""
+def load_orders(
+    lines: Sequence[OrderLine], workshop: Workshop, *, row_numbers: Sequence[int] = ()
+) -> LoadedOrders:
+    """Turn order lines into orders; `lines` may be unsaved. Few queries, however many lines.
+
+    `row_numbers` are what messages call the lines; without them, they are counted from 1.
+    """
     _attach_colourways(lines)
     gauge_row = Gauge.objects.filter(is_default=True).first()
     gauge = gauge_row.as_core() if gauge_row else GaugeCore()
@@ -67,7 +89,7 @@ def load_orders(lines: Sequence[OrderLine], workshop: Workshop) -> LoadedOrders:
     definitions = {line.pattern_id: line.pattern.definition for line in lines}
     orders: list[Order] = []
     problems: list[str] = []
-    for row, line in enumerate(lines, start=1):
+    for row, line in zip(row_numbers or count(1), lines, strict=False):
         try:
             orders.append(_order(row, line, definitions[line.pattern_id], workshop, gauge, lengths))
         except (LineProblem, LengthError) as problem:
@@ -80,8 +102,6 @@ class LineProblem(ValueError):
 
 
 def _attach_colourways(lines: Sequence[OrderLine]) -> None:
-    from django.db.models import prefetch_related_objects
-
     prefetch_related_objects(list(lines), "pattern", "colourway__shades", "size", "ending")
 
 
@@ -122,14 +142,29 @@ def _order(
     return Order(row, kind, line.quantity, line.for_whom, line.due_date, line.note)
 
 
-def orders_stamp(orders: Iterable[Order]) -> str:
+def orders_stamp(orders: Sequence[Order]) -> str:
     """Tell whether the orders, or the patterns and sizes behind them, have changed."""
-    return _stamp(
-        [
-            [repr(order.kind), order.quantity, order.for_whom, str(order.due_date), order.note]
-            for order in orders
-        ]
-    )
+    kinds = {order.kind: None for order in orders}
+    number_of = {kind: number for number, kind in enumerate(kinds)}
+    lines = [[number_of[o.kind], o.quantity, o.for_whom, str(o.due_date), o.note] for o in orders]
+    return _stamp([[_values_of_kind(kind) for kind in kinds], lines])
+
+
+def _values_of_kind(kind: Kind) -> list[object]:
+    """Named one by one, so that a field the code gains does not make every old plan look stale."""
+    ending = asdict(kind.ending)
+    return [
+        kind.pattern_text,
+        kind.colourway_name,
+        kind.size_name,
+        kind.is_child,
+        kind.has_metal_or_button,
+        kind.shades,
+        kind.knotted_length_mm,
+        [kind.gauge.thread_diameter_mm, kind.gauge.loop_ratio, kind.gauge.idle_run],
+        [[name, ending[name]] for name in ENDING_VALUES],
+        [kind.rule.safety_share, str(kind.rule.rounding_step_mm)],
+    ]
 
 
 def load_shelf(shade_ids: Iterable[int], workshop: Workshop) -> LoadedShelf:
@@ -162,6 +197,7 @@ def load_shelf(shade_ids: Iterable[int], workshop: Workshop) -> LoadedShelf:
             for piece in pieces
         ),
         offers=_offers(wanted, workshop),
+        keep_length_mm=workshop.keep_length_mm,
     )
 
 

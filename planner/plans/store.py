@@ -37,6 +37,7 @@ def store_snapshot(snapshot: Snapshot, *, batch: Batch, user: Any) -> Plan:
         batch=batch,
         number=snapshot.plan_number,
         created_by=user,
+        plan_date=snapshot.plan_date,
         batch_name=snapshot.batch_name,
         market_date=snapshot.market_date,
         workshop=_habits_as_json(snapshot.habits),
@@ -188,7 +189,7 @@ def read_snapshot(plan: Plan) -> Snapshot:
         batch_name=plan.batch_name,
         market_date=plan.market_date,
         plan_number=plan.number,
-        plan_date=plan.created_at.date(),
+        plan_date=plan.plan_date,
         habits=read_habits(plan),
         kinds=tuple(read_kind(row) for row in kinds),
         bracelets=tuple(

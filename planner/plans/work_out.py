@@ -30,11 +30,12 @@ def work_out_plan(
     plan_number: int,
     today: date,
     strict: bool = False,
+    row_numbers: Sequence[int] = (),
 ) -> Snapshot:
     """Lines that cannot be planned are named in the snapshot; `strict` refuses them instead."""
     if not lines:
         raise PlanError("There are no orders to plan yet. Add some first.")
-    loaded = load_orders(lines, workshop)
+    loaded = load_orders(lines, workshop, row_numbers=row_numbers)
     if strict and loaded.problems:
         raise PlanError(" ".join(loaded.problems[:3]))
     if not loaded.orders:

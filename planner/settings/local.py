@@ -1,6 +1,7 @@
 """Settings of a workshop on one machine, as `manage.py start` runs it."""
 
 from django.utils.functional import SimpleLazyObject
+from tzlocal import get_localzone_name
 
 from planner.settings.base import *  # noqa: F403
 from planner.settings.base import DATA_DIR, env
@@ -8,6 +9,8 @@ from planner.settings.databases import database_from_url
 from planner.workshop_folder import secret_key
 
 DEBUG = False
+# "Today" is the maker's own: the zone of this machine.
+TIME_ZONE = env.str("FLOSSWRIGHT_TIME_ZONE", "") or get_localzone_name()
 # Read, or made, when something is first signed: `manage.py cut` must not leave a folder behind.
 SECRET_KEY = SimpleLazyObject(lambda: secret_key(DATA_DIR))
 # Other names are refused, so that a foreign web page cannot reach the workshop by a name of its own.

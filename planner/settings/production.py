@@ -15,6 +15,7 @@ from planner.settings.databases import database_from_url
 
 DEBUG = False
 SECRET_KEY = env.str("FLOSSWRIGHT_SECRET_KEY", validate=validate.Length(min=50))
+TIME_ZONE = env.str("FLOSSWRIGHT_TIME_ZONE", "UTC")
 ALLOWED_HOSTS: list[str] = env.list("FLOSSWRIGHT_HOSTS", validate=validate.Length(min=1))
 try:
     DATABASES = {"default": database_from_url(env.str("DATABASE_URL"))}

@@ -4,38 +4,17 @@ import json
 from argparse import ArgumentParser
 from fractions import Fraction
 from pathlib import Path
-from typing import Any, NoReturn
-
-from django.core.management.base import BaseCommand, CommandError, CommandParser
+from typing import Any
 
 from inventory.measures import MeasureError, parse_decimal, parse_length
+from inventory.shell import Error, OneLineCommand, read_file
 from patterns.geometry import Gauge, GaugeError, LengthError, StrandTable, strand_table
 from patterns.knots import DiagonalPattern, Finish, PatternError
 from patterns.pattern_file import MAX_FILE_BYTES, read_pattern
 
 
-class Error(CommandError):
-    """Django prints the class name before the message, so this is its first word."""
-
-    def __init__(self, message: str) -> None:
-        super().__init__(" ".join(message.split()), returncode=2)
-
-
-class Command(BaseCommand):
+class Command(OneLineCommand):
     help = "Counts the knots of every strand of a pattern file and gives the thread it takes."
-    requires_system_checks = []
-
-    def create_parser(self, prog_name: str, subcommand: str, **kwargs: Any) -> CommandParser:
-        parser = super().create_parser(prog_name, subcommand, **kwargs)
-        parser.error = _refuse_arguments  # type: ignore[method-assign]
-        return parser
-
-    def run_from_argv(self, argv: list[str]) -> None:
-        try:
-            super().run_from_argv(argv)
-        except Error as error:  # from the parser, before Django listens
-            self.stderr.write(f"Error: {error}")
-            raise SystemExit(error.returncode) from None
 
     def add_arguments(self, parser: ArgumentParser) -> None:
         parser.add_argument("file", metavar="FILE.toml")
@@ -56,7 +35,7 @@ class Command(BaseCommand):
 
     def handle(self, *args: Any, **options: Any) -> None:
         try:
-            pattern = _with_finish(read_pattern(_read_file(Path(options["file"]))), options)
+            pattern = _with_finish(read_pattern(_read_text(Path(options["file"]))), options)
             length_mm = float(_millimetres("--length", options["length"]))
             table = strand_table(pattern, length_mm, _gauge(options))
         except (PatternError, GaugeError, LengthError) as error:
@@ -64,21 +43,9 @@ class Command(BaseCommand):
         self.stdout.write(_as_json(table) if options["json"] else _as_table(table))
 
 
-def _refuse_arguments(message: str) -> NoReturn:
-    raise Error(f"{message[:300]}. See --help.")
-
-
-def _read_file(path: Path) -> str:
+def _read_text(path: Path) -> str:
     shown = repr(str(path)[:200])
-    try:
-        if not path.exists():
-            raise Error(f"There is no file {shown}.")
-        if not path.is_file():
-            raise Error(f"{shown} is not a file.")
-        with path.open("rb") as file:
-            content = file.read(MAX_FILE_BYTES + 1)
-    except (OSError, ValueError) as error:
-        raise Error(f"{shown} cannot be read.") from error
+    content = read_file(path, MAX_FILE_BYTES)
     if len(content) > MAX_FILE_BYTES:
         raise Error(f"{shown} is larger than {MAX_FILE_BYTES // 1024} KB; no pattern is.")
     try:

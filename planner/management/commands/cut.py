@@ -6,37 +6,16 @@ from collections.abc import Iterator
 from decimal import Decimal
 from itertools import groupby
 from pathlib import Path
-from typing import Any, NoReturn
-
-from django.core.management.base import BaseCommand, CommandError, CommandParser
+from typing import Any
 
 from inventory.measures import MeasureError, parse_decimal, read_quantity
-from planner.cutting import Cut, CuttingError, Problem, Result, read_problem, solve
+from inventory.shell import Error, OneLineCommand, read_file
+from planner.cutting import Cut, CuttingError, Result, read_problem, solve
 from planner.cutting.problem_file import MAXIMUM_BYTES
 
 
-class Error(CommandError):
-    """Django prints the class name before the message, so this is its first word."""
-
-    def __init__(self, message: str) -> None:
-        super().__init__(" ".join(message.split()), returncode=2)
-
-
-class Command(BaseCommand):
+class Command(OneLineCommand):
     help = "Cuts the pieces of a problem file (JSON) from stock and from what can be bought."
-    requires_system_checks = []
-
-    def create_parser(self, prog_name: str, subcommand: str, **kwargs: Any) -> CommandParser:
-        parser = super().create_parser(prog_name, subcommand, **kwargs)
-        parser.error = _refuse_arguments  # type: ignore[method-assign]
-        return parser
-
-    def run_from_argv(self, argv: list[str]) -> None:
-        try:
-            super().run_from_argv(argv)
-        except Error as error:  # from the parser, before Django listens
-            self.stderr.write(f"Error: {error}")
-            raise SystemExit(error.returncode) from None
 
     def add_arguments(self, parser: ArgumentParser) -> None:
         parser.add_argument("file", metavar="PROBLEM.json")
@@ -52,29 +31,11 @@ class Command(BaseCommand):
                 str(options["time_limit"]), name="time limit", minimum=0, maximum=3600
             )
             seed = read_quantity(str(options["seed"]), name="seed", minimum=0, maximum=2**31)
-            problem = _read(Path(options["file"]))
+            problem = read_problem(read_file(Path(options["file"]), MAXIMUM_BYTES))
             result = solve(problem, time_limit_s=float(limit_s), seed=seed)
         except (CuttingError, MeasureError) as error:
             raise Error(str(error)) from error
         self.stdout.write(_as_json(result) if options["json"] else _as_table(result))
-
-
-def _refuse_arguments(message: str) -> NoReturn:
-    raise Error(f"{message[:300]}. See --help.")
-
-
-def _read(path: Path) -> Problem:
-    shown = repr(str(path)[:200])
-    try:
-        if not path.exists():
-            raise Error(f"There is no file {shown}.")
-        if not path.is_file():
-            raise Error(f"{shown} is not a file.")
-        with path.open("rb") as file:
-            content = file.read(MAXIMUM_BYTES + 1)
-    except (OSError, ValueError) as error:
-        raise Error(f"{shown} cannot be read.") from error
-    return read_problem(content)
 
 
 def _as_json(result: Result) -> str:

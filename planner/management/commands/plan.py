@@ -5,11 +5,11 @@ from argparse import ArgumentParser
 from pathlib import Path
 from typing import Any
 
-from django.core.management.base import BaseCommand, CommandError
 from django.utils import timezone
 
 from inventory.measures import format_length
 from inventory.models import Workshop
+from inventory.shell import Error, OneLineCommand, read_file
 from planner.models import OrderLine
 from planner.order_list.limits import MAX_FILE_BYTES, OrderListError
 from planner.order_list.lines import read_lines
@@ -22,7 +22,7 @@ from planner.planning.wording import proof_of_plan, proof_of_shade
 from planner.plans.work_out import PlanError, work_out_plan
 
 
-class Command(BaseCommand):
+class Command(OneLineCommand):
     help = "Plan an order list (CSV or XLSX) against the workshop, without saving it."
 
     def add_arguments(self, parser: ArgumentParser) -> None:
@@ -36,10 +36,9 @@ class Command(BaseCommand):
             snapshot = plan_file(path)
             written = write_sheets(snapshot, Path(options["sheets"])) if options["sheets"] else []
         except (OrderListError, PlanError) as reason:
-            raise CommandError(" ".join(str(reason).split()), returncode=2) from None
+            raise Error(str(reason)) from None
         except OSError as reason:
-            name = reason.filename or path
-            raise CommandError(f"{name}: {reason.strerror}.", returncode=2) from None
+            raise Error(f"{reason.filename}: {reason.strerror}.") from None
         if options["json"]:
             self.stdout.write(json.dumps(as_json(snapshot)))
             return
@@ -53,16 +52,16 @@ def plan_file(path: Path) -> Snapshot:
     workshop = Workshop.current()
     if workshop is None:
         raise PlanError("There is no workshop yet. Start one, or load the sample.")
-    if path.stat().st_size > MAX_FILE_BYTES:
-        raise OrderListError(f"{path} is larger than {MAX_FILE_BYTES // 2**20} MB.")
     reading = read_lines(
-        read_table(path.read_bytes(), path.name),
+        read_table(read_file(path, MAX_FILE_BYTES), path.name),
         load_catalogue(),
         today=timezone.localdate(),
         market_date=None,
     )
+    good = _all_good(reading)
     return work_out_plan(
-        lines=[_unsaved(line) for line in _all_good(reading)],
+        lines=[_unsaved(line) for line in good],
+        row_numbers=[line.number for line in good],
         workshop=workshop,
         batch_name=path.stem,
         market_date=None,

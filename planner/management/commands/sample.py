@@ -5,9 +5,9 @@ from argparse import ArgumentParser
 from typing import Any
 
 from django.conf import settings
-from django.core.management.base import BaseCommand, CommandError
 
 from inventory.models import Shade, ShelfPiece, Supplier, Workshop
+from inventory.shell import Error, OneLineCommand
 from patterns.models import Colourway, Pattern
 from planner.actions import WorkshopExists
 from planner.models import Batch, OrderLine
@@ -15,10 +15,8 @@ from planner.sample.load import load_sample
 from planner.workshop_folder import prepare
 
 
-class Command(BaseCommand):
+class Command(OneLineCommand):
     help = "Load the sample workshop, an invented stall, where there is no workshop yet."
-    # They need the database, which may not be there yet.
-    requires_system_checks: list[str] = []
     requires_migrations_checks = False
 
     def add_arguments(self, parser: ArgumentParser) -> None:
@@ -33,7 +31,7 @@ class Command(BaseCommand):
         try:
             workshop = load_sample()
         except WorkshopExists as reason:
-            raise CommandError(str(reason), returncode=2) from None
+            raise Error(str(reason)) from None
         counts = count_loaded()
         if options["json"]:
             self.stdout.write(json.dumps({"workshop": workshop.name, **counts}))

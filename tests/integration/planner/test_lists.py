@@ -62,6 +62,18 @@ def test_list_corrected_by_the_suggestion(page: Client, colourway: Colourway, ba
     assert not OrderDraft.objects.exists()
 
 
+def test_list_checked_again_unchanged_keeps_the_problem_of_a_whole_row(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    draft = add(page, batch, "pattern\tsize\nWave\tMedium\textra\tcells\n")
+    cells = {f"row-2-{name}": text for name, text in draft.rows[0]["cells"].items()}
+    address = reverse("list_check", args=[batch.pk, draft.pk])
+    page.post(address, cells)
+    assert "0 orders" in check_page(page, draft)
+    page.post(address, cells | {"row-2-note": "as meant"})
+    assert "1 order " in check_page(page, draft)
+
+
 def test_list_confirmed_twice_adds_once(page: Client, colourway: Colourway, batch: Batch) -> None:
     draft = add(page, batch, GOOD)
     confirm(page, draft)

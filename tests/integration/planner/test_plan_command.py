@@ -1,6 +1,9 @@
 """`manage.py plan`: plans a list without saving, and says in one line what is wrong."""
 
 import json
+import os
+import subprocess
+import sys
 from io import StringIO
 from pathlib import Path
 from typing import Any
@@ -9,7 +12,8 @@ import pytest
 from django.core.management import CommandError, call_command
 
 from inventory.models import PutUp
-from patterns.models import Colourway
+from patterns.models import Colourway, KnottedLength
+from planner.management.commands.plan import Command
 from planner.models import Batch, OrderLine, Plan
 from tests.factories import put_thread
 
@@ -92,8 +96,8 @@ def test_plan_refuses_bad_lists_in_one_line(
 
 
 def test_plan_refuses_what_is_no_file(colourway: Colourway, tmp_path: Path) -> None:
-    assert "No such file" in refused(str(tmp_path / "none.csv"))
-    assert "directory" in refused(str(tmp_path))
+    assert "no file" in refused(str(tmp_path / "none.csv"))
+    assert "not a file" in refused(str(tmp_path))
 
 
 def test_plan_refuses_a_folder_that_cannot_be_made(colourway: Colourway, orders: Path) -> None:
@@ -102,6 +106,33 @@ def test_plan_refuses_a_folder_that_cannot_be_made(colourway: Colourway, orders:
 
 def test_plan_without_a_workshop_says_so(db: None, orders: Path) -> None:
     assert "no workshop yet" in refused(str(orders))
+
+
+def test_plan_names_the_row_of_the_file(colourway: Colourway, tmp_path: Path) -> None:
+    KnottedLength.objects.filter(size__name="Large").delete()
+    path = tmp_path / "orders.csv"
+    path.write_text("pattern,size\nWave,Medium\n\nWave,Large\n")
+    assert refused(str(path)).startswith("Row 4: Large has no knotted length")
+
+
+def test_plan_without_arguments_says_so_in_one_line(capsys: pytest.CaptureFixture[str]) -> None:
+    with pytest.raises(SystemExit) as caught:
+        Command().run_from_argv(["manage.py", "plan"])
+    assert caught.value.code == 2
+    assert capsys.readouterr().err.count("\n") == 1
+
+
+def test_plan_without_a_database_says_so_in_one_line(tmp_path: Path, orders: Path) -> None:
+    found = subprocess.run(
+        [sys.executable, "manage.py", "plan", str(orders), "--data", str(tmp_path / "nowhere")],
+        capture_output=True,
+        text=True,
+        cwd=Path(__file__).parents[3],
+        env={**os.environ, "DJANGO_SETTINGS_MODULE": "planner.settings.local"},
+    )
+    assert found.returncode == 2
+    assert found.stderr.count("\n") == 1
+    assert "Traceback" not in found.stderr
 
 
 def test_plan_without_put_ups_names_the_tags(colourway: Colourway, orders: Path) -> None:

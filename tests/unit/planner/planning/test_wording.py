@@ -24,6 +24,7 @@ class Shade:
         (1, 1, "1", "1", "the shelf alone is not enough"),
         (3, 3, "3", "3", "fewer than 3 is impossible"),
         (3, 2, "3", "3", "cheaper is impossible"),
+        (3, 3, "4", "3", "fewer is impossible, but cheaper might be found"),
         (3, 2, "3", "2", "at least 2; not proven to be the fewest"),
     ],
 )
