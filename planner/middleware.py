@@ -51,5 +51,6 @@ class ChangedMeanwhile:
     def process_exception(self, request: HttpRequest, exception: Exception) -> HttpResponse | None:
         if not isinstance(exception, IntegrityError | ShelfError):
             return None
-        logger.warning("%s kept nothing: %s", request.resolver_match.view_name, exception)
+        view = request.resolver_match and request.resolver_match.view_name
+        logger.warning("%s kept nothing: %s", view, exception)
         return error_pages.changed_meanwhile(request)
