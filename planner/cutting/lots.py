@@ -60,7 +60,8 @@ def solve_with_lots(
     Returns
     -------
     LotResult
-        The cheapest plan found; of equally cheap ones the one that uses most of the shelf.
+        The cheapest plan found. It stops at the first plan that costs its bound; of the plans
+        looked at, the one that uses most of the shelf among equally cheap ones.
 
     Raises
     ------
@@ -279,7 +280,7 @@ def _buy(shade: _Shade, supplier: str, shelf: _Shelf) -> _LotPlan:
 
 
 def _bounds(shade: _Shade, kinds: Counter[Kind], *, rounded: bool = False) -> Bounds:
-    """Bound over all suppliers: the weakest of what is proven for each.
+    """Bound over any mix of suppliers, although a plan buys a shade from one of them.
 
     A lot serves whole bracelets only, so no plan takes more of it than `most_from_lot`; that is
     stronger than pooling the shelf, and proven in the same way.
@@ -291,19 +292,12 @@ def _bounds(shade: _Shade, kinds: Counter[Kind], *, rounded: bool = False) -> Bo
     for _, supplies in shade.lots:
         for supply in supplies:
             pooled[supply.size] += supply.count
-    found = []
-    for offers in shade.suppliers.values():
-        bounds = _offer_bounds(shade, offers, need, demand)
-        if rounded:
-            sizes, prices = shade.sizes_and_prices(offers)
-            bounds = bounds.combined(rounded_bounds(demand, dict(pooled), sizes, prices))
-        if bounds.possible:
-            found.append(bounds)
-    return Bounds(
-        min((bounds.cost for bounds in found), default=0),
-        min((bounds.bought for bounds in found), default=0),
-        (),
-    )
+    offers = [offer for sold in shade.suppliers.values() for offer in sold]
+    bounds = _offer_bounds(shade, offers, need, demand)
+    if rounded:
+        sizes, prices = shade.sizes_and_prices(offers)
+        bounds = bounds.combined(rounded_bounds(demand, dict(pooled), sizes, prices))
+    return bounds if bounds.possible else Bounds(0, 0, ())
 
 
 def _offer_bounds(

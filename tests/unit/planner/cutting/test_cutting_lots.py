@@ -105,22 +105,29 @@ def shades(draw: st.DrawFn) -> Shade:
 
 
 def pooled_bound(shade: Shade, result: LotResult) -> Decimal:
-    """The bound with the lots of the shelf thrown together, over the suppliers."""
+    """The bound with the lots of the shelf, and the suppliers, thrown together."""
     groups, lots, offers = shade
     placed = [group for group in groups if group.key not in result.unplaced]
-    bounds = []
-    for supplier in {offer.supplier for offer in offers}:
-        problem = Problem(
-            tuple(Demand(length, 1) for group in placed for length in group.pieces_mm),
-            tuple(StockPiece(s.length_mm, 1) for lot in lots for s in lot.stock if s.length_mm),
-            tuple(
-                PutUp(offer.length_mm, offer.price)
-                for offer in offers
-                if offer.supplier == supplier and offer.length_mm
-            ),
-        )
-        bounds.append(lower_bounds(problem)[0])
-    return min(bounds, default=Decimal(0))
+    problem = Problem(
+        tuple(Demand(length, 1) for group in placed for length in group.pieces_mm),
+        tuple(StockPiece(s.length_mm, 1) for lot in lots for s in lot.stock if s.length_mm),
+        tuple(PutUp(offer.length_mm, offer.price) for offer in offers if offer.length_mm),
+    )
+    return lower_bounds(problem)[0]
+
+
+def test_lower_bound_holds_for_a_mix_of_suppliers() -> None:
+    """A bracelet from each supplier costs 3 + 2 = 5; either supplier alone costs 6 or more."""
+    groups = make_groups((4, 1), (2, 4))
+    offers = (
+        Offer("long", "X", 9, Decimal(3)),
+        Offer("longer", "Y", 11, Decimal(8)),
+        Offer("short", "Y", 5, Decimal(2)),
+    )
+    result = solve_with_lots(groups, (), offers)
+    assert result.cost == 6
+    assert result.lower_bound <= 5
+    assert result.status == "feasible"
 
 
 @settings(deadline=None, max_examples=200)
