@@ -33,6 +33,7 @@ def plan_page(plan: Plan) -> dict[str, Any]:
     return {
         **plan_context(plan),
         "shades": [{"row": shade, "proof": proof_of_shade(shade)} for shade in shades],
+        "bought_shades": [shade for shade in shades if shade.bought],
         "bought": sum(shade.bought for shade in shades),
         "bought_words": skeins(sum(shade.bought for shade in shades)),
         "proof": proof_of_plan(plan, shades),
@@ -79,6 +80,7 @@ def shade_page(shade: PlanShade) -> dict[str, Any]:
         "lengths": _need_by_length(shade),
         "shelf": [{**thread, "opened": thread["number"] in opened} for thread in shade.shelf],
         "purchases": shade.purchases.all(),
+        "lacking_mm": max(0, shade.need_mm - shade.usable_mm),
         "stock": [_stock_row(row, cuts[row.pk], longest_mm, shade) for row in stock],
         "back_mm": sum(row.left_mm for row in stock if row.goes_back),
         "waste_mm": sum(row.left_mm for row in stock if not row.goes_back),
