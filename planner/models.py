@@ -5,7 +5,7 @@ from datetime import date
 from django.conf import settings
 from django.core.validators import MaxValueValidator, MinValueValidator
 from django.db import models
-from django.db.models import Count, Max, OuterRef, Q, QuerySet, Subquery, Sum
+from django.db.models import Count, Exists, Max, OuterRef, Q, QuerySet, Subquery, Sum
 
 from patterns.models import Colourway, Ending, Pattern, Size
 
@@ -108,6 +108,14 @@ class OrderDraft(models.Model):
         return f"draft of {self.batch}"
 
 
+class PlanQuerySet(QuerySet["Plan"]):
+    def latest_ahead(self, today: date) -> "PlanQuerySet":
+        """The newest plan of every batch whose market is still to come."""
+        later = Plan.objects.filter(batch=OuterRef("batch"), number__gt=OuterRef("number"))
+        ahead = Q(batch__market_date__isnull=True) | Q(batch__market_date__gte=today)
+        return self.filter(ahead).filter(~Exists(later))
+
+
 class Plan(models.Model):
     """A snapshot: every name, length and price in it is a copy, so later edits leave it alone."""
 
@@ -132,6 +140,8 @@ class Plan(models.Model):
     shelf_stamp = models.CharField(max_length=64)
     orders_stamp = models.CharField(max_length=64)
 
+    objects = PlanQuerySet.as_manager()
+
     class Meta:
         ordering = ["-number"]
         constraints = [
@@ -143,6 +153,11 @@ class Plan(models.Model):
 
     def __str__(self) -> str:
         return f"plan {self.number} of {self.batch_name}"
+
+    def newer(self) -> "Plan | None":
+        """The newest plan of the batch, where that is not this one."""
+        newest = Plan.objects.filter(batch=self.batch_id).order_by("-number").first()
+        return newest if newest and newest.pk != self.pk else None
 
 
 class PlanKind(models.Model):

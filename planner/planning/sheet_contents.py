@@ -198,7 +198,7 @@ def _tag(
         due=due,
         pieces=pieces,
         rows=kind.rows,
-        knotted_length_mm=kind.knotted_length_mm,
+        knotted_length_mm=kind.band_length_mm,
         drawing=drawing,
         cautions=kind.cautions,
     )

@@ -5,6 +5,8 @@ from datetime import date
 from decimal import Decimal
 from typing import Any
 
+from patterns.geometry import Gauge, band_length_mm
+
 
 @dataclass(frozen=True)
 class Habits:
@@ -48,6 +50,11 @@ class SnapshotKind:
     pieces: tuple[SnapshotPiece, ...]
     making: dict[str, Any]
     cautions: tuple[str, ...]
+
+    @property
+    def band_length_mm(self) -> int:
+        """What the rows measure; a pattern that ends on whole repeats may miss the length asked."""
+        return round(band_length_mm(self.rows, Gauge(**self.making["gauge"])))
 
 
 @dataclass(frozen=True)

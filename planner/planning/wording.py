@@ -34,8 +34,10 @@ class PlanResult(Protocol):
     def lower_bound(self) -> Decimal: ...
 
 
-def skeins(count: int) -> str:
-    return "1 skein" if count == 1 else f"{count} skeins"
+def bought_words(count: int, put_up_names: Iterable[str]) -> str:
+    """Speak of skeins where all that is bought is called so; hanks and reels are put-ups too."""
+    word = "skein" if all("skein" in name.casefold() for name in put_up_names) else "put-up"
+    return f"1 {word}" if count == 1 else f"{count} {word}s"
 
 
 def proof_of_shade(shade: ShadeResult) -> str:

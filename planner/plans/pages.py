@@ -4,6 +4,7 @@ from collections import Counter, defaultdict
 from dataclasses import dataclass
 from typing import Any
 
+from django.db.models import Count
 from django.utils import timezone
 
 from inventory.models import Workshop
@@ -12,7 +13,7 @@ from patterns.pattern_file import read_pattern
 from patterns.pictures import band_picture
 from planner.models import Plan, PlanBracelet, PlanShade, PlanStock
 from planner.planning.snapshot import SnapshotPiece
-from planner.planning.wording import proof_of_plan, proof_of_shade, skeins
+from planner.planning.wording import bought_words, proof_of_plan, proof_of_shade
 from planner.plans.bars import stock_bar
 from planner.plans.load import load_orders, load_shelf, orders_stamp
 from planner.plans.store import read_habits, read_kind
@@ -32,14 +33,22 @@ def plan_page(plan: Plan) -> dict[str, Any]:
     shelf_changed, orders_changed = what_changed(plan, shades)
     return {
         **plan_context(plan),
-        "shades": [{"row": shade, "proof": proof_of_shade(shade)} for shade in shades],
+        "shades": [
+            {"row": shade, "proof": proof_of_shade(shade), "buys": list(shade.purchases.all())}
+            for shade in shades
+        ],
         "bought_shades": [shade for shade in shades if shade.bought],
         "bought": sum(shade.bought for shade in shades),
-        "bought_words": skeins(sum(shade.bought for shade in shades)),
+        "bought_words": bought_words(
+            sum(shade.bought for shade in shades),
+            [item.put_up_name for shade in shades for item in shade.purchases.all()],
+        ),
         "proof": proof_of_plan(plan, shades),
         "unplaced": [shade for shade in shades if shade.unplaced],
         "shelf_changed": shelf_changed,
         "orders_changed": orders_changed,
+        "newer_plan": plan.newer(),
+        "spoken_for": spoken_for(plan, shades),
         "other_paper": "letter" if plan.workshop["paper"] == "A4" else "a4",
         "other_plans": plan.batch.plans.exclude(pk=plan.pk)[:10],
     }
@@ -66,6 +75,26 @@ def what_changed(plan: Plan, shades: list[PlanShade]) -> tuple[bool, bool]:
     shelf = load_shelf([shade.shade_id_then for shade in shades], workshop)
     orders = load_orders(list(plan.batch.lines.for_grid()), workshop).orders
     return shelf.stamp != plan.shelf_stamp, orders_stamp(orders) != plan.orders_stamp
+
+
+def spoken_for(plan: Plan, shades: list[PlanShade]) -> list[dict[str, Any]]:
+    """Name the plans of markets ahead that cut from thread this plan cuts from too."""
+    numbers = PlanStock.objects.filter(shade__in=shades, shelf_piece_number__isnull=False)
+    others = (
+        PlanStock.objects.filter(
+            shelf_piece_number__in=numbers.values("shelf_piece_number"),
+            shade__plan__in=Plan.objects.latest_ahead(timezone.localdate()),
+        )
+        .exclude(shade__plan__batch=plan.batch_id)
+        .order_by("shade__plan", "shelf_piece_number")
+        .values_list("shade__plan", "shade__plan__number", "shade__plan__batch_name")
+        .annotate(count=Count("shelf_piece_number", distinct=True))
+        .order_by("shade__plan")
+    )
+    return [
+        {"pk": pk, "number": number, "batch": batch, "count": count}
+        for pk, number, batch, count in others
+    ]
 
 
 def shade_page(shade: PlanShade) -> dict[str, Any]:
@@ -143,6 +172,7 @@ def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
     ]
     return {
         **plan_context(bracelet.plan),
+        "newer_plan": bracelet.plan.newer(),
         "bracelet": bracelet,
         "kind": kind,
         "pieces": pieces,

@@ -11,7 +11,7 @@ from django.urls import reverse
 
 from inventory.actions import ChangeThread, RemoveThread, change_shelf
 from inventory.models import PutUp, Shade
-from patterns.actions import change_pattern
+from patterns.actions import add_pattern, change_pattern
 from patterns.models import Colourway, KnottedLength
 from planner.actions import make_plan
 from planner.models import Batch, Plan, PlanPiece
@@ -241,3 +241,39 @@ def test_make_plan_query_count_is_flat(colourway: Colourway) -> None:
         return len(captured)
 
     assert queries(3) == queries(6)
+
+
+def test_plan_page_warns_of_thread_that_another_batch_cuts_too(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    put_thread(shade_of(colourway, "A"), 7_000)
+    other = make_batch("Winter fair")
+    for owner in (batch, other):
+        make_order(owner, colourway)
+    plan_of(other)
+    plan = plan_of(batch)
+    text = page.get(reverse("plan_detail", args=[plan.pk])).content.decode()
+    assert "1 piece on the shelf is cut from" in text
+    assert "Winter fair" in text
+
+
+def test_bracelet_page_of_an_older_plan_names_the_newer(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    make_order(batch, colourway)
+    bracelet = plan_of(batch).bracelets.get()
+    address = reverse("bracelet", args=[bracelet.pk])
+    assert "is newer" not in page.get(address).content.decode()
+    plan_of(batch)
+    assert "is newer" in page.get(address).content.decode()
+
+
+def test_tag_gives_the_length_that_its_rows_measure(colourway: Colourway, batch: Batch) -> None:
+    """Whole repeats, nearest: 12 rows a repeat, 110 rows asked for, so 108 are tied.
+
+    108 x sqrt(2) x 0.9 mm = 137.5 mm, not the 140 mm of the size.
+    """
+    text = pattern_text("Twelve rows", rows=("f f f", "f f") * 6, finish="nearest")
+    make_order(batch, make_colourway(add_pattern(text=text)))
+    kind = read_snapshot(plan_of(batch)).kinds[0]
+    assert (kind.rows, kind.knotted_length_mm, kind.band_length_mm) == (108, 140, 137)

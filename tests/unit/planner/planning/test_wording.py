@@ -5,7 +5,7 @@ from decimal import Decimal
 
 import pytest
 
-from planner.planning.wording import proof_of_plan, proof_of_shade, skeins
+from planner.planning.wording import bought_words, proof_of_plan, proof_of_shade
 
 
 @dataclass(frozen=True)
@@ -46,5 +46,7 @@ def test_proof_of_plan_claims_nothing_above_the_bound() -> None:
     assert proof_of_plan(proven, [proven]) == "Cheaper is impossible."
 
 
-def test_skeins_speaks_of_one_in_the_singular() -> None:
-    assert (skeins(1), skeins(2), skeins(0)) == ("1 skein", "2 skeins", "0 skeins")
+def test_bought_words_call_skeins_only_what_is_called_so() -> None:
+    assert bought_words(1, ["8 m skein"]) == "1 skein"
+    assert bought_words(2, ["8 m Skein", "skein"]) == "2 skeins"
+    assert bought_words(3, ["8 m skein", "40 m hank"]) == "3 put-ups"
