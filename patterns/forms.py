@@ -9,7 +9,8 @@ from django.core.files.uploadedfile import UploadedFile
 from django.http import QueryDict
 
 from inventory.fields import LengthField, LineField
-from inventory.models import Shade, Workshop
+from inventory.models import Shade
+from inventory.page_helpers import habits
 from patterns.fields import BlockField, NumberField
 from patterns.knots import MAX_NAME_LENGTH, DiagonalPattern, Finish, PatternError
 from patterns.models import Colourway, Ending, Gauge, Pattern, Size
@@ -227,7 +228,7 @@ class StrandChoiceForm(forms.Form):
 
 
 def workshop_unit() -> str:
-    return (Workshop.current() or Workshop()).length_unit
+    return habits().length_unit
 
 
 class NamedForm(forms.ModelForm):

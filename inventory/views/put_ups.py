@@ -10,7 +10,7 @@ from inventory.actions import save_put_up
 from inventory.forms import PutUpForm
 from inventory.measures import UNITS
 from inventory.models import PutUp, Shade
-from inventory.views._shared import habits, saved, say_with_undo
+from inventory.page_helpers import habits, saved, say_with_undo
 
 
 @require_safe

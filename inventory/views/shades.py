@@ -7,8 +7,8 @@ from django.views.decorators.http import require_http_methods, require_POST, req
 from inventory.actions import ShelfError, remove_shade
 from inventory.forms import ShadeForm, ThreadAddForm
 from inventory.models import Shade
+from inventory.page_helpers import habits, saved, say_with_undo
 from inventory.views._shade_page import render_shade_page, thread_form_initial
-from inventory.views._shared import habits, saved, say_with_undo
 
 
 def _saved(form: ShadeForm) -> bool:

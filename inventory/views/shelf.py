@@ -7,7 +7,7 @@ from django.views.decorators.vary import vary_on_headers
 
 from inventory.forms import SearchForm
 from inventory.models import Shade, ShelfPiece
-from inventory.views._shared import wants_fragment
+from inventory.page_helpers import wants_fragment
 
 SHADES_A_PAGE = 100
 

@@ -10,8 +10,8 @@ from inventory.actions import AddThread, ChangeThread, PutBackThread, RemoveThre
 from inventory.forms import MOST_PIECES_AT_ONCE, ThreadAddForm, ThreadForm
 from inventory.measures import format_length
 from inventory.models import Shade, ShelfPiece
+from inventory.page_helpers import habits, say_with_undo
 from inventory.views._shade_page import render_shade_page
-from inventory.views._shared import habits, say_with_undo
 
 LONGEST_NUMBER = 18  # digits that a database key surely holds
 PLURALS = {"whole": "whole skeins", "started": "started skeins", "remnant": "remnants"}

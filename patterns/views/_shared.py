@@ -9,24 +9,13 @@ from django.http import HttpRequest, HttpResponse, QueryDict
 from django.shortcuts import render
 from django.utils.cache import patch_vary_headers
 
-from inventory.models import Workshop
+from inventory.page_helpers import wants_fragment
 from patterns.actions import LibraryError, check_removable, remove
-
-
-def habits() -> Workshop:
-    """The workshop's unit and cutting rule; those of a new workshop where there is none yet."""
-    return Workshop.current() or Workshop()
 
 
 def posted(request: HttpRequest) -> QueryDict | None:
     """What was typed; an empty post is still one, and is told what it lacks."""
     return request.POST if request.method == "POST" else None
-
-
-def wants_fragment(request: HttpRequest) -> bool:
-    """When htmx restores a page from its history it needs the whole page."""
-    htmx = request.htmx  # type: ignore[attr-defined]
-    return bool(htmx) and not htmx.history_restore_request
 
 
 def render_either(

@@ -8,7 +8,7 @@ from django.utils.safestring import mark_safe
 from django.views.decorators.http import require_http_methods, require_POST
 
 from inventory.models import Shade
-from inventory.views._shared import say_with_undo
+from inventory.page_helpers import say_with_undo
 from patterns.actions import LibraryError, set_colourway
 from patterns.forms import ColourwayForm
 from patterns.knots import DiagonalPattern

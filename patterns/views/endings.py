@@ -5,18 +5,12 @@ from django.http import HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
 from django.views.decorators.http import require_http_methods, require_POST, require_safe
 
+from inventory.page_helpers import habits
 from patterns.actions import LibraryError, cut_rule, set_default_ending, set_ending
 from patterns.examples import ending_example
 from patterns.forms import EndingForm
 from patterns.models import Ending
-from patterns.views._shared import (
-    habits,
-    note_refusal,
-    posted,
-    removed,
-    render_either,
-    why_not_removed,
-)
+from patterns.views._shared import note_refusal, posted, removed, render_either, why_not_removed
 
 
 @require_safe

@@ -6,7 +6,7 @@ from django.shortcuts import get_object_or_404, redirect, render
 from django.urls import reverse
 from django.views.decorators.http import require_http_methods, require_POST, require_safe
 
-from inventory.views._shared import say_with_undo
+from inventory.page_helpers import say_with_undo
 from patterns.actions import LibraryError, set_default_gauge, set_gauge
 from patterns.examples import gauge_example
 from patterns.forms import GaugeForm

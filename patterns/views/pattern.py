@@ -9,6 +9,7 @@ from django.utils.text import slugify
 from django.views.decorators.http import require_http_methods, require_safe
 
 from inventory.models import Shade
+from inventory.page_helpers import habits
 from patterns.actions import LibraryError, change_pattern, cut_rule, missing_slots
 from patterns.forms import PatternEditForm, StrandChoiceForm
 from patterns.knots import DiagonalPattern, colour_order
@@ -16,14 +17,7 @@ from patterns.models import KnottedLength, Pattern
 from patterns.pattern_file import written_rows
 from patterns.pictures import MOST_PICTURE_ROWS, band_picture
 from patterns.strand_answer import NoAnswer, answer_for
-from patterns.views._shared import (
-    habits,
-    note_refusal,
-    posted,
-    removed,
-    render_either,
-    why_not_removed,
-)
+from patterns.views._shared import note_refusal, posted, removed, render_either, why_not_removed
 
 
 @require_safe

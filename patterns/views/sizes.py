@@ -6,11 +6,11 @@ from django.shortcuts import get_object_or_404, redirect, render
 from django.urls import reverse
 from django.views.decorators.http import require_http_methods, require_POST, require_safe
 
-from inventory.views._shared import say_with_undo
+from inventory.page_helpers import habits, say_with_undo
 from patterns.actions import LibraryError, set_size
 from patterns.forms import SizeForm
 from patterns.models import Ending, Size
-from patterns.views._shared import habits, note_refusal, posted, removed
+from patterns.views._shared import note_refusal, posted, removed
 
 
 @require_safe

@@ -53,8 +53,9 @@ def test_no_address_takes_delete(maker: Client, name: str) -> None:
 @pytest.mark.parametrize("pk", [999, 10**30])
 @pytest.mark.parametrize("name", sorted((READ_ONLY | FORMS | POST_ONLY) - WITHOUT_NUMBER))
 def test_unknown_number_is_not_found(maker: Client, name: str, pk: int) -> None:
-    response = maker.post(url_of(name, pk)) if name in POST_ONLY else maker.get(url_of(name, pk))
-    assert response.status_code == (302 if name in GONE_IS_FINE else 404)
+    address = url_of(name, 999).replace("999", str(pk))
+    response = maker.post(address) if name in POST_ONLY else maker.get(address)
+    assert response.status_code == (302 if name in GONE_IS_FINE and pk == 999 else 404)
 
 
 @pytest.mark.parametrize("name", sorted(FORMS | POST_ONLY))

@@ -26,7 +26,7 @@ def add(client: Client, shade: Shade, **changes: str) -> str:
 
 def undo(client: Client, html: str) -> str:
     """Press the page's Undo button as a browser without JavaScript would."""
-    message = re.search(r'<p class="message [^>]*>(.*?)</form>', html, re.DOTALL)
+    message = re.search(r'<div class="message [^>]*>(.*?)</form>', html, re.DOTALL)
     assert message
     action = re.search(r'action="([^"]+)"', message[1])
     assert action

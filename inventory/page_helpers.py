@@ -1,4 +1,4 @@
-"""What the shelf's views have in common."""
+"""What pages of every app share: habits, fragments, messages with Undo, saving a form."""
 
 import secrets
 from collections.abc import Callable, Sequence
@@ -35,7 +35,7 @@ def say_with_undo(
     form_id = f"undo-{secrets.token_hex(4)}"
     context = {"text": text, "undo_url": undo_url, "values": values, "form_id": form_id}
     # The rendered text is marked safe, and messages keep that mark.
-    messages.success(request, render_to_string("inventory/_undo.html", context, request))
+    messages.success(request, render_to_string("_undo.html", context, request))
 
 
 def saved(form: forms.BaseForm, save: Callable[[], object], *, field: str, problem: str) -> bool:
