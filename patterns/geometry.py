@@ -44,7 +44,8 @@ class Gauge:
     -----
     Knotting strand, a knot: (2 + 2 pi c) d with c the loop ratio and d the diameter.
     Base strand, a knot: 2 d. A row adds sqrt(2) d: knots tile as squares of side 2 d that
-    stand on a corner, and a row is half a diagonal.
+    stand on a corner, and a row is half a diagonal. So N/2 squares side by side are N sqrt(2) d
+    wide, and a strand that sits a row out runs straight along half a diagonal, sqrt(2) d.
     """
 
     thread_diameter_mm: float = 0.9
@@ -194,11 +195,6 @@ def band_length_mm(rows: int, gauge: Gauge) -> float:
     return rows * gauge.row_mm
 
 
-def tip_to_tip_mm(rows: int, gauge: Gauge) -> float:
-    """Return the length from the first tip to the last [mm]: (R + 1) sqrt(2) d."""
-    return (rows + 1) * gauge.row_mm
-
-
 def strand_table(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gauge) -> StrandTable:
     """Return rows, counts and thread of every strand for a knotted length.
 
@@ -219,6 +215,13 @@ def strand_table(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gaug
     ------
     LengthError
         As `rows_for`.
+
+    Notes
+    -----
+    For any pattern of N strands over an even number of rows that measure L the mean strand is
+    L / (sqrt(2) d) * (((2 + 2 pi c) d + 2 d) (N - 1) / (2 N) + i d / N), with c the loop ratio
+    and i the idle run: two rows hold N - 1 knots, each with one knotting and one base strand,
+    and two idle rows. It does not depend on d.
     """
     rows = rows_for(pattern, knotted_length_mm, gauge)
     return StrandTable(

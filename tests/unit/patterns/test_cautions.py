@@ -2,7 +2,9 @@ import pytest
 
 from patterns.cautions import cautions_for
 
-# Outside checks, section 12, in our own words.
+# In our own words, after: small parts under 3, 16 CFR 1501 and EN 71-1; nickel, REACH Annex
+# XVII entry 27 and EN 1811; lead, CPSIA; general product safety, EU 2023/988.
+# Titles and numbers only: the texts are not in the repository. Local rules decide.
 CHILD = [
     "Not for children under 3: small parts and long ties.",
     "Take off for sleep, sport, machines and playgrounds.",

@@ -97,8 +97,9 @@ def test_draw_band_stays_on_its_ground(pattern, rows, layout):
 
 
 def test_draw_band_measures_as_the_geometry_says():
-    # Outside checks, section 9 (C): N sqrt 2 d wide, (R + 1) sqrt 2 d from tip to tip; the
-    # unit is sqrt 2 d.
+    # Derived: knots are squares of side 2 d on a corner (Notes of patterns/geometry.py), their
+    # diagonal is 2 sqrt 2 d, two units. N strands side by side are N units wide, and R rows half
+    # a diagonal apart are R + 1 units from tip to tip.
     drawn = squares(draw_band(SLANT, 11, COLOURS))
     assert max(s.cx for s in drawn) - min(s.cx for s in drawn) + 2 == 6
     assert max(s.cy for s in drawn) - min(s.cy for s in drawn) + 2 == 12
@@ -132,7 +133,7 @@ def test_draw_band_loose_ends_in_the_order_of_the_strands(pattern, rows):
 def test_draw_band_idle_strand_runs_along_the_edge():
     # Strands 1 and 6 sit row 2 out: bare from the lower side of the knot in row 1 to the upper
     # side of that in row 3. Half a unit from the edge of the band, a side is half a unit from
-    # its centre line, so 2 - 2 x 1/2 = 1 unit is bare: sqrt 2 d (outside checks, section 9).
+    # its centre line, so 2 - 2 x 1/2 = 1 unit is bare: sqrt 2 d, the idle run (derived).
     drawing = draw_band(make_pattern(["bf fb fb", "fb fb"], slots="ABCDEF"), 3, COLOURS)
     between = [
         line for line in lines(drawing) if line.y1 > MARGIN and line.y2 < drawing.height - MARGIN

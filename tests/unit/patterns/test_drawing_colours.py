@@ -9,7 +9,8 @@ colours = st.integers(0, 0xFFFFFF).map(lambda number: f"#{number:06x}")
 
 @pytest.mark.parametrize(
     ("colour", "ratio"),
-    # Outside checks, section 11: WCAG 2.2 (R, C), on white.
+    # W3C, Web Content Accessibility Guidelines 2.2 (2023), definition of contrast ratio; values
+    # computed from it apart from the code, on white.
     [
         ("#767676", 4.542225),
         ("#777777", 4.478089),

@@ -15,7 +15,6 @@ from patterns.geometry import (
     band_width_mm,
     rows_for,
     strand_table,
-    tip_to_tip_mm,
 )
 from patterns.knots import DiagonalPattern, Finish
 
@@ -33,7 +32,7 @@ def with_finish(pattern, finish):
     return DiagonalPattern(pattern.name, pattern.slots, pattern.rows, finish)
 
 
-# --- thread of one knot: outside checks, section 9 (C) ---------------------------------------
+# --- thread of one knot: derived, see the Notes of patterns/geometry.py; checked with sympy ---
 
 
 @pytest.mark.parametrize("diameter_mm", [0.5, 0.9, 1.0, 2.0])
@@ -64,13 +63,15 @@ def test_gauge_idle_row(idle_run, diameters):
 
 
 def test_gauge_knot_at_one_millimetre():
-    # Common practice, no source (field handbook, section 2): about 11.4 mm and 2 mm.
+    # Common practice, no source: about 11.4 mm of the knotting strand and 2 mm of the base.
     assert Gauge(1.0).knotting_mm == pytest.approx(11.4, abs=0.05)
     assert Gauge(1.0).base_mm == pytest.approx(2)
 
 
 def test_gauge_default_diameter_is_above_peirce():
-    # Peirce, J. Text. Inst. 28 (1937) T45: d = 0.0373294 sqrt(tex) mm, a lower bound.
+    # F. T. Peirce, The Geometry of Cloth Structure, J. Text. Inst. 28 (1937) T45 (from memory):
+    # d = 1 / (28 sqrt Ne) inch = 0.0373294 sqrt(tex) mm, a lower bound. Floss of at most 2 g for
+    # 8 m: common practice, no source.
     heaviest_floss_tex = 2.0 / 8 * 1000
     assert 0.0373294 * sqrt(heaviest_floss_tex) == pytest.approx(0.59, abs=0.005)
     assert Gauge().thread_diameter_mm > 0.0373294 * sqrt(heaviest_floss_tex)
@@ -94,7 +95,7 @@ def test_gauge_refused(values):
 
 
 def test_rows_for_150_mm():
-    # Common practice, no source (field handbook, section 2): 150 mm at 0.9 mm is 118 rows.
+    # Common practice, no source: 150 mm at 0.9 mm is 118 rows.
     assert rows_for(all_same(6), 150, Gauge(0.9)) == 118
 
 
@@ -156,11 +157,9 @@ def test_rows_for_whole_repeats_beyond_the_most_rows():
 
 
 def test_band_measures():
-    # Outside checks, section 9 (C): 6 strands at 0.9 mm are 7.637 mm wide; R rows measure
-    # (R + 1) sqrt 2 d from tip to tip.
+    # Derived, see patterns/geometry.py: N sqrt 2 d, for 6 strands at 0.9 mm 7.637 mm wide.
     gauge = Gauge(0.9)
     assert band_width_mm(6, gauge) == pytest.approx(7.637, abs=5e-4)
-    assert tip_to_tip_mm(118, gauge) == pytest.approx(119 * sqrt(2) * 0.9)
     assert band_length_mm(118, gauge) == pytest.approx(118 * sqrt(2) * 0.9)
 
 
@@ -169,7 +168,8 @@ def test_band_measures():
 
 @pytest.mark.parametrize(
     ("strands", "without_cm", "with_cm"),
-    # Outside checks, section 9 (C): mean strand over 150 mm without / with idle runs.
+    # Derived: see the Notes of `strand_table` in patterns/geometry.py; these figures were worked
+    # out of that formula with sympy, without / with idle runs.
     [
         (4, 53.397, 57.147),
         (6, 59.330, 61.830),
@@ -192,7 +192,7 @@ def test_strand_table_mean_strand(strands, without_cm, with_cm, diameter_mm, kno
 
 @given(patterns(max_strands=20).filter(lambda p: p.strands % 2 == 0))
 def test_strand_table_mean_strand_is_the_closed_form(pattern):
-    # Field handbook, section 2: L ((2 + 3 pi) + 2) / sqrt 2 (N - 1) / (2 N), idle run 0.
+    # Derived: see the Notes of `strand_table` in patterns/geometry.py; idle run 0, loop ratio 1.5.
     pattern = with_finish(pattern, Finish.EXACT)
     table = strand_table(pattern, 150, Gauge(EXACT_DIAMETERS_MM[0], idle_run=0))
     strands = pattern.strands
@@ -216,7 +216,8 @@ def test_strand_table_by_hand():
 
 
 def test_strand_table_base_strand_at_the_edge():
-    # Field handbook, section 2: base in 59 of 118 rows is 106 mm, with idle runs 181 mm.
+    # By hand: base in 59 of 118 rows is 59 x 1.8 = 106.2 mm, shorter than the 150 mm band, which
+    # cannot be; 59 idle runs of 1.2728 mm more make 181.3 mm.
     pattern = make_pattern(["bf f f", "f f"])
     bare = strand_table(pattern, 150, Gauge(0.9, idle_run=0)).strands[0]
     full = strand_table(pattern, 150, Gauge(0.9)).strands[0]
@@ -236,8 +237,8 @@ def test_strand_table_no_strand_shorter_than_the_band(pattern, gauge, length_mm)
 
 @given(patterns(), gauges, st.integers(150, 400))
 def test_strand_table_idle_runs_make_the_length(pattern, gauge, length_mm):
-    # Outside checks, section 9 (C): all idle runs together are exactly the length. With N even
-    # an odd last row has no idle strand yet, so there they are one row shorter.
+    # Derived: one strand sits out a row on average, for a straight sqrt 2 d, just what a row adds
+    # to the band; so all idle runs together are exactly the length. With N even an odd last row has no idle strand yet, so there they are one row shorter.
     table = strand_table(pattern, length_mm, gauge)
     idle_mm = sum(strand.idle for strand in table.strands) * gauge.idle_mm
     missing = table.rows % 2 if pattern.strands % 2 == 0 else 0

@@ -20,7 +20,8 @@ from patterns.knots import (
 )
 
 F, B, FB, BF = Knot.F, Knot.B, Knot.FB, Knot.BF
-# Outside checks, section 10 (certainty C): "N=6, rows [fb b bf] [f f] [f fb f] [b f]".
+# An example of our own; what it comes to below was computed apart from the code under test, with
+# sympy.combinatorics (Permutation) and by walking the rows.
 SIX_STRANDS = make_pattern(["fb b bf", "f f", "f fb f", "b f"])
 
 
@@ -68,7 +69,8 @@ def as_lists(counts):
 
 @pytest.mark.parametrize(
     ("knot", "tying", "after"),
-    # Field handbook, section 1: f and b swap, fb and bf return; the left or right strand ties.
+    # Terms of the trade (common practice, no source): f and b swap the strands, fb and bf return;
+    # the first letter says whether the left (f) or the right (b) strand ties.
     [("f", 1, (2, 1)), ("b", 2, (2, 1)), ("fb", 1, (1, 2)), ("bf", 2, (1, 2))],
 )
 def test_knot_on_two_strands(knot, tying, after):
@@ -82,7 +84,8 @@ def test_knot_on_two_strands(knot, tying, after):
     [(2, 1, 0), (3, 1, 1), (6, 3, 2), (7, 3, 3), (8, 4, 3), (60, 30, 29)],
 )
 def test_knots_in_row_by_parity(strands, odd, even):
-    # Field handbook, section 1: N even N/2 and N/2 - 1 knots, N odd (N - 1)/2 in every row.
+    # By counting: rows pair strands 1-2, 3-4, ... and 2-3, 4-5, ... in turn, so N even gives N/2
+    # and N/2 - 1 knots, N odd (N - 1)/2 in every row.
     assert [knots_in_row(strands, row) for row in (1, 2, 3, 4)] == [odd, even, odd, even]
 
 
@@ -95,7 +98,7 @@ def test_tie_rows_pairs_and_idle_strand_of_odd_number():
 
 
 def test_count_strands_of_six_strand_example():
-    # Outside checks, section 10 (C).
+    # Computed by walking the rows of the example, apart from the code under test.
     counts = count_strands(SIX_STRANDS, 4)
     assert [count.tied for count in counts] == [2, 3, 2, 1, 1, 1]
     assert [count.base for count in counts] == [1, 1, 1, 2, 3, 2]
@@ -105,7 +108,8 @@ def test_count_strands_of_six_strand_example():
 @pytest.mark.parametrize("strands", range(2, 21))
 @pytest.mark.parametrize("knot", ["f", "b"])
 def test_count_strands_all_forward_over_two_n_rows(strands, knot):
-    # Outside checks, section 9 (C): N - 1 tied, N - 1 as base, 2 idle rows, every strand.
+    # Derived: in 2N rows all alike every two strands meet twice, and either ties once; so each
+    # strand ties N - 1 knots, is base in N - 1 and sits out the other 2 rows.
     counts = count_strands(all_same(strands, knot), 2 * strands)
     assert as_lists(counts) == [[strands - 1, strands - 1, 2]] * strands
 
@@ -151,7 +155,7 @@ def test_count_strands_negative_rows():
         count_strands(SIX_STRANDS, -1)
 
 
-# --- repeats: outside checks, section 10 (C), sympy.combinatorics as reference ---------------
+# --- repeats: orders computed with sympy.combinatorics (Permutation.order) as reference ------
 
 
 def test_permutation_of_six_strand_example():

@@ -73,7 +73,8 @@ def test_default_endings_names():
 
 @pytest.mark.parametrize("ending", DEFAULT_ENDINGS, ids=lambda ending: ending.name)
 def test_default_endings_within_common_practice(ending):
-    # Common practice, no source (field handbook, section 3).
+    # Common practice, no source: about 30 mm of closing knot, a grip of 80 to 100 mm, a loop of
+    # 40 to 60 mm, a three-part plait takes up 1.2 to 1.3 times its length.
     assert ending.closing_knot_mm == 30
     assert 80 <= ending.grip_mm <= 100
     if ending.start == "folded":

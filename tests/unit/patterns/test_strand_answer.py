@@ -56,8 +56,9 @@ def test_answer_for_a_repeat_that_does_not_fit_says_so():
         answer(rows=rows, finish="at_most")
 
 
-def test_gauge_example_is_that_of_the_handbook():
-    # 11.424778 d and 2 d at d = 0.9; common practice, no source: 118 rows for 150 mm.
+def test_gauge_example_at_0_9_mm():
+    # Derived: (2 + 3 pi) d = 11.424778 d and 2 d (Notes of patterns/geometry.py) at d = 0.9 mm.
+    # Common practice, no source: 118 rows for 150 mm.
     example = gauge_example(Gauge(thread_diameter_mm=0.9))
     assert example.knotting_mm == pytest.approx(10.2823, abs=1e-4)
     assert example.base_mm == pytest.approx(1.8)

@@ -15,7 +15,7 @@ PRINTER_DPI = 203
 @pytest.mark.parametrize(
     ("length", "version"),
     # ISO/IEC 18004, byte mode, level L: 17 bytes in version 1, 32 in 2, 53 in 3, 78 in 4
-    # (17 from the project's outside checks; the others from memory).
+    # (from memory).
     [(17, 1), (18, 2), (32, 2), (33, 3), (53, 3), (54, 4), (78, 4)],
 )
 def test_code_is_the_smallest_that_holds_the_text(length, version):
