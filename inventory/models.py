@@ -24,7 +24,14 @@ class Workshop(models.Model):
         A4 = "A4", "A4"
         LETTER = "Letter", "US Letter"
 
+    class DateOrder(models.TextChoices):
+        DAY_FIRST = "day", "5/12 is 5 December"
+        MONTH_FIRST = "month", "5/12 is May 12"
+
     name = models.CharField(max_length=80)
+    date_order = models.CharField(
+        max_length=5, choices=DateOrder.choices, default=DateOrder.DAY_FIRST
+    )
     length_unit = models.CharField(
         max_length=2, choices=LengthUnit.choices, default=LengthUnit.CENTIMETRES
     )

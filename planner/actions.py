@@ -83,6 +83,16 @@ def save_lines(
     return batch
 
 
+@transaction.atomic
+def put_back_lines(*, batch: Batch, good: Sequence[GoodLine]) -> Batch:
+    """Add lines that were removed a moment ago."""
+    locked = Batch.objects.select_for_update().get(pk=batch.pk)
+    append_lines(batch=locked, good=good)
+    locked.revision += 1
+    locked.save(update_fields=["revision"])
+    return locked
+
+
 def append_lines(*, batch: Batch, good: Sequence[GoodLine]) -> None:
     last = batch.lines.aggregate(last=Max("position"))["last"] or 0
     OrderLine.objects.bulk_create(

@@ -90,6 +90,7 @@ class WorkshopForm(forms.ModelForm):
         fields = [
             "name",
             "length_unit",
+            "date_order",
             "currency",
             "paper",
             "rounding_step_mm",
@@ -99,6 +100,7 @@ class WorkshopForm(forms.ModelForm):
         ]
         labels = {
             "length_unit": "You measure in",
+            "date_order": "When you type a date with strokes",
             "paper": "You print on",
         }
 

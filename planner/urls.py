@@ -2,7 +2,7 @@
 
 from django.urls import include, path
 
-from planner.views import batches, home, plans, workshop
+from planner.views import batches, home, lists, plans, workshop
 
 urlpatterns = [
     path("", home.home, name="home"),
@@ -13,12 +13,11 @@ urlpatterns = [
     path("orders/new/", batches.batch_new, name="batch_new"),
     path("orders/<key:pk>/", batches.batch_detail, name="batch_detail"),
     path("orders/<key:pk>/edit/", batches.batch_edit, name="batch_edit"),
-    path("orders/<key:pk>/add-list/", batches.list_add, name="list_add"),
-    path("orders/<key:pk>/lists/<key:draft_pk>/", batches.list_check, name="list_check"),
-    path("orders/<key:pk>/lists/<key:draft_pk>/add/", batches.list_confirm, name="list_confirm"),
-    path(
-        "orders/<key:pk>/lists/<key:draft_pk>/discard/", batches.list_discard, name="list_discard"
-    ),
+    path("orders/<key:pk>/put-back/", batches.lines_put_back, name="lines_put_back"),
+    path("orders/<key:pk>/add-list/", lists.list_add, name="list_add"),
+    path("orders/<key:pk>/lists/<key:draft_pk>/", lists.list_check, name="list_check"),
+    path("orders/<key:pk>/lists/<key:draft_pk>/add/", lists.list_confirm, name="list_confirm"),
+    path("orders/<key:pk>/lists/<key:draft_pk>/discard/", lists.list_discard, name="list_discard"),
     path("orders/<key:pk>/plan/", plans.plan_new, name="plan_new"),
     path("plans/<key:pk>/", plans.plan_detail, name="plan_detail"),
     path("plans/<key:pk>/shades/<key:shade_pk>/", plans.plan_shade, name="plan_shade"),

@@ -85,6 +85,7 @@ class Migration(migrations.Migration):
             fields=[
                 ('id', models.BigAutoField(auto_created=True, primary_key=True, serialize=False, verbose_name='ID')),
                 ('name', models.CharField(max_length=80)),
+                ('date_order', models.CharField(choices=[('day', '5/12 is 5 December'), ('month', '5/12 is May 12')], default='day', max_length=5)),
                 ('length_unit', models.CharField(choices=[('cm', 'centimetres'), ('in', 'inches')], default='cm', max_length=2)),
                 ('currency', models.CharField(default='EUR', max_length=3, validators=[django.core.validators.RegexValidator('^[A-Z]{3}\\Z')])),
                 ('paper', models.CharField(choices=[('A4', 'A4'), ('Letter', 'US Letter')], default='A4', max_length=6)),

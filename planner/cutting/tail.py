@@ -93,7 +93,7 @@ def _cheaper_choices(
     choices = []
     for count in range(1, most + 1):
         for number, choice in enumerate(combinations_with_replacement(range(len(sold)), count)):
-            if number > 5_000:
+            if number >= TAIL_CHOICES:
                 break
             price = sum(sold[index].price for index in choice)
             if price < cost and sum(sold[index].size for index in choice) >= need:

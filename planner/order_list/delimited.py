@@ -110,16 +110,16 @@ def read_records(text: str) -> Iterator[list[str]]:
     given = _DELIMITER_LINE.match(text)
     if given is not None and given[1] in DELIMITERS:
         yield []
-        yield from _split(text[given.end() :], given[1])
+        yield from _split(text[given.end() :], given[1], row=1)
     else:
         yield from _split(text, find_delimiter(text))
 
 
-def _split(text: str, delimiter: str) -> Iterator[list[str]]:
+def _split(text: str, delimiter: str, row: int = 0) -> Iterator[list[str]]:
+    """Split the rows that follow so many others."""
     # A quote left open swallows all that follows, the last row added here too. That tells it from
     # a list that ends well, which the csv module does not.
     source = io.StringIO(f"{text}\n{_END}", newline="")
-    row = 0
     waiting: list[str] | None = None
     try:
         for record in csv.reader(source, delimiter=delimiter):
@@ -129,8 +129,8 @@ def _split(text: str, delimiter: str) -> Iterator[list[str]]:
             waiting = record
     except csv.Error as error:
         raise OrderListError(
-            f"Row {row + 1}: a cell is longer than {MAX_CELL_CHARACTERS:,} characters, the limit. "
-            'Look for a quote (") that is never closed.'
+            f"Row {row + 1}: a cell holds more than {csv.field_size_limit():,} characters; "
+            f'{MAX_CELL_CHARACTERS:,} is the limit. Look for a quote (") that is never closed.'
         ) from error
     if waiting != [_END]:
         raise OrderListError(

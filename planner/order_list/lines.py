@@ -83,34 +83,6 @@ def read_rows(
     return _sorted_out([reader.read(number, cells) for number, cells in rows], (), ())
 
 
-def read_row(
-    number: int,
-    cells: Mapping[str, str],
-    catalogue: Catalogue,
-    *,
-    today: date,
-    market_date: date | None,
-    day_first: bool = True,
-) -> GoodLine | BadLine | None:
-    """Read one row of the grid.
-
-    Parameters
-    ----------
-    number
-        The row's number, as messages give it.
-    cells
-        Text by field, as in `DEFAULT_ORDER`; a field that is missing is blank.
-    catalogue, today, market_date, day_first
-        As in `read_lines`.
-
-    Returns
-    -------
-    GoodLine, BadLine or None
-        The line; `None` for a row in which nothing is written.
-    """
-    return RowReader(catalogue, today, market_date, day_first).read(number, cells)
-
-
 def _sorted_out(
     lines: Iterable[GoodLine | BadLine | None], ignored: tuple[str, ...], notices: tuple[str, ...]
 ) -> Reading:

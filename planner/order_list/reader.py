@@ -239,6 +239,8 @@ class RowReader:
         read = read_date(text, today=self._today, day_first=self._day_first)
         if read.day < self._today:
             return read.day, f"the due date, {long_date(read.day)}, has passed."
+        if self._market_date is not None and read.day > self._market_date:
+            return read.day, f"the due date, {long_date(read.day)}, is after the market."
         return read.day, read.notice
 
 

@@ -1,7 +1,30 @@
-"""What can be ordered now, for reading orders and for the grid's suggestions."""
+"""What can be ordered now, and how a batch's orders are read."""
 
+from datetime import date
+from typing import TypedDict
+
+from django.utils import timezone
+
+from inventory.models import Workshop
 from patterns.models import Ending, Pattern, Size
 from planner.order_list.catalogue import Catalogue, Choice, PatternChoice, SizeChoice
+
+
+class HowToRead(TypedDict):
+    """What dates are read by."""
+
+    today: date
+    market_date: date | None
+    day_first: bool
+
+
+def how_to_read(market_date: date | None) -> HowToRead:
+    workshop = Workshop.current() or Workshop()
+    return {
+        "today": timezone.localdate(),
+        "market_date": market_date,
+        "day_first": workshop.date_order == Workshop.DateOrder.DAY_FIRST,
+    }
 
 
 def load_catalogue() -> Catalogue:

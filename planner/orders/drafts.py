@@ -2,7 +2,6 @@
 
 from collections.abc import Mapping
 from dataclasses import replace
-from datetime import date
 from typing import Any
 
 from planner.models import OrderDraft
@@ -10,6 +9,7 @@ from planner.order_list.catalogue import Catalogue
 from planner.order_list.columns import DEFAULT_ORDER
 from planner.order_list.lines import read_rows
 from planner.order_list.results import BadLine, GoodLine, Problem, Reading
+from planner.orders.catalogue import HowToRead
 from planner.orders.grid import CELL_NAME, GridRow, grid_row
 
 DraftRow = dict[str, Any]
@@ -38,12 +38,10 @@ def _problems_of(line: GoodLine | BadLine) -> list[tuple[str | None, str]]:
     return [(problem.field, problem.message) for problem in line.problems]
 
 
-def read_draft(
-    draft: OrderDraft, catalogue: Catalogue, *, today: date, market_date: date | None
-) -> Reading:
+def read_draft(draft: OrderDraft, catalogue: Catalogue, how: HowToRead) -> Reading:
     """Read the draft's rows against what can be ordered now."""
     rows = [(row["number"], row["cells"]) for row in draft.rows]
-    reading = read_rows(rows, catalogue, today=today, market_date=market_date)
+    reading = read_rows(rows, catalogue, **how)
     noted = {row["number"]: row["problems"] for row in draft.rows if row.get("problems")}
     if not noted:
         return reading

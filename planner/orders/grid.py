@@ -3,13 +3,13 @@
 import re
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
-from datetime import date
 
 from planner.models import OrderLine
 from planner.order_list.catalogue import Catalogue
 from planner.order_list.columns import DEFAULT_ORDER
 from planner.order_list.lines import read_rows
 from planner.order_list.results import BadLine, GoodLine
+from planner.orders.catalogue import HowToRead
 
 HIGHEST_ROW = 100_000
 CELL_NAME = re.compile(r"row-([0-9]{1,6})-([a-z_]+)\Z")
@@ -47,6 +47,10 @@ class GridRow:
     removed: bool = False
     whole_row: tuple[str, ...] = ()
 
+    @property
+    def wrong_cells(self) -> tuple[GridCell, ...]:
+        return tuple(cell for cell in self.cells if cell.problem)
+
 
 @dataclass
 class PostedGrid:
@@ -81,6 +85,11 @@ class PostedGrid:
             if line is not None
             and (removed or (number not in self.good and number not in self.bad))
         ]
+
+    @property
+    def notices(self) -> list[str]:
+        """What was guessed in the rows that are good: a wrist as a size, a date without a year."""
+        return [notice for line in self.good.values() for notice in line.notices]
 
     def as_rows(self) -> list[GridRow]:
         return [
@@ -140,9 +149,7 @@ def blank_rows(first: int, count: int = BLANK_ROWS) -> list[GridRow]:
     return [grid_row(number, None, {}) for number in range(first, first + count)]
 
 
-def read_grid(
-    posted: Mapping[str, str], catalogue: Catalogue, *, today: date, market_date: date | None
-) -> PostedGrid:
+def read_grid(posted: Mapping[str, str], catalogue: Catalogue, how: HowToRead) -> PostedGrid:
     """Read the page's cells; names that are no cells are left aside."""
     texts: dict[int, dict[str, str]] = {}
     for name, text in posted.items():
@@ -155,7 +162,7 @@ def read_grid(
         cells = {str(name): row.get(name, "") for name in DEFAULT_ORDER}
         grid.rows.append((number, _line_key(row.get("line", "")), cells, row.get("gone") == "yes"))
     kept = [(number, cells) for number, _, cells, removed in grid.rows if not removed]
-    reading = read_rows(kept, catalogue, today=today, market_date=market_date)
+    reading = read_rows(kept, catalogue, **how)
     grid.good = {line.number: line for line in reading.good}
     grid.bad = {line.number: line for line in reading.bad}
     return grid

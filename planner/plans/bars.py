@@ -3,7 +3,7 @@
 from django.utils.html import format_html, format_html_join
 from django.utils.safestring import SafeString
 
-NARROWEST_LABEL_PER_CENT = 4.5
+LABEL_PER_CENT = 3.2
 
 
 def stock_bar(
@@ -36,7 +36,7 @@ def stock_bar(
 def _segment(start: float, width: float, colour: str, label: str) -> SafeString:
     """The colour runs along the top only, so the number stays readable on every shade."""
     text = SafeString("")
-    if width >= NARROWEST_LABEL_PER_CENT:
+    if width >= LABEL_PER_CENT * len(label):
         text = format_html(
             '<text x="{}%" y="27" text-anchor="middle" fill="currentColor">{}</text>',
             f"{start + width / 2:.3f}",

@@ -42,9 +42,6 @@ PAPERS: dict[str, Paper] = {
     )
 }
 
-# Many printers cannot reach the outermost 5 mm: nothing is drawn there.
-UNPRINTED_EDGE_PT = 5 * POINTS_PER_MM
-
 
 def millimetres(length_mm: float) -> float:
     """Turn a length on paper [mm] into points [pt]."""

@@ -1,34 +1,32 @@
-"""Batches of orders: the grid, and lists added by pasting or as files."""
+"""Batches of orders and their grid."""
 
-from typing import Any, cast
+from typing import Any
 
 from django.contrib import messages
-from django.contrib.auth.models import User
 from django.core.paginator import Paginator
 from django.http import HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
+from django.urls import reverse
 from django.utils import timezone
 from django.views.decorators.http import require_GET, require_http_methods, require_POST
 
-from planner.actions import BatchChanged, confirm_draft, correct_draft, save_lines
+from inventory.page_helpers import say_with_undo
+from planner.actions import BatchChanged, put_back_lines, save_lines
 from planner.forms import BatchForm
-from planner.models import Batch, OrderDraft
-from planner.order_list.limits import MAX_FILE_BYTES, OrderListError
-from planner.order_list.lines import read_lines
-from planner.order_list.results import Reading
-from planner.order_list.table import Table, read_pasted, read_table
-from planner.orders.catalogue import load_catalogue
-from planner.orders.drafts import (
-    bad_grid_rows,
-    draft_row,
-    read_draft,
-    resolved_rows,
-    rows_of_reading,
+from planner.models import Batch, OrderLine
+from planner.orders.catalogue import how_to_read, load_catalogue
+from planner.orders.grid import (
+    HEADINGS,
+    GridRow,
+    blank_rows,
+    cells_of_line,
+    read_grid,
+    saved_rows,
 )
-from planner.orders.grid import HEADINGS, GridRow, blank_rows, read_grid, saved_rows
 
 LINES_A_PAGE = 100
 BATCHES_A_PAGE = 50
+MOST_NOTICES = 6
 
 
 @require_GET
@@ -66,12 +64,10 @@ def batch_detail(request: HttpRequest, pk: int) -> HttpResponse:
     batch = get_object_or_404(Batch, pk=pk)
     if request.method == "GET":
         return _grid_page(request, batch)
-    catalogue = load_catalogue()
-    grid = read_grid(
-        request.POST.dict(), catalogue, today=timezone.localdate(), market_date=batch.market_date
-    )
+    grid = read_grid(request.POST.dict(), load_catalogue(), how_to_read(batch.market_date))
     if grid.bad:
         return _grid_page(request, batch, rows=grid.as_rows(), wrong=len(grid.bad))
+    removed = list(batch.lines.for_grid().filter(pk__in=grid.removed))
     try:
         save_lines(
             batch=batch,
@@ -84,8 +80,44 @@ def batch_detail(request: HttpRequest, pk: int) -> HttpResponse:
         messages.error(request, str(reason))
         batch.refresh_from_db()
         return _grid_page(request, batch, rows=grid.as_rows())
-    messages.success(request, "Saved.")
+    _say_saved(request, batch, grid.notices, removed)
     return redirect(request.get_full_path())
+
+
+def _say_saved(
+    request: HttpRequest, batch: Batch, notices: list[str], removed: list[OrderLine]
+) -> None:
+    for notice in notices[:MOST_NOTICES]:
+        messages.info(request, notice)
+    if len(notices) > MOST_NOTICES:
+        messages.info(request, f"And {len(notices) - MOST_NOTICES} more rows were read so.")
+    if not removed:
+        messages.success(request, "Saved.")
+        return
+    named = ", ".join(str(line) for line in removed[:3])
+    more = f" and {len(removed) - 3} more" if len(removed) > 3 else ""
+    say_with_undo(
+        request,
+        f"Saved. Removed: {named}{more}.",
+        undo_url=reverse("lines_put_back", args=[batch.pk]),
+        values=[
+            (f"row-{number}-{name}", text)
+            for number, line in enumerate(removed, start=1)
+            for name, text in cells_of_line(line).items()
+        ],
+    )
+
+
+@require_POST
+def lines_put_back(request: HttpRequest, pk: int) -> HttpResponse:
+    """Undo of a removal: the rows come back at the end, as they were written."""
+    batch = get_object_or_404(Batch, pk=pk)
+    grid = read_grid(request.POST.dict(), load_catalogue(), how_to_read(batch.market_date))
+    if grid.bad:
+        return _grid_page(request, batch, rows=grid.as_rows(), wrong=len(grid.bad))
+    put_back_lines(batch=batch, good=grid.added)
+    messages.success(request, "Put back, at the end.")
+    return redirect("batch_detail", pk=pk)
 
 
 def _whole_number(text: str | None) -> int:
@@ -109,6 +141,7 @@ def _grid_page(
         "blank_rows": blank_rows(last + 1),
         "headings": HEADINGS,
         "wrong": wrong,
+        "wrong_rows": [row for row in rows if row.wrong_cells or row.whole_row][:20],
         "bracelets": lines.bracelet_count(),
         "catalogue": load_catalogue(),
         "plans": batch.plans.all()[:10],
@@ -116,118 +149,3 @@ def _grid_page(
         "section": "orders",
     }
     return render(request, "planner/batch_detail.html", context, status=422 if refused else 200)
-
-
-@require_http_methods(["GET", "POST"])
-def list_add(request: HttpRequest, pk: int) -> HttpResponse:
-    batch = get_object_or_404(Batch, pk=pk)
-    context: dict[str, Any] = {
-        "batch": batch,
-        "section": "orders",
-        "most_megabytes": MAX_FILE_BYTES // 1_000_000,
-    }
-    if request.method == "GET":
-        return render(request, "planner/list_add.html", context)
-    try:
-        name, table = _posted_table(request)
-        reading = _read(table, batch)
-    except OrderListError as reason:
-        context |= {"problem": str(reason), "pasted": request.POST.get("pasted", "")}
-        return render(request, "planner/list_add.html", context, status=422)
-    draft = OrderDraft.objects.create(
-        batch=batch,
-        created_by=cast(User, request.user),
-        source_name=name[:200],
-        rows=rows_of_reading(reading),
-        notices=_notices(reading),
-    )
-    return redirect("list_check", pk=pk, draft_pk=draft.pk)
-
-
-def _posted_table(request: HttpRequest) -> tuple[str, Table]:
-    upload = request.FILES.get("file")
-    if upload is None:
-        return "", read_pasted(request.POST.get("pasted", ""))
-    if upload.size is not None and upload.size > MAX_FILE_BYTES:
-        raise OrderListError(
-            f"The file is larger than {MAX_FILE_BYTES // 1_000_000} MB. Split the list."
-        )
-    name = upload.name or ""
-    return name, read_table(upload.read(), name)
-
-
-def _read(table: Table, batch: Batch) -> Reading:
-    reading = read_lines(
-        table, load_catalogue(), today=timezone.localdate(), market_date=batch.market_date
-    )
-    if not reading.good and not reading.bad:
-        raise OrderListError("There are no orders in it. Paste the rows, or choose a file.")
-    return reading
-
-
-def _notices(reading: Reading) -> list[str]:
-    notices = list(reading.notices)
-    if reading.ignored_columns:
-        notices.append("Not read: " + ", ".join(reading.ignored_columns) + ".")
-    return notices
-
-
-@require_http_methods(["GET", "POST"])
-def list_check(request: HttpRequest, pk: int, draft_pk: int) -> HttpResponse:
-    draft = get_object_or_404(OrderDraft.objects.select_related("batch"), pk=draft_pk, batch=pk)
-    if request.method == "POST":
-        return _list_correct(request, draft)
-    catalogue = load_catalogue()
-    reading = read_draft(
-        draft, catalogue, today=timezone.localdate(), market_date=draft.batch.market_date
-    )
-    context = {
-        "batch": draft.batch,
-        "draft": draft,
-        "good": resolved_rows(reading, catalogue),
-        "notices": [*draft.notices, *(n for line in reading.good for n in line.notices)],
-        "bad_rows": bad_grid_rows(reading),
-        "bracelets": sum(line.quantity for line in reading.good),
-        "headings": HEADINGS,
-        "catalogue": catalogue,
-        "section": "orders",
-    }
-    return render(request, "planner/list_check.html", context)
-
-
-def _list_correct(request: HttpRequest, draft: OrderDraft) -> HttpResponse:
-    try:
-        correct_draft(draft=draft, posted=request.POST.dict())
-    except BatchChanged as reason:
-        messages.error(request, str(reason))
-        return redirect("batch_detail", pk=draft.batch_id)
-    return redirect("list_check", pk=draft.batch_id, draft_pk=draft.pk)
-
-
-@require_POST
-def list_confirm(request: HttpRequest, pk: int, draft_pk: int) -> HttpResponse:
-    draft = OrderDraft.objects.select_related("batch").filter(pk=draft_pk, batch=pk).first()
-    if draft is None:
-        messages.error(request, "That list was added or put away already.")
-        return redirect("batch_detail", pk=pk)
-    reading = read_draft(
-        draft, load_catalogue(), today=timezone.localdate(), market_date=draft.batch.market_date
-    )
-    waiting = [draft_row(line) for line in reading.bad]
-    try:
-        confirm_draft(draft=draft, good=reading.good, waiting=waiting)
-    except BatchChanged as reason:
-        messages.error(request, str(reason))
-        return redirect("batch_detail", pk=pk)
-    message = f"{len(reading.good)} orders added."
-    if waiting:
-        message += f" {len(waiting)} rows still wait to be put right."
-    messages.success(request, message)
-    return redirect("batch_detail", pk=pk)
-
-
-@require_POST
-def list_discard(request: HttpRequest, pk: int, draft_pk: int) -> HttpResponse:
-    OrderDraft.objects.filter(pk=draft_pk, batch=pk).delete()
-    messages.success(request, "The list was put away. Nothing was ordered.")
-    return redirect("batch_detail", pk=pk)

@@ -15,7 +15,7 @@ from planner.order_list.limits import MAX_FILE_BYTES, OrderListError
 from planner.order_list.lines import read_lines
 from planner.order_list.results import GoodLine, Reading
 from planner.order_list.table import read_table
-from planner.orders.catalogue import load_catalogue
+from planner.orders.catalogue import how_to_read, load_catalogue
 from planner.planning.sheet_files import SHEET_FILES
 from planner.planning.snapshot import Snapshot, SnapshotShade
 from planner.planning.wording import proof_of_plan, proof_of_shade
@@ -55,8 +55,7 @@ def plan_file(path: Path) -> Snapshot:
     reading = read_lines(
         read_table(read_file(path, MAX_FILE_BYTES), path.name),
         load_catalogue(),
-        today=timezone.localdate(),
-        market_date=None,
+        **how_to_read(None),
     )
     good = _all_good(reading)
     return work_out_plan(

@@ -10,7 +10,8 @@
   let unsaved = Boolean(grid.querySelector(".cell-wrong"));
 
   const cellsOf = (row) => [...row.querySelectorAll("input[data-field]")];
-  const rows = () => [...body.rows];
+  const rows = () => [...body.querySelectorAll("tr[data-row]")];
+  const lastRow = () => rows().at(-1);
 
   function say(text) {
     if (state) state.textContent = text;
@@ -33,14 +34,14 @@
   }
 
   function addRow() {
-    const last = body.rows[body.rows.length - 1];
+    const last = lastRow();
     const number = Number(last.dataset.row) + 1;
     const row = last.cloneNode(true);
     row.dataset.row = number;
+    row.id = `row-${number}`;
     row.className = "";
     const head = row.querySelector("th");
     head.textContent = number;
-    for (const extra of row.querySelectorAll(".problem, button")) extra.remove();
     for (const cell of row.querySelectorAll(".cell-wrong")) cell.classList.remove("cell-wrong");
     for (const input of row.querySelectorAll("input")) {
       input.name = input.name.replace(/^row-\d+-/, `row-${number}-`);
@@ -72,7 +73,7 @@
     };
     const step = steps[event.key];
     if (!step) return;
-    if (event.key === "Enter" && more && !event.shiftKey && input.closest("tr") === body.rows[body.rows.length - 1]) addRow();
+    if (event.key === "Enter" && more && !event.shiftKey && input.closest("tr") === lastRow()) addRow();
     if (move(input, step[0], step[1]) || event.key === "Enter") event.preventDefault();
   });
 
@@ -118,7 +119,7 @@
     const firstColumn = cellsOf(input.closest("tr")).indexOf(input);
     let index = rows().indexOf(input.closest("tr"));
     for (const cells of pasted) {
-      const row = body.rows[index] || (more ? addRow() : null);
+      const row = rows()[index] || (more ? addRow() : null);
       if (!row) break;
       const targets = cellsOf(row);
       cells.forEach((value, offset) => {
@@ -136,11 +137,11 @@
     const use = event.target.closest("button[data-use]");
     if (!use || !more) return;
     event.preventDefault();
-    const cell = use.closest("td");
-    cell.querySelector("input").value = use.dataset.use;
-    cell.classList.remove("cell-wrong");
-    for (const extra of cell.querySelectorAll(".problem, button")) extra.remove();
-    cell.querySelector("input").focus();
+    const input = body.querySelector(`[name="${use.dataset.for}"]`);
+    input.value = use.dataset.use;
+    input.closest("td").classList.remove("cell-wrong");
+    input.focus();
+    use.closest("p").remove();
     changed();
   });
   if (more) {

@@ -1,5 +1,6 @@
 """The order grid: saving all or nothing, and losing nothing."""
 
+import re
 from datetime import date
 
 import pytest
@@ -8,6 +9,7 @@ from django.test import Client
 from django.test.utils import CaptureQueriesContext
 from django.urls import reverse
 
+from inventory.models import Workshop
 from patterns.models import Colourway
 from planner.models import Batch, OrderLine
 from tests.factories import make_batch, make_order
@@ -174,3 +176,28 @@ def test_batch_pages_query_count_is_flat(page: Client, colourway: Colourway, bat
         make_order(batch, colourway)
         make_batch("Other")
     assert all_queries() == before
+
+
+def test_removed_orders_can_be_put_back(page: Client, colourway: Colourway, batch: Batch) -> None:
+    line = make_order(batch, colourway, quantity=3, for_whom="the choir", note="blue")
+    body = {"revision": "0"} | good_cells(1, line=str(line.pk), gone="yes")
+    text = page.post(reverse("batch_detail", args=[batch.pk]), body, follow=True).content.decode()
+    assert "Removed: 3 x Wave for the choir" in text
+    assert not batch.lines.exists()
+    fields = dict(re.findall(r'type="hidden" name="(row-[\w-]+)" value="([^"]*)"', text))
+    page.post(reverse("lines_put_back", args=[batch.pk]), fields)
+    back = batch.lines.get()
+    assert (back.quantity, back.for_whom, back.note) == (3, "the choir", "blue")
+    assert (back.colourway, back.size, back.ending) == (line.colourway, line.size, line.ending)
+
+
+def test_grid_says_how_a_wrist_and_a_date_were_read(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    Workshop.objects.update(date_order="month")
+    Batch.objects.update(market_date=date(2030, 12, 6))
+    body = {"revision": "0"} | good_cells(1, size="16 cm", due_date="12/7/2030")
+    text = page.post(reverse("batch_detail", args=[batch.pk]), body, follow=True).content.decode()
+    assert batch.lines.get().due_date == date(2030, 12, 7)
+    assert "Medium" in text
+    assert "is after the market" in text

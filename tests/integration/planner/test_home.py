@@ -11,6 +11,7 @@ from tests.factories import make_workshop
 OWN = {
     "name": "Sandpiper Knots",
     "length_unit": "in",
+    "date_order": "month",
     "currency": "USD",
     "paper": "Letter",
     "rounding_step_mm": "12.7",

@@ -10,7 +10,7 @@ from inventory.actions import remove_shade
 from inventory.models import Lot
 from inventory.views import thread
 from planner.models import Batch, OrderDraft
-from planner.views import batches
+from planner.views import batches, lists
 from tests.factories import make_shade
 
 BAD_LIST = "for whom\tpattern\tsize\tquantity\nHarbour choir\tNo such\tMedium\t3\n"
@@ -36,7 +36,7 @@ def add_list(page: Client, batch: Batch) -> OrderDraft:
 
 def test_correcting_a_list_that_was_put_away_says_so(page, batch, colourway, monkeypatch):
     draft = add_list(page, batch)
-    first(monkeypatch, batches, "correct_draft", OrderDraft.objects.all().delete)
+    first(monkeypatch, lists, "correct_draft", OrderDraft.objects.all().delete)
     number = draft.rows[0]["number"]
     answer = page.post(
         f"/orders/{batch.pk}/lists/{draft.pk}/", {f"row-{number}-pattern": "Wave"}, follow=True
@@ -54,7 +54,7 @@ def test_correcting_a_list_keeps_what_another_window_corrected(page, batch, colo
         other.rows[0]["cells"]["pattern"] = "Wave"
         other.save()
 
-    first(monkeypatch, batches, "correct_draft", name_the_pattern)
+    first(monkeypatch, lists, "correct_draft", name_the_pattern)
     page.post(f"/orders/{batch.pk}/lists/{draft.pk}/", {f"row-{number}-quantity": "5"})
     cells = OrderDraft.objects.get().rows[0]["cells"]
     assert (cells["pattern"], cells["quantity"]) == ("Wave", "5")

@@ -150,7 +150,7 @@ def test_link_is_kept_out_of_the_log(settings):
 
 
 OPEN_TO_ALL = {"enter", "sign_in", "health"}
-EXAMPLES = {"pk": 1, "token": "x", "slug": "a", "sheet": "tags", "ending": "pdf", "code": "a"}
+EXAMPLES = {"pk": 1, "draft_pk": 1, "shade_pk": 1, "token": "x", "slug": "a", "sheet": "tags", "ending": "pdf", "code": "a"}
 
 
 def addresses(resolver: URLResolver) -> list[URLPattern]:
