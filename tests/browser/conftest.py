@@ -94,7 +94,8 @@ def sign_in(context: BrowserContext, user: User, address: str) -> None:
 
 def watch(page: Page, address: str, complaints: list[str]) -> None:
     def note_console(message: Any) -> None:
-        if message.type in ("error", "warning"):
+        # A form that is refused comes back with 422, which Chromium notes as an error.
+        if message.type in ("error", "warning") and "status of 422" not in message.text:
             complaints.append(f"{page.url}: {message.text}")
 
     def note_request(request: Any) -> None:

@@ -85,7 +85,9 @@ def _run_browser_tests(arguments: Sequence[str]) -> int:
         )
         return FAILED if must_have_chromium() else NO_TESTS
     # Playwright keeps an event loop in the test's thread, where Django then refuses queries.
-    return _pytest(arguments, DJANGO_ALLOW_ASYNC_UNSAFE="true")
+    # Two browsers at a time: more only make each other slow.
+    processes = ["-n", "auto", "--maxprocesses", "2"]
+    return _pytest([*processes, *arguments], DJANGO_ALLOW_ASYNC_UNSAFE="true")
 
 
 def _pytest(arguments: Sequence[str], **environment: str) -> int:

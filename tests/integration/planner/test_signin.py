@@ -11,6 +11,7 @@ from axes.models import AccessAttempt
 from django.contrib.auth.models import User
 from django.test import Client
 from django.urls import URLPattern, URLResolver, get_resolver, reverse
+from django.urls.converters import IntConverter
 from django.utils import timezone
 
 from planner.signin.links import HideLinks, make_link_path, use_link
@@ -150,7 +151,16 @@ def test_link_is_kept_out_of_the_log(settings):
 
 
 OPEN_TO_ALL = {"enter", "sign_in", "health"}
-EXAMPLES = {"pk": 1, "draft_pk": 1, "shade_pk": 1, "token": "x", "slug": "a", "sheet": "tags", "ending": "pdf", "code": "a"}
+EXAMPLES = {
+    "pk": 1,
+    "draft_pk": 1,
+    "shade_pk": 1,
+    "token": "x",
+    "slug": "a",
+    "sheet": "tags",
+    "ending": "pdf",
+    "code": "a",
+}
 
 
 def addresses(resolver: URLResolver) -> list[URLPattern]:
@@ -164,7 +174,7 @@ def address_of(pattern: URLPattern) -> str:
     assert pattern.name, f"{pattern} has no name"
     arguments = {}
     for name, converter in pattern.pattern.converters.items():
-        usual = 1 if type(converter).__name__ == "IntConverter" else "a"
+        usual = 1 if isinstance(converter, IntConverter) else "a"
         arguments[name] = EXAMPLES.get(name, usual)
     return reverse(pattern.name, kwargs=arguments)
 
