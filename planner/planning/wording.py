@@ -69,4 +69,4 @@ def proof_of_plan(plan: PlanResult, shades: Iterable[ShadeResult]) -> str:
         return "The shelf has enough for everything."
     if plan.cost == plan.lower_bound:
         return "Cheaper is impossible."
-    return "Not proven to be the cheapest: each open shade says how many it needs at least."
+    return "Not proven to be the cheapest."

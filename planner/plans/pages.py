@@ -19,6 +19,10 @@ from planner.plans.load import load_orders, load_shelf, orders_stamp
 from planner.plans.store import read_habits, read_kind
 
 
+# A hank of 40 m would press the skeins beside it flat: what is longer has a scale of its own.
+LONGEST_SCALE_MM = 10_000
+
+
 @dataclass(frozen=True)
 class Cut:
     """One cut of a stock piece, as the page of a shade lists it."""
@@ -100,17 +104,18 @@ def spoken_for(plan: Plan, shades: list[PlanShade]) -> list[dict[str, Any]]:
 def shade_page(shade: PlanShade) -> dict[str, Any]:
     stock = list(shade.stock.all())
     cuts = _cuts_by_stock(shade)
-    longest_mm = max((row.reckoned_mm for row in stock), default=1)
+    scale_mm = min(LONGEST_SCALE_MM, max((row.reckoned_mm for row in stock), default=1))
     opened = {row.shelf_piece_number for row in stock}
     return {
         **plan_context(shade.plan),
         "shade": shade,
+        "scale_mm": scale_mm,
         "proof": proof_of_shade(shade),
         "lengths": _need_by_length(shade),
         "shelf": [{**thread, "opened": thread["number"] in opened} for thread in shade.shelf],
         "purchases": shade.purchases.all(),
         "lacking_mm": max(0, shade.need_mm - shade.usable_mm),
-        "stock": [_stock_row(row, cuts[row.pk], longest_mm, shade) for row in stock],
+        "stock": [_stock_row(row, cuts[row.pk], scale_mm, shade) for row in stock],
         "back_mm": sum(row.left_mm for row in stock if row.goes_back),
         "waste_mm": sum(row.left_mm for row in stock if not row.goes_back),
         "new_mm": sum(row.reckoned_mm for row in stock if row.is_new),
@@ -140,7 +145,7 @@ def _need_by_length(shade: PlanShade) -> list[dict[str, int]]:
 
 
 def _stock_row(
-    row: PlanStock, cuts: list[Cut], longest_mm: int, shade: PlanShade
+    row: PlanStock, cuts: list[Cut], scale_mm: int, shade: PlanShade
 ) -> dict[str, Any]:
     return {
         "row": row,
@@ -149,7 +154,7 @@ def _stock_row(
             title=f"{row.source}: {len(cuts)} cuts",
             colour=shade.colour,
             length_mm=row.reckoned_mm,
-            scale_mm=longest_mm,
+            scale_mm=scale_mm,
             segments=[(str(cut.tag_number), cut.piece.cut_mm) for cut in cuts],
         ),
     }
