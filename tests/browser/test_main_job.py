@@ -74,9 +74,10 @@ def test_sample_workshop_from_paste_to_three_sheets(signed_in_page: Page, axe: C
     for name in ("Purchase sheet", "Cutting sheet", "Cut tags"):
         assert counter.open_pdf(name).startswith(b"%PDF-")
     assert counter.clicks <= 6
-    assert Plan.objects.get().bracelet_count == Batch.objects.get(
-        name="Next fair"
-    ).lines.bracelet_count()
+    assert (
+        Plan.objects.get().bracelet_count
+        == Batch.objects.get(name="Next fair").lines.bracelet_count()
+    )
 
 
 def add_shade(page: Page, code: str, name: str) -> None:
