@@ -144,9 +144,7 @@ def _need_by_length(shade: PlanShade) -> list[dict[str, int]]:
     ]
 
 
-def _stock_row(
-    row: PlanStock, cuts: list[Cut], scale_mm: int, shade: PlanShade
-) -> dict[str, Any]:
+def _stock_row(row: PlanStock, cuts: list[Cut], scale_mm: int, shade: PlanShade) -> dict[str, Any]:
     return {
         "row": row,
         "cuts": cuts,
