@@ -18,7 +18,6 @@ from planner.plans.bars import stock_bar
 from planner.plans.load import load_orders, load_shelf, orders_stamp
 from planner.plans.store import read_habits, read_kind
 
-
 # A hank of 40 m would press the skeins beside it flat: what is longer has a scale of its own.
 LONGEST_SCALE_MM = 10_000
 
