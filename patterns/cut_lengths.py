@@ -10,7 +10,6 @@ from patterns.geometry import StrandLength, StrandTable
 Start = Literal["straight", "folded"]
 MAX_ENDING_MM = 3000
 MAX_STEP_MM = 200
-HALF_INCH_MM = Fraction(127, 10)
 _LENGTH_NAMES = {
     "start_tie_mm": "start tie",
     "end_tie_mm": "end tie",
@@ -150,8 +149,16 @@ class CutRule:
         return Fraction(knotted_mm) * (1 + _as_written(self.safety_share))
 
     def round_up_mm(self, length_mm: Fraction | int) -> int:
-        """Return the next multiple of the step [mm], up to a whole millimetre."""
-        return ceil(ceil(Fraction(length_mm) / self.rounding_step_mm) * self.rounding_step_mm)
+        """Return the next multiple of the step, as the whole millimetre nearest to it [mm].
+
+        A multiple of half an inch is shown as one again (1054 mm reads as 41 1/2 in); where the
+        nearest millimetre would fall short of the length, the multiple after it is taken.
+        """
+        multiple = ceil(Fraction(length_mm) / self.rounding_step_mm)
+        rounded_mm = round(multiple * self.rounding_step_mm)
+        if rounded_mm < length_mm:
+            rounded_mm = round((multiple + 1) * self.rounding_step_mm)
+        return rounded_mm
 
 
 @dataclass(frozen=True)

@@ -34,6 +34,10 @@ CURRENCIES = [
 ]
 
 
+# Half an inch, and a foot.
+INCH_HABITS = {"rounding_step_mm": Decimal("12.7"), "keep_length_mm": 305}
+
+
 class PerCentField(forms.CharField):
     """A share, typed as so many per cent."""
 
@@ -116,6 +120,15 @@ class WorkshopForm(forms.ModelForm):
                 *ROUNDING_STEPS,
                 (step, f"{step} mm"),
             ]
+
+    def clean(self) -> dict[str, Any]:
+        """A new workshop that measures in inches starts with inch habits, unless it chose others."""
+        cleaned: dict[str, Any] = super().clean() or self.cleaned_data
+        if not self.instance.pk and cleaned.get("length_unit") == Workshop.LengthUnit.INCHES:
+            for name, value in INCH_HABITS.items():
+                if name not in self.changed_data:
+                    cleaned[name] = value
+        return cleaned
 
 
 class BatchForm(forms.ModelForm):

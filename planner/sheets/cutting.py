@@ -18,7 +18,7 @@ from planner.sheets.pages import (
 )
 from planner.sheets.paper import Paper, paper_named
 from planner.sheets.pen import INK, QUIET, RULE, Pen
-from planner.sheets.wording import counted, joined, market_words, plain_text
+from planner.sheets.wording import batch_words, counted, joined, plain_text
 
 _HEADING_PT = 40.0
 _NOTE_PT = 18.0
@@ -54,7 +54,7 @@ def build_cutting_sheet(sheet: CuttingSheet, paper: Paper | str) -> bytes:
         When there is no such paper.
     """
     form = paper_named(paper)
-    title = f"What to cut for {market_words(sheet.head.batch, sheet.head.market_date)}"
+    title = f"What to cut for {batch_words(sheet.head.batch)}"
     pen = Pen(form, title, sheet.head)
     return draw_document(
         pen, sheet.head, Opening(title, _answer(sheet)), list(_blocks(sheet, form))

@@ -2,6 +2,7 @@
 
 from dataclasses import dataclass
 
+from inventory.measures import format_length
 from planner.sheets.contents import PurchaseRow, PurchaseSheet, SupplierOrder
 from planner.sheets.fonts import REGULAR, STRONG, printable, shortened, width_of
 from planner.sheets.pages import (
@@ -15,7 +16,7 @@ from planner.sheets.pages import (
 )
 from planner.sheets.paper import Paper, paper_named
 from planner.sheets.pen import INK, QUIET, RULE, Pen
-from planner.sheets.wording import counted, joined, market_words, money, plain_text
+from planner.sheets.wording import batch_words, counted, joined, money, plain_text
 
 _ROW_PT = 37.0
 _HEADING_PT = 52.0
@@ -54,7 +55,7 @@ def build_purchase_sheet(sheet: PurchaseSheet, paper: Paper | str) -> bytes:
         When there is no such paper.
     """
     form = paper_named(paper)
-    title = f"What to buy for {market_words(sheet.head.batch, sheet.head.market_date)}"
+    title = f"What to buy for {batch_words(sheet.head.batch)}"
     pen = Pen(form, title, sheet.head)
     opening = Opening(title, _answer(sheet))
     return draw_document(pen, sheet.head, opening, _blocks(sheet, form))
@@ -65,8 +66,10 @@ def _answer(sheet: PurchaseSheet) -> str:
     if not bought:
         return "Nothing to buy: the thread on your shelf is enough."
     suppliers = sum(1 for order in sheet.suppliers if order.rows)
+    names = [row.put_up for order in sheet.suppliers for row in order.rows]
+    word = "skein" if all("skein" in name.casefold() for name in names) else "put-up"
     return (
-        f"{counted(bought, 'skein')} from {counted(suppliers, 'supplier')}, "
+        f"{counted(bought, word)} from {counted(suppliers, 'supplier')}, "
         f"{_with_currency(sheet)} in all."
     )
 
@@ -108,11 +111,11 @@ def _supplier_heading(
 ) -> Heading:
     def draw(pen: Pen, top: float, continued: bool) -> None:
         right = paper.width_pt - SIDE_PT
-        label = "  (continued)" if continued else ""
+        label = "(continued)" if continued else ""
         room = body_width(paper) - (70 if continued else 0)
         name = plain_text(order.supplier) or "Supplier not named"
         used = pen.text(SIDE_PT, top - 24, name, 14, font=STRONG, room=room)
-        pen.text(SIDE_PT + used, top - 24, label, 10, colour=QUIET)
+        pen.text(SIDE_PT + used + 8, top - 24, label, 10, colour=QUIET)
         unit = f" ({plain_text(currency)})" if plain_text(currency) else ""
         for text, edge in (
             ("how many", columns.skeins),
@@ -122,10 +125,23 @@ def _supplier_heading(
             pen.text(
                 right - edge, top - 41, text, 8.5, colour=QUIET, align="right", room=_LEAST_PRICE_PT
             )
-        pen.text(SIDE_PT + 20, top - 41, "shade and put-up", 8.5, colour=QUIET)
+        pen.text(
+            SIDE_PT + 20,
+            top - 41,
+            "shade and put-up \u00b7 ask for one dye lot of each shade",
+            8.5,
+            colour=QUIET,
+        )
         pen.rule(SIDE_PT, top - 46, body_width(paper), INK, 0.8)
 
     return Heading(_HEADING_PT, draw)
+
+
+def _put_up_words(row: PurchaseRow) -> str:
+    """The put-up with its length, unless its name tells a length already."""
+    if any(character.isdigit() for character in row.put_up):
+        return row.put_up
+    return f"{row.put_up}, {format_length(row.length_mm, 'm')}"
 
 
 def _row_block(row: PurchaseRow, heading: Heading, columns: _Columns, paper: Paper) -> Block:
@@ -143,7 +159,7 @@ def _row_block(row: PurchaseRow, heading: Heading, columns: _Columns, paper: Pap
         room = right - name_x
         proof = printable(row.proof)
         put_up_room = max(room - width_of(proof, REGULAR, 9) - 12, room / 3)
-        put_up = shortened(row.put_up, REGULAR, 9, put_up_room)
+        put_up = shortened(_put_up_words(row), REGULAR, 9, put_up_room)
         pen.text(name_x, base - 13, joined((put_up, proof)), 9, colour=QUIET, room=room)
         pen.text(right - columns.skeins, base, str(row.count), 13, font=STRONG, align="right")
         pen.text(right - columns.price, base, money(row.unit_price), 11, align="right")

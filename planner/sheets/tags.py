@@ -32,7 +32,7 @@ from planner.sheets.tag_layouts import (
     tag_width,
     tags_height,
 )
-from planner.sheets.wording import counted, joined, market_words, plain_text, short_date
+from planner.sheets.wording import batch_words, counted, joined, plain_text, short_date
 
 _NUMBER_PT = 31.0
 _CODE_INSET = 3.5
@@ -65,7 +65,7 @@ def build_tag_sheet(sheet: TagSheet, paper: Paper | str) -> bytes:
         When a tag has more pieces than a page holds.
     """
     form = paper_named(paper)
-    title = f"Tags for {market_words(sheet.head.batch, sheet.head.market_date)}"
+    title = f"Tags for {batch_words(sheet.head.batch)}"
     pen = Pen(form, title, sheet.head)
     forms = DrawingForms(pen.canvas)
     pages = arrange(sheet.tags, form) or [[]]

@@ -62,11 +62,9 @@ def short_date(day: date) -> str:
     return f"{WEEKDAYS[day.weekday()][:3]} {day.day} {MONTHS[day.month - 1][:3]} {day.year}"
 
 
-def market_words(batch: str, market_date: date | None) -> str:
-    """Name the occasion: "Saturday's market", or the batch where no date is set."""
-    if market_date is None:
-        return plain_text(batch) or "the next market"
-    return f"{WEEKDAYS[market_date.weekday()]}\u2019s market"
+def batch_words(batch: str) -> str:
+    """Name the batch; two batches of one market day must not look alike."""
+    return plain_text(batch) or "the next market"
 
 
 def counted(count: int, one: str, many: str | None = None) -> str:

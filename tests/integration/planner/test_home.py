@@ -39,6 +39,13 @@ def test_start_own_makes_a_workshop_ready_to_use(page: Client) -> None:
     assert "Add the shades" in page.get(reverse("home")).content.decode()
 
 
+def test_start_own_in_inches_begins_with_inch_habits(page: Client) -> None:
+    untouched = {"rounding_step_mm": "10", "keep_length_mm": "30 cm"}
+    assert page.post(reverse("start_own"), OWN | untouched).status_code == 302
+    workshop = Workshop.objects.get()
+    assert (str(workshop.rounding_step_mm), workshop.keep_length_mm) == ("12.70", 305)
+
+
 def test_start_own_refuses_bad_habits_and_keeps_what_was_typed(page: Client) -> None:
     for name, text in {
         "name": "",

@@ -6,7 +6,8 @@ from hypothesis import given
 from hypothesis import strategies as st
 from pattern_factories import all_same
 
-from patterns.cut_lengths import HALF_INCH_MM, CutRule, Ending, EndingError, pieces_for
+from inventory.measures import format_length, parse_length
+from patterns.cut_lengths import CutRule, Ending, EndingError, pieces_for
 from patterns.geometry import Gauge, StrandLength, StrandTable, strand_table
 
 PLAITED = {
@@ -23,6 +24,7 @@ PLAITED = {
 }
 FOLDED = PLAITED | {"start": "folded", "start_tie_mm": 0, "fold_loop_mm": 50, "single_start_mm": 60}
 METRIC = CutRule(0.1, 10)
+HALF_INCH_MM = Fraction(127, 10)  # an inch is 25.4 mm exactly
 INCHES = CutRule(0.1, HALF_INCH_MM)
 
 
@@ -298,3 +300,13 @@ def test_ending_refused(change):
 def test_cut_rule_refused(share, step):
     with pytest.raises(EndingError):
         CutRule(share, step)
+
+
+@given(st.integers(1, 10_000_000), st.sampled_from([Fraction(127, 10), Fraction(254, 10)]))
+def test_inch_steps_read_as_whole_steps_and_never_fall_short(tenths: int, step: Fraction) -> None:
+    """1 in = 25.4 mm exactly (international yard and pound agreement of 1959)."""
+    length_mm = Fraction(tenths, 1000)
+    rounded_mm = CutRule(safety_share=0.1, rounding_step_mm=step).round_up_mm(length_mm)
+    assert length_mm <= rounded_mm < length_mm + 2 * step
+    steps = Fraction(parse_length(format_length(rounded_mm, "in"))) / step
+    assert steps.denominator == 1

@@ -24,9 +24,10 @@ def two_suppliers():
 @PAPER_CASES
 def test_sheet_answers_what_to_buy(paper):
     text = all_text(build_purchase_sheet(two_suppliers(), paper))
-    assert "What to buy for Saturday’s market" in text
+    assert "What to buy for Saltmarch harbour fair" in text
     # 3 x 1.20 + 5 x 1.35 = 10.35; 10.35 + 12.50 = 22.85
-    assert "9 skeins from 2 suppliers, 22.85" in text
+    assert "9 put-ups from 2 suppliers, 22.85" in text
+    assert "ask for one dye lot of each shade" in text
     for words in ("Quay Threads", "Wool loft", "10.35", "22.85", "spool of 100 m", "each (EUR)"):
         assert words in text
     for code, name, _ in SHADES[:3]:

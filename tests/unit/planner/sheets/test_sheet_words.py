@@ -11,10 +11,10 @@ from hypothesis import strategies as st
 from planner.sheets import fonts
 from planner.sheets.paper import PAPERS, PaperError, millimetres, paper_named
 from planner.sheets.wording import (
+    batch_words,
     counted,
     joined,
     long_date,
-    market_words,
     money,
     plain_text,
     short_date,
@@ -65,8 +65,11 @@ def test_dates_are_written_in_words():
     day = date(2026, 12, 5)
     assert long_date(day) == "Saturday 5 December 2026"
     assert short_date(day) == "Sat 5 Dec 2026"
-    assert market_words("Quay fair", day) == "Saturday’s market"
-    assert market_words("Quay fair", None) == "Quay fair"
+
+
+def test_batch_is_named_and_two_of_one_day_differ():
+    assert batch_words("Quay fair") == "Quay fair"
+    assert batch_words("\u200b ") == "the next market"
 
 
 def test_figures_and_words_are_joined_without_holes():
