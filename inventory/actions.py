@@ -132,14 +132,6 @@ def check_remove_shade(shade: Shade) -> None:
             raise ShelfError(f"It is used: {uses} {name}. Choose another shade there first.")
 
 
-def can_remove_shade(shade: Shade) -> bool:
-    try:
-        check_remove_shade(shade)
-    except ShelfError:
-        return False
-    return True
-
-
 def remove_shade(*, shade: Shade) -> Shade:
     """Forget a shade that nothing uses, with the thread that was taken off the shelf before."""
     try:

@@ -107,18 +107,6 @@ def missing_slots(colourway: Colourway, definition: DiagonalPattern | None = Non
     return sorted(slots - colourway.shades_by_slot().keys())
 
 
-def check_complete(colourway: Colourway, definition: DiagonalPattern | None = None) -> None:
-    missing = missing_slots(colourway, definition)
-    if missing:
-        raise LibraryError(
-            f"{colourway.name} of {colourway.pattern.name} needs a shade for {_listed(missing)}."
-        )
-
-
-def is_complete(colourway: Colourway, definition: DiagonalPattern | None = None) -> bool:
-    return not missing_slots(colourway, definition)
-
-
 def _listed(words: list[str]) -> str:
     return f"{', '.join(words[:-1])} and {words[-1]}" if len(words) > 1 else words[0]
 

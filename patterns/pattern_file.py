@@ -46,6 +46,10 @@ def read_pattern(text: str) -> Pattern:
         if key not in _KEYS:
             raise PatternError(f"There is no setting '{_shown(key)}'. {_nearest(key, _KEYS)}")
     technique = _text(content, "technique").strip().lower()
+    if technique == "grid":
+        raise PatternError(
+            f"Grid patterns cannot be planned yet. Use a diagonal pattern: {_EXAMPLES['technique']}"
+        )
     reader = _READERS.get(technique)
     if reader is None:
         raise PatternError(
@@ -84,7 +88,8 @@ def _nearest(word: str, choices: tuple[str, ...]) -> str:
     close = get_close_matches(word[:30].lower(), choices, n=1)
     if close:
         return f"Did you mean {close[0]}?"
-    return f"Use {', '.join(choices[:-1])} or {choices[-1]}."
+    *others, last = choices
+    return f"Use {', '.join(others)} or {last}." if others else f"Use {last}."
 
 
 def _text(content: Mapping[str, object], key: str) -> str:
@@ -114,13 +119,8 @@ def _read_diagonal(content: Mapping[str, object]) -> DiagonalPattern:
     )
 
 
-def _read_grid(content: Mapping[str, object]) -> DiagonalPattern:
-    raise PatternError("Grid patterns come later. For now technique has to be 'diagonal'.")
-
-
 _READERS: dict[str, Callable[[Mapping[str, object]], Pattern]] = {
     "diagonal": _read_diagonal,
-    "grid": _read_grid,
 }
 
 

@@ -12,7 +12,7 @@ from inventory.models import Shade
 from inventory.page_helpers import habits
 from patterns.actions import LibraryError, change_pattern, cut_rule, missing_slots
 from patterns.forms import PatternEditForm, StrandChoiceForm
-from patterns.knots import DiagonalPattern, colour_order
+from patterns.knots import DiagonalPattern, colour_order, order_of_repeat
 from patterns.models import KnottedLength, Pattern
 from patterns.pattern_file import written_rows
 from patterns.pictures import MOST_PICTURE_ROWS, band_picture
@@ -32,6 +32,7 @@ def pattern_detail(request: HttpRequest, pk: int) -> HttpResponse:
         "written_rows": written_rows(definition),
         "slots": sorted(set(definition.slots)),
         "colour_repeats": colour_order(definition),
+        "strand_repeats": order_of_repeat(definition),
         "colourways": colourways,
         "can_order": any(not missing for _, missing in colourways),
         "has_shades": Shade.objects.exists(),

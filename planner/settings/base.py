@@ -29,9 +29,11 @@ INSTALLED_APPS = [
 ]
 MIDDLEWARE = [
     "django.middleware.security.SecurityMiddleware",
-    "whitenoise.middleware.WhiteNoiseMiddleware",
+    # Before the static files: a drawing opened by itself is a page too.
     "csp.middleware.CSPMiddleware",
+    "django.middleware.clickjacking.XFrameOptionsMiddleware",
     "planner.middleware.permissions_policy",
+    "whitenoise.middleware.WhiteNoiseMiddleware",
     "planner.middleware.limit_request_size",
     "django.contrib.sessions.middleware.SessionMiddleware",
     "django.middleware.common.CommonMiddleware",
@@ -40,7 +42,6 @@ MIDDLEWARE = [
     "django_htmx.middleware.HtmxMiddleware",
     "planner.signin.middleware.SignInRequiredMiddleware",
     "django.contrib.messages.middleware.MessageMiddleware",
-    "django.middleware.clickjacking.XFrameOptionsMiddleware",
     "axes.middleware.AxesMiddleware",
     "planner.middleware.ChangedMeanwhile",
 ]

@@ -18,6 +18,15 @@ class SignInRequiredMiddleware(LoginRequiredMiddleware):
     ) -> HttpResponseBase:
         if not getattr(request, "htmx", False):
             return super().handle_no_permission(request, view_func)
-        page = urlsplit(request.headers.get("HX-Current-URL", "")).path or "/"
-        sign_in = redirect_to_login(page, resolve_url(self.get_login_url(view_func)))
+        sign_in = redirect_to_login(
+            _page_shown(request), resolve_url(self.get_login_url(view_func))
+        )
         return HttpResponseClientRedirect(sign_in.url)
+
+
+def _page_shown(request: HttpRequest) -> str:
+    """The path that htmx names; anybody may send anything in its place."""
+    try:
+        return urlsplit(request.headers.get("HX-Current-URL", "")).path or "/"
+    except ValueError:
+        return "/"

@@ -12,7 +12,6 @@ from inventory.actions import (
     PutBackThread,
     RemoveThread,
     ShelfError,
-    can_remove_shade,
     change_shelf,
     check_remove_shade,
     remove_shade,
@@ -78,7 +77,6 @@ def test_number_of_a_removed_shades_piece_is_not_used_again() -> None:
 def test_shade_with_thread_stays() -> None:
     shade = make_shade()
     put_thread(shade, 500)
-    assert not can_remove_shade(shade)
     with pytest.raises(ShelfError, match="1 piece of it lies on the shelf"):
         remove_shade(shade=shade)
     assert Shade.objects.get() == shade
@@ -109,7 +107,7 @@ def test_unused_shade_goes_with_its_used_up_lots() -> None:
     put_thread(other, 500)
     change_shelf(changes=[RemoveThread(piece.pk)])
     make_put_up()
-    assert can_remove_shade(shade)
+    check_remove_shade(shade)
     remove_shade(shade=shade)
     assert Shade.objects.get() == other
     assert Lot.objects.get().shade == other

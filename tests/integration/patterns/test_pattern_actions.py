@@ -6,10 +6,8 @@ from patterns.actions import (
     LibraryError,
     add_pattern,
     change_pattern,
-    check_complete,
     check_removable,
     cut_rule,
-    is_complete,
     load_defaults,
     missing_slots,
     remove,
@@ -65,9 +63,6 @@ def test_change_pattern_drops_shades_of_slots_that_are_gone():
     colourway.refresh_from_db()
     assert [choice.slot for choice in colourway.shades.all()] == ["A", "B"]
     assert missing_slots(colourway) == ["D"]
-    assert not is_complete(colourway)
-    with pytest.raises(LibraryError, match="Harbour of Ferry stripe needs a shade for D"):
-        check_complete(colourway)
 
 
 def test_change_pattern_to_a_taken_name_changes_nothing():

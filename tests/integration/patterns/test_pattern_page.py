@@ -40,6 +40,28 @@ def test_pattern_page_answers_how_long_each_strand_has_to_be(maker, pattern):
     assert page.count("rounded up to a multiple of 10 mm") == 6
 
 
+@pytest.mark.parametrize(
+    # Six strands all forward, by hand: a repeat moves every strand on in one ring of six, and
+    # A B C C B A looks the same half way round it.
+    ("strands", "sentence"),
+    [
+        (
+            "A B C C B A",
+            "After 3 repeats the colours stand in their first places again; "
+            "after 6, every strand does.",
+        ),
+        ("A A B B C C", "After 6 repeats the colours stand in their first places again."),
+        (
+            "A A A A A A",
+            "After each repeat the colours stand in their first places again; "
+            "after 6, every strand does.",
+        ),
+    ],
+)
+def test_pattern_page_says_when_colours_and_strands_are_back(maker, strands, sentence):
+    assert sentence in read(maker.get(page_of(make_pattern(strands=strands))))
+
+
 def test_pattern_page_works_out_what_is_chosen(maker, pattern):
     small = Size.objects.get(name="Small child")
     folded = Ending.objects.get(name="Folded start, plaited end")

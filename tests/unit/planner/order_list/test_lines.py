@@ -4,10 +4,23 @@ import pytest
 
 from planner.order_list.catalogue import Catalogue, Choice, PatternChoice, SizeChoice
 from planner.order_list.columns import DEFAULT_ORDER
-from planner.order_list.lines import read_lines, read_row, read_rows
+from planner.order_list.lines import read_lines, read_rows
+from planner.order_list.reader import RowReader
 from planner.order_list.results import BadLine, GoodLine
 from planner.order_list.table import Table, TableRow, read_pasted
 from tests.data_builders.small_workshop import CATALOGUE, MARKET, TODAY, cells
+
+
+def read_row(
+    number: int,
+    row: dict[str, str],
+    catalogue: Catalogue,
+    *,
+    today: date,
+    market_date: date | None,
+    day_first: bool = True,
+) -> GoodLine | BadLine | None:
+    return RowReader(catalogue, today, market_date, day_first).read(number, row)
 
 
 def good(catalogue: Catalogue = CATALOGUE, **changes: str) -> GoodLine:

@@ -164,10 +164,17 @@ def test_quote_left_open_names_its_row(row: int) -> None:
         read_pasted("\n".join(lines))
 
 
+@pytest.mark.parametrize("rest", ["", "Cy;Wave;Large\n" * 20_000])
+def test_quote_left_open_below_the_line_that_names_the_delimiter_names_its_row(rest: str) -> None:
+    with pytest.raises(OrderListError, match=r"Row 3: a "):
+        read_pasted(f'sep=;\nAnna;Wave;Large\nBo;"Wave;Large\n{rest}')
+
+
 def test_quote_left_open_in_a_very_long_list_names_its_row() -> None:
     text = 'Anna;Wave;Large\nBo;"Wave;Large\n' + "Cy;Wave;Large\n" * 20_000
-    with pytest.raises(OrderListError, match=r"Row 2: a cell is longer than 2,000 characters"):
+    with pytest.raises(OrderListError, match=r"Row 2: a cell holds more than 131,072 char"):
         read_pasted(text)
+    assert csv.field_size_limit() == 131_072
 
 
 def test_limit_of_rows() -> None:
