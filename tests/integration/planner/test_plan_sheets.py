@@ -4,7 +4,9 @@ import csv
 import io
 import re
 from collections import Counter
+from collections.abc import Mapping
 from decimal import Decimal
+from typing import Any
 
 import pypdfium2
 import pytest
@@ -14,9 +16,10 @@ from django.urls import reverse
 from openpyxl import load_workbook
 from pypdf import PdfReader
 
+from inventory.measures import format_number
 from patterns.models import Colourway
 from planner.actions import make_plan
-from planner.models import Batch, Plan
+from planner.models import Batch, Plan, PlanPurchase
 from planner.plans.store import read_snapshot
 from tests.factories import make_order, put_thread
 
@@ -52,37 +55,53 @@ def test_tags_every_code_opens_its_own_bracelet(page: Client, plan: Plan, paper:
         assert page.get(address.removeprefix("http://testserver")).status_code == 200
 
 
-def test_cutting_sheet_has_every_piece_once(page: Client, plan: Plan) -> None:
+# As the text of a page reads: the cut's place, its length, the tag, the strands with their slot,
+# and the fold of two strands.
+CUT = re.compile(
+    r"^\d+\n([\d.]+)\n(\d+)\n(?:(\d+ \+ \d+ [A-Z])\n([\d.]+)|(\d+ [A-Z]))$", re.MULTILINE
+)
+
+
+def test_cutting_sheet_has_every_cut_of_the_plan_once(page: Client, plan: Plan) -> None:
     text = text_of(sheet(page, plan, "cutting", "pdf"))
+    written = Counter(
+        (length, tag, folded or single, fold)
+        for length, tag, folded, fold, single in CUT.findall(text)
+    )
     snapshot = read_snapshot(plan)
-    pieces = [
-        piece
-        for bracelet in snapshot.bracelets
-        for piece in snapshot.kinds[bracelet.kind_index].pieces
-    ]
-    assert len(pieces) == plan.piece_count
-    for shade in plan.shades.all():
-        assert shade.code in text
-    written = Counter(re.findall(r"^\d+(?: \+ \d+)? [A-Z]$", text, re.MULTILINE))
-    wanted = Counter(f"{' + '.join(map(str, piece.strands))} {piece.slot}" for piece in pieces)
+    wanted: Counter[tuple[str, str, str, str]] = Counter()
+    for bracelet in snapshot.bracelets:
+        for piece in snapshot.kinds[bracelet.kind_index].pieces:
+            strands = f"{' + '.join(map(str, piece.strands))} {piece.slot}"
+            fold = format_number(piece.fold_mm, "cm") if piece.fold_mm else ""
+            wanted[format_number(piece.cut_mm, "cm"), str(bracelet.number), strands, fold] += 1
+    assert wanted.total() == plan.piece_count
     assert written == wanted
 
 
 def test_purchase_lists_agree_with_the_plan(page: Client, plan: Plan) -> None:
-    rows = list(csv.reader(io.StringIO(sheet(page, plan, "purchase", "csv").decode("utf-8-sig"))))
-    header, body = rows[0], rows[1:]
-    bought = {shade.code: shade.bought for shade in plan.shades.all() if shade.bought}
-    code_column = next(i for i, name in enumerate(header) if "code" in name.lower())
-    assert {row[code_column] for row in body} >= set(bought)
-    workbook = load_workbook(io.BytesIO(sheet(page, plan, "purchase", "xlsx")))
-    numbers = [
-        Decimal(str(cell)).quantize(Decimal("0.01"))
-        for row in workbook.active.iter_rows(values_only=True)
-        for cell in row
-        if isinstance(cell, int | float | Decimal)
+    wanted = [
+        (item.supplier_name, item.shade.code, item.count, item.unit_price, item.cost)
+        for item in PlanPurchase.objects.filter(shade__plan=plan).select_related("shade")
     ]
-    assert plan.cost in numbers or sum(bought.values()) in numbers
-    assert re.search(rf"{plan.cost:.2f}", text_of(sheet(page, plan, "purchase", "pdf")))
+    assert wanted
+    lines = csv.DictReader(io.StringIO(sheet(page, plan, "purchase", "csv").decode("utf-8-sig")))
+    assert sorted(_purchase_of(line) for line in lines) == sorted(wanted)
+    cells = load_workbook(io.BytesIO(sheet(page, plan, "purchase", "xlsx"))).active
+    header, *rows = cells.iter_rows(values_only=True)
+    named = [dict(zip(header, row, strict=True)) for row in rows]
+    bought = [row for row in named if row["Shade code"]]
+    assert sorted(_purchase_of(row) for row in bought) == sorted(wanted)
+    assert sum(cost for *_, cost in wanted) == plan.cost
+    assert f"{plan.cost:.2f} EUR" in text_of(sheet(page, plan, "purchase", "pdf"))
+
+
+def _purchase_of(row: Mapping[str, Any]) -> tuple[str, str, int, Decimal, Decimal]:
+    def amount(name: str) -> Decimal:
+        return Decimal(str(row[name])).quantize(Decimal("0.01"))
+
+    count = int(row["How many"])
+    return row["Supplier"], row["Shade code"], count, amount("Each (EUR)"), amount("Cost (EUR)")
 
 
 @pytest.mark.parametrize(
