@@ -4,7 +4,7 @@ import csv
 import io
 import re
 from collections import Counter
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from decimal import Decimal
 from typing import Any
 
@@ -16,10 +16,10 @@ from django.urls import reverse
 from openpyxl import load_workbook
 from pypdf import PdfReader
 
-from inventory.measures import format_number
 from patterns.models import Colourway
 from planner.actions import make_plan
 from planner.models import Batch, Plan, PlanPurchase
+from planner.planning.snapshot import Snapshot
 from planner.plans.store import read_snapshot
 from tests.factories import make_order, put_thread
 
@@ -55,28 +55,118 @@ def test_tags_every_code_opens_its_own_bracelet(page: Client, plan: Plan, paper:
         assert page.get(address.removeprefix("http://testserver")).status_code == 200
 
 
-# As the text of a page reads: the cut's place, its length, the tag, the strands with their slot,
-# and the fold of two strands.
-CUT = re.compile(
-    r"^\d+\n([\d.]+)\n(\d+)\n(?:(\d+ \+ \d+ [A-Z])\n([\d.]+)|(\d+ [A-Z]))$", re.MULTILINE
+# As the text of the pages reads. A shade: its code over what there is to cut from. A thread: its
+# reckoned length, then its source. A cut: its place, length, tag, strands with their slot, fold.
+CUTTING_LINE = re.compile(
+    r"^(?P<shade>\S+)\n(?:\(continued\)|\d+ threads? to cut from)$"
+    r"|to count on\n(?P<source>.+?)(?: \(continued\))?$"
+    r"|^\d+\n(?P<length>[\d.]+)\n(?P<tag>\d+)\n(?P<strands>\d+(?P<other> \+ \d+)? [A-Z])$"
+    r"(?(other)\n(?P<fold>[\d.]+)$)",
+    re.MULTILINE,
 )
+Cut = tuple[str, str, int, str, int, int | None]
+TagPiece = tuple[str, str, int, int | None]
 
 
 def test_cutting_sheet_has_every_cut_of_the_plan_once(page: Client, plan: Plan) -> None:
-    text = text_of(sheet(page, plan, "cutting", "pdf"))
-    written = Counter(
-        (length, tag, folded or single, fold)
-        for length, tag, folded, fold, single in CUT.findall(text)
-    )
+    written = list(_cuts_written(text_of(sheet(page, plan, "cutting", "pdf"))))
+    wanted = list(_cuts_planned(read_snapshot(plan)))
+    assert len(wanted) == plan.piece_count
+    assert {fold is None for *_, fold in wanted} == {True, False}
+    assert Counter(written) == Counter(wanted)
+
+
+def _cuts_written(text: str) -> Iterator[Cut]:
+    shade = source = ""
+    for line in CUTTING_LINE.finditer(text):
+        shade = line["shade"] or shade
+        source = line["source"] or source
+        if line["length"]:
+            yield (
+                shade,
+                source,
+                int(line["tag"]),
+                line["strands"],
+                _whole_mm(line["length"]),
+                _whole_mm(line["fold"]) if line["fold"] else None,
+            )
+
+
+def _whole_mm(centimetres: str) -> int:
+    length_mm = Decimal(centimetres) * 10
+    assert length_mm == int(length_mm)
+    return int(length_mm)
+
+
+def _cuts_planned(snapshot: Snapshot) -> Iterator[Cut]:
+    kinds = {
+        bracelet.number: snapshot.kinds[bracelet.kind_index] for bracelet in snapshot.bracelets
+    }
+    for shade in snapshot.shades:
+        for stock in shade.stock:
+            source = f"{stock.source}, lot {stock.lot_name}" if stock.lot_name else stock.source
+            for cut in stock.cuts:
+                piece = kinds[cut.tag_number].pieces[cut.piece_index]
+                strands = f"{' + '.join(map(str, piece.strands))} {piece.slot}"
+                yield shade.code, source, cut.tag_number, strands, cut.cut_mm, piece.fold_mm
+
+
+# A tag: its number over the pattern's name. A piece: slot, strands, shade's code and name, length
+# and, where it is folded, the fold.
+TAG_LINE = re.compile(
+    r"^(?P<tag>\d+)\nWave$"
+    r"|^(?P<slot>[A-Z])\n(?P<strands>\d+(?: \+ \d+)?)\n\S+\n.+\n(?P<length>[\d.]+)"
+    r"(?:\n(?P<fold>[\d.]+))?$",
+    re.MULTILINE,
+)
+
+
+def test_tags_show_the_pieces_of_the_plan(page: Client, plan: Plan) -> None:
+    """Six strands all forward, 0.9 mm, 10 % safety, up to 10 mm.
+
+    Straight, 140 mm: see `test_plan_of_one_bracelet_worked_by_hand`. Folded, 110 mm: strands 1 to
+    6 with safety take 518.7, 499.5, 518.7, 490.7, 499.5 and 490.7 mm and an end of 245 mm each, a
+    pair 50 mm of loop. 1 and 2: 1558.2, so 1560; the fold leaves 788.7 for strand 1 and 769.5 for
+    strand 2, so from 789 to 790 mm: on the step at 790. 3 and 4: 1549.4, so 1550, the fold from
+    789 to 789 mm. 5 and 6: 1530.2, so 1540, from 770 to 779 mm: at 770.
+    """
+    tags = _tags_written(text_of(sheet(page, plan, "tags", "pdf")))
+    straight, folded = plan.bracelets.get(number=1), plan.bracelets.get(number=10)
+    assert tags[straight.number] == [
+        ("A", "1", 1_050, None),
+        ("A", "2", 1_030, None),
+        ("B", "3", 1_050, None),
+        ("B", "4", 1_030, None),
+        ("C", "5", 1_040, None),
+        ("C", "6", 1_030, None),
+    ]
+    assert tags[folded.number] == [
+        ("A", "1 + 2", 1_560, 790),
+        ("B", "3 + 4", 1_550, 789),
+        ("C", "5 + 6", 1_540, 770),
+    ]
     snapshot = read_snapshot(plan)
-    wanted: Counter[tuple[str, str, str, str]] = Counter()
-    for bracelet in snapshot.bracelets:
-        for piece in snapshot.kinds[bracelet.kind_index].pieces:
-            strands = f"{' + '.join(map(str, piece.strands))} {piece.slot}"
-            fold = format_number(piece.fold_mm, "cm") if piece.fold_mm else ""
-            wanted[format_number(piece.cut_mm, "cm"), str(bracelet.number), strands, fold] += 1
-    assert wanted.total() == plan.piece_count
-    assert written == wanted
+    for bracelet in (straight, folded):
+        kept = snapshot.kinds[snapshot.bracelets[bracelet.number - 1].kind_index].pieces
+        shown = [(cut_mm, fold_mm) for *_, cut_mm, fold_mm in tags[bracelet.number]]
+        assert shown == [(piece.cut_mm, piece.fold_mm) for piece in kept]
+        assert [cut_mm for cut_mm, _ in shown] == [
+            piece.cut_mm for piece in bracelet.pieces.order_by("index")
+        ]
+    assert len(tags) == plan.bracelet_count
+
+
+def _tags_written(text: str) -> dict[int, list[TagPiece]]:
+    tags: dict[int, list[TagPiece]] = {}
+    number = 0
+    for line in TAG_LINE.finditer(text):
+        if line["tag"]:
+            number = int(line["tag"])
+            tags[number] = []
+        else:
+            fold_mm = _whole_mm(line["fold"]) if line["fold"] else None
+            tags[number].append((line["slot"], line["strands"], _whole_mm(line["length"]), fold_mm))
+    return tags
 
 
 def test_purchase_lists_agree_with_the_plan(page: Client, plan: Plan) -> None:
@@ -92,6 +182,9 @@ def test_purchase_lists_agree_with_the_plan(page: Client, plan: Plan) -> None:
     named = [dict(zip(header, row, strict=True)) for row in rows]
     bought = [row for row in named if row["Shade code"]]
     assert sorted(_purchase_of(row) for row in bought) == sorted(wanted)
+    (sums,) = [row for row in named if not row["Shade code"]]
+    assert sums["How many"] == sum(count for _, _, count, *_ in wanted)
+    assert Decimal(str(sums["Cost (EUR)"])) == plan.cost
     assert sum(cost for *_, cost in wanted) == plan.cost
     assert f"{plan.cost:.2f} EUR" in text_of(sheet(page, plan, "purchase", "pdf"))
 

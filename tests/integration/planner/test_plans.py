@@ -38,25 +38,56 @@ def shade_of(colourway: Colourway, slot: str) -> Shade:
 def test_plan_of_one_bracelet_worked_by_hand(colourway: Colourway, batch: Batch) -> None:
     """6 strands all forward, Medium with the default ties: worked example.
 
-    Medium is 140 mm; ceil(140 / (sqrt 2 * 0.9)) = 110 rows. Every strand's piece is
-    knotted * 1.1 + ends, up to 10 mm; each slot has two strands, and one skein of
-    8 m * 0.98 = 7840 mm holds both.
+    Medium is 140 mm; ceil(140 / (sqrt 2 * 0.9)) = ceil(109.99) = 110 rows. At d = 0.9 mm a knot
+    takes (2 + 3 pi) d = 10.2823 mm of the strand that ties and 2 d = 1.8 mm of its base, an idle
+    row sqrt 2 d = 1.2728 mm. Two loose ties take 2 x (90 x 1.0 + 30 + 80) = 400 mm. A piece is
+    knotted x 1.1 + 400, up to the next 10 mm:
+
+    strand  tied  base  idle   knotted    x 1.1   + 400     cut
+    1 (A)     47    45    18   587.178  645.896  1045.896  1050
+    2 (A)     45    46    19   569.687  626.655  1026.655  1030
+    3 (B)     47    45    18   587.178  645.896  1045.896  1050
+    4 (B)     45    47    18   570.214  627.235  1027.235  1030
+    5 (C)     46    45    19   578.169  635.986  1035.986  1040
+    6 (C)     45    47    18   570.214  627.235  1027.235  1030
+
+    One skein of 8 m x 0.98 = 7840 mm holds both pieces of a shade and costs 1.20.
     """
+    assert _tied_base_idle(strands=6, rows=110) == [
+        (47, 45, 18),
+        (45, 46, 19),
+        (47, 45, 18),
+        (45, 47, 18),
+        (46, 45, 19),
+        (45, 47, 18),
+    ]
     make_order(batch, colourway)
     plan = plan_of(batch)
     assert plan.bracelet_count == 1
     assert plan.piece_count == 6
-    kind = plan.kinds.get()
-    assert kind.rows == 110
-    for shade in plan.shades.all():
-        pieces = [piece.cut_mm for piece in shade.pieces.all()]
-        assert len(pieces) == 2
-        assert shade.need_mm == sum(pieces)
+    assert plan.kinds.get().rows == 110
+    pieces = plan.bracelets.get().pieces.order_by("index")
+    assert [piece.cut_mm for piece in pieces] == [1_050, 1_030, 1_050, 1_030, 1_040, 1_030]
+    by_slot = [plan.shades.get(code=shade_of(colourway, slot).code) for slot in "ABC"]
+    assert [shade.need_mm for shade in by_slot] == [2_080, 2_080, 2_070]
+    assert [shade.left_mm for shade in by_slot] == [5_760, 5_760, 5_770]
+    for shade in by_slot:
         assert (shade.shelf_mm, shade.usable_mm, shade.bought) == (0, 0, 1)
         assert shade.bought_lower_bound == 1
-        assert shade.left_mm == 7_840 - sum(pieces)
     assert plan.cost == Decimal("3.60")
     assert plan.status == "optimal"
+
+
+def _tied_base_idle(*, strands: int, rows: int) -> list[tuple[int, int, int]]:
+    """Walk forward knots: each left strand ties on its right neighbour, and they change places."""
+    order = list(range(strands))
+    tied, base = [0] * strands, [0] * strands
+    for row in range(rows):
+        for left in range(row % 2, strands - 1, 2):
+            tied[order[left]] += 1
+            base[order[left + 1]] += 1
+            order[left : left + 2] = order[left + 1], order[left]
+    return [(ties, bases, rows - ties - bases) for ties, bases in zip(tied, base, strict=True)]
 
 
 def test_plan_takes_the_shelf_first(colourway: Colourway, batch: Batch) -> None:
