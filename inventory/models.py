@@ -49,6 +49,7 @@ class Workshop(models.Model):
         validators=[MinValueValidator(Decimal(1)), MaxValueValidator(Decimal(100))],
     )
     keep_length_mm = models.PositiveIntegerField(default=300, validators=length_validators)
+    join_tail_mm = models.PositiveIntegerField(default=50, validators=[MaxValueValidator(500)])
     short_measure_share = models.DecimalField(
         max_digits=4, decimal_places=3, default=Decimal("0.02"), validators=share_validators
     )

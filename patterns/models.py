@@ -4,6 +4,7 @@ import math
 from decimal import Decimal
 from functools import lru_cache
 
+from django.conf import settings
 from django.core.validators import MaxValueValidator, MinValueValidator, RegexValidator
 from django.db import models
 from django.db.models import F, Q, QuerySet
@@ -184,6 +185,7 @@ class Pattern(models.Model):
 
     class Technique(models.TextChoices):
         DIAGONAL = "diagonal", "diagonal"
+        GRID = "grid", "grid"
 
     name = models.CharField(max_length=80)
     technique = models.CharField(
@@ -192,6 +194,10 @@ class Pattern(models.Model):
     text = models.TextField(max_length=65_536)
     strand_count = models.PositiveIntegerField()
     repeat_rows = models.PositiveIntegerField()
+    thread_mm = models.PositiveIntegerField(default=0)
+    version = models.PositiveIntegerField(default=1)
+    archived_at = models.DateTimeField(null=True, blank=True)
+    last_planned_on = models.DateField(null=True, blank=True)
     created_at = models.DateTimeField(auto_now_add=True)
     updated_at = models.DateTimeField(auto_now=True)
 
@@ -213,6 +219,46 @@ class Pattern(models.Model):
     @property
     def definition(self) -> DiagonalPattern:
         return _read_once(self.text)
+
+
+class PatternVersion(models.Model):
+    """The text of a pattern as it was saved; the newest one is the pattern's own text."""
+
+    pattern = models.ForeignKey(Pattern, on_delete=models.CASCADE, related_name="versions")
+    number = models.PositiveIntegerField()
+    text = models.TextField(max_length=65_536)
+    created_at = models.DateTimeField(auto_now_add=True)
+    created_by = models.ForeignKey(
+        settings.AUTH_USER_MODEL, on_delete=models.SET_NULL, null=True, related_name="+"
+    )
+
+    class Meta:
+        ordering = ["-number"]
+        constraints = [
+            models.UniqueConstraint(
+                fields=["pattern", "number"], name="pattern_version_number_once"
+            ),
+        ]
+
+    def __str__(self) -> str:
+        return f"{self.pattern}, version {self.number}"
+
+
+class PatternImport(models.Model):
+    """Pattern files that were uploaded together and wait for the maker's word."""
+
+    created_by = models.ForeignKey(
+        settings.AUTH_USER_MODEL, on_delete=models.CASCADE, related_name="+"
+    )
+    created_at = models.DateTimeField(auto_now_add=True)
+    source_name = models.CharField(max_length=200, blank=True)
+    files = models.JSONField()
+
+    class Meta:
+        ordering = ["-pk"]
+
+    def __str__(self) -> str:
+        return self.source_name or "pattern files"
 
 
 class Colourway(models.Model):

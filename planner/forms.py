@@ -89,6 +89,14 @@ class WorkshopForm(forms.ModelForm):
         help_text="A remnant at least this long goes back on the shelf; a shorter one is waste.",
     )
 
+    join_tail_mm = LengthField(
+        label="Tail at a join",
+        minimum_mm=0,
+        maximum_mm=500,
+        initial=50,
+        help_text="In grid patterns, what is left hanging where a colour begins or ends.",
+    )
+
     class Meta:
         model = Workshop
         fields = [
@@ -101,6 +109,7 @@ class WorkshopForm(forms.ModelForm):
             "safety_share",
             "short_measure_share",
             "keep_length_mm",
+            "join_tail_mm",
         ]
         labels = {
             "length_unit": "You measure in",
@@ -112,7 +121,8 @@ class WorkshopForm(forms.ModelForm):
         super().__init__(*args, **kwargs)
         if not self.instance.pk:
             return
-        self.fields["keep_length_mm"].unit = self.instance.length_unit  # type: ignore[attr-defined]
+        for name in ("keep_length_mm", "join_tail_mm"):
+            self.fields[name].unit = self.instance.length_unit  # type: ignore[attr-defined]
         step = f"{self.instance.rounding_step_mm.normalize():f}"
         self.initial["rounding_step_mm"] = step
         if step not in dict(ROUNDING_STEPS):

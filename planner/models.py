@@ -75,6 +75,9 @@ class OrderLine(models.Model):
     )
     due_date = models.DateField(null=True, blank=True)
     note = models.CharField(max_length=500, blank=True)
+    distinct_lengths = models.PositiveSmallIntegerField(
+        null=True, blank=True, validators=[MinValueValidator(1), MaxValueValidator(60)]
+    )
 
     objects = OrderLineQuerySet.as_manager()
 
@@ -164,6 +167,8 @@ class PlanKind(models.Model):
     """All equal bracelets of a plan: pattern, colourway, size and ending, exploded once."""
 
     plan = models.ForeignKey(Plan, on_delete=models.CASCADE, related_name="kinds")
+    pattern_id_then = models.BigIntegerField(null=True)
+    pattern_version = models.PositiveIntegerField(null=True)
     pattern_name = models.CharField(max_length=80)
     pattern_text = models.TextField()
     colourway_name = models.CharField(max_length=60)
