@@ -12,7 +12,6 @@ from django.db.models.deletion import ProtectedError
 from inventory.models import Shade, Workshop
 from patterns.cut_lengths import CutRule
 from patterns.defaults import BUTTONED_ENDINGS, DEFAULT_ENDINGS, DEFAULT_SIZES, SizeDefault
-from patterns.knots import DiagonalPattern
 from patterns.models import (
     Colourway,
     ColourwayShade,
@@ -23,6 +22,7 @@ from patterns.models import (
     Size,
 )
 from patterns.pattern_file import read_pattern
+from patterns.techniques import Pattern as PatternCore
 
 
 class LibraryError(ValueError):
@@ -35,6 +35,7 @@ def cut_rule(workshop: Workshop | None) -> CutRule:
     return CutRule(
         safety_share=float(habits.safety_share),
         rounding_step_mm=Fraction(habits.rounding_step_mm),
+        join_tail_mm=habits.join_tail_mm,
     )
 
 
@@ -51,11 +52,11 @@ def change_pattern(*, pattern: Pattern, text: str) -> Pattern:
     """Slots that are gone lose their shades; new ones wait for theirs, see `missing_slots`."""
     definition = _fill(pattern, text)
     gone = ColourwayShade.objects.filter(colourway__pattern=pattern)
-    gone.exclude(slot__in=set(definition.slots)).delete()
+    gone.exclude(slot__in=definition.used_slots).delete()
     return pattern
 
 
-def _fill(pattern: Pattern, text: str) -> DiagonalPattern:
+def _fill(pattern: Pattern, text: str) -> PatternCore:
     definition = read_pattern(text)
     pattern.name = definition.name
     pattern.technique = definition.technique
@@ -84,7 +85,7 @@ def set_colourway(
     colourway: Colourway | None = None,
 ) -> Colourway:
     """Give every slot of the pattern its shade, in a new colourway or in this one."""
-    slots = set(pattern.definition.slots)
+    slots = set(pattern.definition.used_slots)
     missing, extra = sorted(slots - shades.keys()), sorted(shades.keys() - slots)
     if missing:
         raise LibraryError(f"Choose a shade for {_listed(missing)}.")
@@ -101,9 +102,9 @@ def set_colourway(
     return colourway
 
 
-def missing_slots(colourway: Colourway, definition: DiagonalPattern | None = None) -> list[str]:
+def missing_slots(colourway: Colourway, definition: PatternCore | None = None) -> list[str]:
     """Slots that wait for a shade; give the definition where it has been read already."""
-    slots = set((definition or colourway.pattern.definition).slots)
+    slots = set((definition or colourway.pattern.definition).used_slots)
     return sorted(slots - colourway.shades_by_slot().keys())
 
 

@@ -5,9 +5,11 @@ from fractions import Fraction
 from math import ceil
 from typing import Literal, get_args
 
-from patterns.geometry import StrandLength, StrandTable
+from patterns.geometry import Role, StrandLength, StrandTable
+from patterns.grid_lengths import DEFAULT_JOIN_TAIL_MM
 
 Start = Literal["straight", "folded"]
+PieceRole = Role | Literal["sliding"]
 MAX_ENDING_MM = 3000
 MAX_STEP_MM = 200
 _LENGTH_NAMES = {
@@ -117,7 +119,7 @@ def _as_written(value: float) -> Fraction:
 
 @dataclass(frozen=True)
 class CutRule:
-    """How a maker cuts: share added for safety, step of the ruler.
+    """How a maker cuts: share added for safety, step of the ruler, tails at a join.
 
     Parameters
     ----------
@@ -125,6 +127,8 @@ class CutRule:
         Added to the knotted part [share], 0 to 1; 0.1 is 10 %.
     rounding_step_mm
         Cut lengths are rounded up to it [mm], 1 to 200; half an inch is Fraction(127, 10).
+    join_tail_mm
+        In a grid, what is left hanging at each end of a run [mm], 0 to 3000.
 
     Raises
     ------
@@ -134,8 +138,10 @@ class CutRule:
 
     safety_share: float
     rounding_step_mm: int | Fraction
+    join_tail_mm: int = DEFAULT_JOIN_TAIL_MM
 
     def __post_init__(self) -> None:
+        _check_whole_mm("tail at a join", self.join_tail_mm)
         if not _is_number(self.safety_share) or not 0 <= self.safety_share <= 1:
             raise EndingError("The safety share has to be from 0 % to 100 %.")
         step = self.rounding_step_mm
@@ -178,9 +184,11 @@ class Piece:
     knotted_mm
         Thread of each strand in the knotted part [mm].
     ends_mm
-        What the ends, and the loop of a fold, take together [mm].
-    is_sliding
-        Whether it is the separate piece of a sliding closure.
+        What the ends, the loop of a fold, or the tails of a run take together [mm].
+    labels
+        What each of its strands is called, in the same order.
+    role
+        What it becomes; a folded piece goes by its first strand.
     """
 
     slot: str
@@ -189,7 +197,30 @@ class Piece:
     fold_mm: int | None
     knotted_mm: tuple[float, ...]
     ends_mm: int
-    is_sliding: bool = False
+    labels: tuple[str, ...]
+    role: PieceRole = "strand"
+
+    @property
+    def label(self) -> str:
+        """What sheets call it: "strands 4 and 1", "leading strand", "run 2 of B"."""
+        if self.role == "sliding":
+            return "sliding piece"
+        if len(self.labels) == 2 and self.role == "strand":
+            return f"strands {self.strands[0]} and {self.strands[1]}"
+        return " and ".join(self.labels)
+
+    @property
+    def short_label(self) -> str:
+        """The same where there is little room: "4 + 1", "lead", "run 2"."""
+        if self.role == "sliding":
+            return "slide"
+        return " + ".join(_short(label) for label in self.labels)
+
+
+def _short(label: str) -> str:
+    if label.startswith("run"):
+        return label.partition(" of ")[0]
+    return "lead" if label == "leading strand" else label.rpartition(" ")[2]
 
 
 def pieces_for(table: StrandTable, ending: Ending, rule: CutRule) -> tuple[Piece, ...]:
@@ -206,7 +237,8 @@ def pieces_for(table: StrandTable, ending: Ending, rule: CutRule) -> tuple[Piece
 
     Returns
     -------
-    Pieces by their leftmost strand; a sliding piece, in strand 1's slot, comes last.
+    Pieces by their leftmost strand; a sliding piece, in strand 1's slot, comes last. In a grid
+    the leading strand and the runs follow the base strands.
 
     Notes
     -----
@@ -215,14 +247,17 @@ def pieces_for(table: StrandTable, ending: Ending, rule: CutRule) -> tuple[Piece
     rounded up to the step, and a step more where no whole millimetre to fold at leaves both
     enough. Within a slot the longest strand goes with the shortest, so that pieces come out
     even; of an odd number the longest is cut alone.
+    A run is never folded: cut = knotted * (1 + safety) + two tails, rounded up to the step.
     """
     pieces = []
-    for group in _cut_together(table.strands, folded=ending.start == "folded"):
+    hanging = tuple(strand for strand in table.strands if strand.role != "run")
+    for group in _cut_together(hanging, folded=ending.start == "folded"):
         if len(group) == 2:
             pieces.append(_folded_piece(group[0], group[1], ending, rule))
         else:
             pieces.append(_single_piece(group[0], ending, rule))
     pieces.sort(key=lambda piece: min(piece.strands))
+    pieces.extend(_run_piece(strand, rule) for strand in table.strands if strand.role == "run")
     if ending.sliding_piece_mm and table.strands:
         pieces.append(_sliding_piece(table.strands[0].slot, ending, rule))
     return tuple(pieces)
@@ -256,6 +291,22 @@ def _single_piece(strand: StrandLength, ending: Ending, rule: CutRule) -> Piece:
         fold_mm=None,
         knotted_mm=(strand.knotted_mm,),
         ends_mm=ends_mm,
+        labels=(strand.label,),
+        role=strand.role,
+    )
+
+
+def _run_piece(run: StrandLength, rule: CutRule) -> Piece:
+    tails_mm = 2 * rule.join_tail_mm
+    return Piece(
+        slot=run.slot,
+        strands=(run.strand,),
+        cut_mm=rule.round_up_mm(rule.with_safety_mm(run.knotted_mm) + tails_mm),
+        fold_mm=None,
+        knotted_mm=(run.knotted_mm,),
+        ends_mm=tails_mm,
+        labels=(run.label,),
+        role="run",
     )
 
 
@@ -275,6 +326,8 @@ def _folded_piece(
         fold_mm=_fold_point_mm(ceil(first), cut_mm - ceil(second), rule.rounding_step_mm),
         knotted_mm=(longer.knotted_mm, shorter.knotted_mm),
         ends_mm=2 * ending.end_allowance_mm + ending.fold_loop_mm,
+        labels=(longer.label, shorter.label),
+        role=longer.role,
     )
 
 
@@ -302,5 +355,6 @@ def _sliding_piece(slot: str, ending: Ending, rule: CutRule) -> Piece:
         fold_mm=None,
         knotted_mm=(),
         ends_mm=ending.sliding_piece_mm,
-        is_sliding=True,
+        labels=(),
+        role="sliding",
     )

@@ -1,75 +1,33 @@
 """A bracelet drawn as it looks when tied: once, for the screen and for paper."""
 
-import re
-from collections.abc import Iterable, Mapping
-from dataclasses import dataclass
-from math import sqrt
-from typing import Literal, TypeVar
-from xml.sax.saxutils import escape, quoteattr
+from collections.abc import Mapping
+from typing import Literal
 
-from patterns.colours import channels, working_colours
+from patterns.colours import channels
+from patterns.grid import GridPattern, band_rows
 from patterns.knots import DiagonalPattern, TiedKnot, tie_rows
-
-__all__ = ["Drawing", "Line", "Shape", "Square", "draw_band", "to_svg", "working_colours"]
+from patterns.shapes import (
+    LOOSE_END,
+    MARGIN,
+    THREAD_WIDTH,
+    Block,
+    Drawing,
+    DrawingError,
+    Line,
+    Square,
+    turned,
+)
+from patterns.techniques import Pattern
 
 Layout = Literal["vertical", "horizontal"]
 MAX_DRAWN_ROWS = 2000
-# A strand takes one unit of the width, and a unit is sqrt(2) thread diameters.
-THREAD_WIDTH = 1 / sqrt(2)
-OUTLINE_WIDTH = 0.12
-LOOSE_END = 2.0
-MARGIN = 0.25
-_NOT_IN_XML = re.compile("[^\t\n\r\u0020-\ud7ff\ue000-\ufffd\U00010000-\U0010ffff]")
-
-
-class DrawingError(ValueError):
-    """A band that cannot be drawn."""
-
-
-@dataclass(frozen=True)
-class Square:
-    """A knot: a square standing on a corner, `half` a diagonal from its centre to each tip."""
-
-    cx: float
-    cy: float
-    half: float
-    colour: str
-    slot: str
-
-
-@dataclass(frozen=True)
-class Line:
-    """A bare run of thread, drawn under the squares."""
-
-    x1: float
-    y1: float
-    x2: float
-    y2: float
-    width: float
-    colour: str
-    slot: str
-
-
-Shape = Square | Line
-ShapeKind = TypeVar("ShapeKind", Square, Line)
-
-
-@dataclass(frozen=True)
-class Drawing:
-    """Shapes in drawing order on a ground of `width` by `height`; y grows downwards.
-
-    Every shape is filled with its colour and outlined `OUTLINE_WIDTH` thick in
-    `working_colours(colour)`, so that white thread shows on paper and the picture reads in
-    black and white.
-    """
-
-    width: float
-    height: float
-    shapes: tuple[Shape, ...]
+# A column of a grid is 2.5 thread diameters wide and a row 2 high; a unit is sqrt(2) of them.
+COLUMN_WIDTH = 2.5 * THREAD_WIDTH
+GRID_ROW_HEIGHT = 2 * THREAD_WIDTH
 
 
 def draw_band(
-    pattern: DiagonalPattern,
+    pattern: Pattern,
     rows: int,
     colours: Mapping[str, str],
     *,
@@ -102,28 +60,68 @@ def draw_band(
 
     Notes
     -----
-    A row is one unit high and a strand one unit wide: the knot in row r on positions p and
-    p + 1 has its centre at (p, r), so the band measures N by R + 1 units.
+    Diagonal: a row is one unit high and a strand one unit wide: the knot in row r on positions
+    p and p + 1 has its centre at (p, r), so the band measures N by R + 1 units. Grid: upright
+    cells of 2.5 by 2 thread diameters, the base strands hanging out at both ends.
     """
     if not 1 <= rows <= MAX_DRAWN_ROWS:
         raise DrawingError(f"Draw 1 to {MAX_DRAWN_ROWS} rows, not {rows}.")
-    strand_colours = _strand_colours(pattern, colours)
+    slot_colours = _slot_colours(pattern, colours)
+    if isinstance(pattern, GridPattern):
+        drawing = _draw_grid(pattern, rows, slot_colours)
+    else:
+        drawing = _draw_diagonal(pattern, rows, slot_colours)
+    return turned(drawing) if layout == "horizontal" else drawing
+
+
+def _slot_colours(pattern: Pattern, colours: Mapping[str, str]) -> dict[str, str]:
+    for slot in pattern.used_slots:
+        if slot not in colours:
+            raise DrawingError(f"Slot {slot} has no colour. Choose one.")
+        channels(colours[slot])
+    return {slot: colours[slot].lower() for slot in pattern.used_slots}
+
+
+def _draw_grid(pattern: GridPattern, rows: int, colours: Mapping[str, str]) -> Drawing:
+    top = LOOSE_END + MARGIN
+    blocks = [
+        Block(
+            MARGIN + column * COLUMN_WIDTH,
+            top + row * GRID_ROW_HEIGHT,
+            COLUMN_WIDTH,
+            GRID_ROW_HEIGHT,
+            colours[slot],
+            slot,
+        )
+        for row, cells in enumerate(band_rows(pattern, rows))
+        for column, slot in enumerate(cells)
+    ]
+    height = rows * GRID_ROW_HEIGHT + 2 * top
+    centres = [MARGIN + (column + 0.5) * COLUMN_WIDTH for column in range(pattern.columns)]
+    base_strands = [
+        Line(
+            x,
+            MARGIN,
+            x,
+            height - MARGIN,
+            THREAD_WIDTH,
+            colours[pattern.background],
+            pattern.background,
+        )
+        for x in centres
+    ]
+    width = pattern.columns * COLUMN_WIDTH + 2 * MARGIN
+    return Drawing(width=width, height=height, shapes=(*base_strands, *blocks))
+
+
+def _draw_diagonal(pattern: DiagonalPattern, rows: int, colours: Mapping[str, str]) -> Drawing:
+    strand_colours = ["", *(colours[slot] for slot in pattern.slots)]  # strands count from 1
     lines, squares = _draw_rows(pattern, rows, strand_colours)
-    drawing = Drawing(
+    return Drawing(
         width=pattern.strands + 2 * MARGIN,
         height=rows + 1 + 2 * (LOOSE_END + MARGIN),
         shapes=(*lines, *squares),
     )
-    return _turned(drawing) if layout == "horizontal" else drawing
-
-
-def _strand_colours(pattern: DiagonalPattern, colours: Mapping[str, str]) -> list[str]:
-    """Colours by strand; index 0 is unused."""
-    for slot in pattern.slots:
-        if slot not in colours:
-            raise DrawingError(f"Slot {slot} has no colour. Choose one.")
-        channels(colours[slot])
-    return ["", *(colours[slot].lower() for slot in pattern.slots)]
 
 
 def _draw_rows(
@@ -182,121 +180,3 @@ def _thread(
         strand_colours[strand],
         pattern.slots[strand - 1],
     )
-
-
-def _turned(drawing: Drawing) -> Drawing:
-    """Turn by a quarter to the left, so that the start lies at the left."""
-    return Drawing(
-        width=drawing.height,
-        height=drawing.width,
-        shapes=tuple(_turned_shape(shape, drawing.width) for shape in drawing.shapes),
-    )
-
-
-def _turned_shape(shape: Shape, width: float) -> Shape:
-    if isinstance(shape, Square):
-        return Square(shape.cy, width - shape.cx, shape.half, shape.colour, shape.slot)
-    return Line(
-        shape.y1,
-        width - shape.x1,
-        shape.y2,
-        width - shape.x2,
-        shape.width,
-        shape.colour,
-        shape.slot,
-    )
-
-
-def to_svg(
-    drawing: Drawing,
-    *,
-    title: str,
-    height_px: float | None = None,
-    width_px: float | None = None,
-) -> str:
-    """Write a drawing as one SVG element.
-
-    Parameters
-    ----------
-    drawing
-        The drawing.
-    title
-        What it shows, for people who do not see it.
-    height_px, width_px
-        One of the two sizes [px]; the other follows. With neither, the picture fills its box.
-
-    Returns
-    -------
-    `<svg>...</svg>` with presentation attributes only, which a strict content policy allows.
-
-    Notes
-    -----
-    The squares of one colour are one path: a long band stays small. Lines come first, as a
-    wide stroke in the outline's tone under a narrower one in the colour.
-    """
-    words = _NOT_IN_XML.sub("", title)
-    parts = [
-        '<svg xmlns="http://www.w3.org/2000/svg" role="img"'
-        f" aria-label={quoteattr(words)}{_size(drawing, height_px, width_px)}"
-        f' viewBox="0 0 {_short(drawing.width)} {_short(drawing.height)}">',
-        f"<title>{escape(words)}</title>",
-    ]
-    lines = [shape for shape in drawing.shapes if isinstance(shape, Line)]
-    squares = [shape for shape in drawing.shapes if isinstance(shape, Square)]
-    for colour, same_colour in _by_colour(lines).items():
-        parts.extend(_line_paths(colour, same_colour))
-    for colour, knots in _by_colour(squares).items():
-        parts.append(_square_path(colour, knots))
-    return "".join([*parts, "</svg>"])
-
-
-def _size(drawing: Drawing, height_px: float | None, width_px: float | None) -> str:
-    if height_px is not None:
-        width_px = height_px * drawing.width / drawing.height
-    elif width_px is not None:
-        height_px = width_px * drawing.height / drawing.width
-    else:
-        return ""
-    return f' width="{_short(width_px)}" height="{_short(height_px)}"'
-
-
-def _by_colour(shapes: Iterable[ShapeKind]) -> dict[str, list[ShapeKind]]:
-    grouped: dict[str, list[ShapeKind]] = {}
-    for shape in shapes:
-        grouped.setdefault(shape.colour, []).append(shape)
-    return grouped
-
-
-def _line_paths(colour: str, lines: list[Line]) -> list[str]:
-    path = "".join(
-        f"M{_short(line.x1)} {_short(line.y1)}L{_short(line.x2)} {_short(line.y2)}"
-        for line in lines
-    )
-    width = lines[0].width
-    strokes = (
-        (working_colours(colour), width + OUTLINE_WIDTH),
-        (colour, width - OUTLINE_WIDTH),
-    )
-    return [
-        f'<path d="{path}" fill="none" stroke="{tone}" stroke-width="{_short(stroke)}"/>'
-        for tone, stroke in strokes
-    ]
-
-
-def _square_path(colour: str, squares: list[Square]) -> str:
-    path = "".join(_square_outline(square) for square in squares)
-    return (
-        f'<path d="{path}" fill="{colour}" stroke="{working_colours(colour)}"'
-        f' stroke-width="{_short(OUTLINE_WIDTH)}" stroke-linejoin="round"/>'
-    )
-
-
-def _square_outline(square: Square) -> str:
-    half = _short(square.half)
-    top = f"M{_short(square.cx)} {_short(square.cy - square.half)}"
-    return f"{top}l{half} {half}-{half} {half}-{half}-{half}z"
-
-
-def _short(number: float) -> str:
-    """Write a coordinate with at most two places and no trailing zeros."""
-    return f"{number:.2f}".rstrip("0").rstrip(".")

@@ -46,7 +46,9 @@ def ending_example(ending: Ending, rule: CutRule) -> tuple[PieceLine, ...]:
     """
     strands = _EXAMPLE_STRANDS if ending.start == "folded" else _EXAMPLE_STRANDS[:1]
     try:
-        pieces = pieces_for(StrandTable(rows=1, strands=strands), ending, rule)
+        pieces = pieces_for(
+            StrandTable(rows=1, strands=strands, band_length_mm=0, band_width_mm=0), ending, rule
+        )
     except EndingError:
         return ()
     return tuple(PieceLine(piece, piece_working(piece, ending, rule)) for piece in pieces)

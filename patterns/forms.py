@@ -12,9 +12,11 @@ from inventory.fields import LengthField, LineField
 from inventory.models import Shade
 from inventory.page_helpers import habits
 from patterns.fields import BlockField, NumberField
-from patterns.knots import MAX_NAME_LENGTH, DiagonalPattern, Finish, PatternError
+from patterns.knots import MAX_NAME_LENGTH, Finish, PatternError
 from patterns.models import Colourway, Ending, Gauge, Pattern, Size
 from patterns.pattern_file import MAX_FILE_BYTES, read_pattern, write_pattern
+from patterns.techniques import Pattern as PatternCore
+from patterns.techniques import slot_words
 
 NOT_ON_LIST = "Choose one from the list."
 FINISH_CHOICES = [
@@ -171,19 +173,18 @@ class ColourwayForm(forms.Form):
         self,
         data: Any = None,
         *,
-        definition: DiagonalPattern,
+        definition: PatternCore,
         shades: Iterable[Shade],
         **kwargs: Any,
     ) -> None:
         super().__init__(data, **kwargs)
         self.shades = {str(shade.pk): shade for shade in shades}
-        self.slots = sorted(set(definition.slots))
+        self.slots = definition.used_slots
         choices = [("", "Choose a shade")] + [(pk, str(shade)) for pk, shade in self.shades.items()]
         for slot in self.slots:
-            strands = [str(n) for n, s in enumerate(definition.slots, start=1) if s == slot]
             self.fields[f"slot_{slot}"] = forms.ChoiceField(
                 choices=choices,
-                label=f"{slot}: strand{'s' if len(strands) > 1 else ''} {', '.join(strands)}",
+                label=f"{slot}: {slot_words(definition, slot)}",
                 error_messages={
                     "required": f"Choose a shade for {slot}.",
                     "invalid_choice": "That shade is not on your list. Choose another.",

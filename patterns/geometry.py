@@ -2,8 +2,12 @@
 
 from dataclasses import dataclass
 from math import ceil, pi, sqrt
+from typing import Literal
 
+from patterns.grid import GridPattern
 from patterns.knots import DiagonalPattern, Finish, StrandCount, count_strands
+
+Role = Literal["strand", "base", "leading", "run"]
 
 MIN_KNOTTED_LENGTH_MM = 1
 MAX_KNOTTED_LENGTH_MM = 5000
@@ -46,6 +50,10 @@ class Gauge:
     Base strand, a knot: 2 d. A row adds sqrt(2) d: knots tile as squares of side 2 d that
     stand on a corner, and a row is half a diagonal. So N/2 squares side by side are N sqrt(2) d
     wide, and a strand that sits a row out runs straight along half a diagonal, sqrt(2) d.
+
+    In a grid the knots hang below each other: a row adds 2 d, a column the outer diameter of a
+    loop, (c + 1) d, and a thread that passes behind a column takes as much. Turning into the
+    next row takes 2 d.
     """
 
     thread_diameter_mm: float = 0.9
@@ -74,8 +82,28 @@ class Gauge:
 
     @property
     def row_mm(self) -> float:
-        """Length a row adds to the band [mm]."""
+        """Length a row adds to the band of a diagonal pattern [mm]."""
         return sqrt(2) * self.thread_diameter_mm
+
+    @property
+    def grid_row_mm(self) -> float:
+        """Length a row adds to the band of a grid pattern [mm]."""
+        return 2 * self.thread_diameter_mm
+
+    @property
+    def grid_column_mm(self) -> float:
+        """Width a column adds to the band of a grid pattern [mm]."""
+        return (self.loop_ratio + 1) * self.thread_diameter_mm
+
+    @property
+    def passing_mm(self) -> float:
+        """Thread spent on passing behind one column of a grid [mm]."""
+        return self.grid_column_mm
+
+    @property
+    def turning_mm(self) -> float:
+        """Thread spent on going one row down a grid, at its edge or behind it [mm]."""
+        return 2 * self.thread_diameter_mm
 
 
 def _check_range(name: str, value: float, lowest: float, highest: float, unit: str) -> None:
@@ -87,7 +115,27 @@ def _check_range(name: str, value: float, lowest: float, highest: float, unit: s
 
 @dataclass(frozen=True)
 class StrandLength:
-    """A strand's counts and the thread it spends in the knotted part [mm]."""
+    """What one strand does, and the thread it spends in the knotted part.
+
+    Parameters
+    ----------
+    strand
+        Its number, from 1, left to right; in a grid the leading strand and the runs follow.
+    slot
+        Its colour slot.
+    tied, base, idle
+        Knots it ties, knots it is the base strand in, rows it sits out at an edge.
+    knotted_mm
+        Thread it spends in the knotted part [mm].
+    role
+        "strand" in a diagonal pattern; "base", "leading" or "run" in a grid.
+    passed, turned
+        In a grid: columns it passes behind, and rows it goes down at the edge or behind.
+    first_row, last_row
+        In a grid: the rows of the band between which it ties.
+    run
+        Number of a run within its slot; 0 for other strands.
+    """
 
     strand: int
     slot: str
@@ -95,17 +143,36 @@ class StrandLength:
     base: int
     idle: int
     knotted_mm: float
+    role: Role = "strand"
+    passed: int = 0
+    turned: int = 0
+    first_row: int | None = None
+    last_row: int | None = None
+    run: int = 0
+
+    @property
+    def label(self) -> str:
+        """What sheets and pages call it."""
+        if self.role == "run":
+            return f"run {self.run} of {self.slot}"
+        return {
+            "strand": f"strand {self.strand}",
+            "base": f"base strand {self.strand}",
+            "leading": "leading strand",
+        }[self.role]
 
 
 @dataclass(frozen=True)
 class StrandTable:
-    """All strands of a bracelet of so many rows."""
+    """All strands of a bracelet of so many rows, and what its band measures [mm]."""
 
     rows: int
     strands: tuple[StrandLength, ...]
+    band_length_mm: float
+    band_width_mm: float
 
 
-def rows_for(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gauge) -> int:
+def rows_for(pattern: DiagonalPattern | GridPattern, knotted_length_mm: float, gauge: Gauge) -> int:
     """Return how many rows to tie for a knotted length.
 
     Parameters
@@ -124,39 +191,45 @@ def rows_for(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gauge) -
     Raises
     ------
     LengthError
-        When the length is out of range, needs too many rows, or is shorter than one repeat
-        where at most whole repeats are asked for.
+        When the length is out of range, needs too many rows, is shorter than one repeat
+        where at most whole repeats are asked for, or shorter than a centred picture.
 
     Notes
     -----
-    Exact rows: ceil(L / (sqrt(2) d)). Whole repeats are taken of these rows: the nearest
-    number of repeats (a tie goes up; one at the least), at least, or at most as many rows.
+    Exact rows: ceil(L / p), with p what a row adds: sqrt(2) d, in a grid 2 d. Whole repeats
+    are taken of these rows: the nearest number of repeats (a tie goes up; one at the least), at
+    least, or at most as many rows. A centred picture takes the exact rows.
     """
-    exact = _exact_rows(knotted_length_mm, gauge)
+    row_mm = gauge.grid_row_mm if isinstance(pattern, GridPattern) else gauge.row_mm
+    exact = _exact_rows(knotted_length_mm, row_mm)
     repeat = len(pattern.rows)
     repeats = {
         Finish.NEAREST: max(1, (2 * exact + repeat) // (2 * repeat)),
         Finish.AT_LEAST: -(-exact // repeat),
         Finish.AT_MOST: exact // repeat,
     }
-    if pattern.finish is Finish.EXACT:
+    too_short = f"{repeat * row_mm:.0f} mm, longer than {float(knotted_length_mm):.0f} mm."
+    if pattern.finish is Finish.CENTRED and exact < repeat:
+        raise LengthError(
+            f"The picture of {repeat} rows is {too_short} Choose a longer size, or another finish."
+        )
+    if pattern.finish not in repeats:
         return exact
     if repeats[pattern.finish] == 0:
         raise LengthError(
-            f"One repeat of {repeat} rows is {band_length_mm(repeat, gauge):.0f} mm, longer than "
-            f"{float(knotted_length_mm):.0f} mm. Choose a longer size or another finish."
+            f"One repeat of {repeat} rows is {too_short} Choose a longer size or another finish."
         )
     return _checked_rows(repeats[pattern.finish] * repeat)
 
 
-def _exact_rows(knotted_length_mm: float, gauge: Gauge) -> int:
+def _exact_rows(knotted_length_mm: float, row_mm: float) -> int:
     length_mm = float(knotted_length_mm)
     if not MIN_KNOTTED_LENGTH_MM <= length_mm <= MAX_KNOTTED_LENGTH_MM:
         raise LengthError(
             f"The knotted length has to be from {MIN_KNOTTED_LENGTH_MM} mm "
             f"to {MAX_KNOTTED_LENGTH_MM} mm."
         )
-    return _checked_rows(ceil(length_mm / gauge.row_mm - _ROW_NOISE))
+    return _checked_rows(ceil(length_mm / row_mm - _ROW_NOISE))
 
 
 def _checked_rows(rows: int) -> int:
@@ -195,7 +268,7 @@ def band_length_mm(rows: int, gauge: Gauge) -> float:
     return rows * gauge.row_mm
 
 
-def strand_table(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gauge) -> StrandTable:
+def diagonal_table(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gauge) -> StrandTable:
     """Return rows, counts and thread of every strand for a knotted length.
 
     Parameters
@@ -237,4 +310,6 @@ def strand_table(pattern: DiagonalPattern, knotted_length_mm: float, gauge: Gaug
             )
             for count in count_strands(pattern, rows)
         ),
+        band_length_mm=band_length_mm(rows, gauge),
+        band_width_mm=band_width_mm(pattern.strands, gauge),
     )

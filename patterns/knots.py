@@ -58,12 +58,13 @@ _MIRRORED = {Knot.F: Knot.B, Knot.B: Knot.F, Knot.FB: Knot.BF, Knot.BF: Knot.FB}
 
 
 class Finish(StrEnum):
-    """How a bracelet ends: after the exact rows, or after whole repeats."""
+    """How a bracelet ends: after the exact rows, after whole repeats, or with its picture centred."""
 
     EXACT = "exact"
     NEAREST = "nearest"
     AT_LEAST = "at_least"
     AT_MOST = "at_most"
+    CENTRED = "centred"
 
 
 def knots_in_row(strands: int, row: int) -> int:
@@ -150,6 +151,8 @@ class DiagonalPattern:
         _check_rows(self.rows, len(self.slots))
         if not isinstance(self.finish, Finish):
             raise PatternError(f"There is no finish called {self.finish!r}.")
+        if self.finish is Finish.CENTRED:
+            raise PatternError("Only grid patterns can be centred. Choose another finish.")
 
     @property
     def technique(self) -> Literal["diagonal"]:
@@ -160,6 +163,11 @@ class DiagonalPattern:
     def strands(self) -> int:
         """Number of strands."""
         return len(self.slots)
+
+    @property
+    def used_slots(self) -> tuple[str, ...]:
+        """The slots that need a shade, by letter."""
+        return tuple(sorted(set(self.slots)))
 
 
 def _check_slots(slots: tuple[str, ...]) -> None:

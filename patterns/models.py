@@ -12,7 +12,7 @@ from django.db.models.functions import Lower
 
 from inventory.models import Shade
 from patterns import cut_lengths, geometry, pattern_file
-from patterns.knots import DiagonalPattern
+from patterns.techniques import Pattern as PatternCore
 
 part_validators = [MaxValueValidator(2_000)]
 wrist_validators = [MinValueValidator(50), MaxValueValidator(400)]
@@ -175,7 +175,7 @@ class PatternQuerySet(QuerySet["Pattern"]):
 
 
 @lru_cache(maxsize=128)
-def _read_once(text: str) -> DiagonalPattern:
+def _read_once(text: str) -> PatternCore:
     """Lists read the same patterns again and again; what is read is frozen, so it can be shared."""
     return pattern_file.read_pattern(text)
 
@@ -217,7 +217,7 @@ class Pattern(models.Model):
         return self.name
 
     @property
-    def definition(self) -> DiagonalPattern:
+    def definition(self) -> PatternCore:
         return _read_once(self.text)
 
 

@@ -3,8 +3,8 @@
 import tomllib
 from collections.abc import Callable, Mapping
 from difflib import get_close_matches
-from typing import TypeAlias
 
+from patterns.grid import Carry, CellRow, GridPattern
 from patterns.knots import (
     DiagonalPattern,
     Finish,
@@ -12,14 +12,17 @@ from patterns.knots import (
     PatternError,
     clean_name,
 )
+from patterns.techniques import Pattern
 
 MAX_FILE_BYTES = 64 * 1024
 NO_KNOTS = "-"
 # A key of thousands of dotted parts takes the TOML reader a minute; no pattern needs one.
 _MAX_DOTS_A_LINE = 100
-_KEYS = ("name", "technique", "strands", "rows", "finish")
-# Grid patterns join here: `Pattern: TypeAlias = DiagonalPattern | GridPattern`.
-Pattern: TypeAlias = DiagonalPattern
+_KEYS = {
+    "diagonal": ("name", "technique", "strands", "rows", "finish"),
+    "grid": ("name", "technique", "background", "rows", "finish", "carry"),
+}
+_ALL_KEYS = tuple(dict.fromkeys(key for keys in _KEYS.values() for key in keys))
 
 
 def read_pattern(text: str) -> Pattern:
@@ -28,9 +31,11 @@ def read_pattern(text: str) -> Pattern:
     Parameters
     ----------
     text
-        TOML with `name`, `technique`, `strands`, `rows` and perhaps `finish`; at most 64 KB.
-        Upper and lower case, commas and blanks between letters and knots, blank lines and
-        comments after `#` are all accepted in `strands` and `rows`.
+        TOML, at most 64 KB. Diagonal: `name`, `technique`, `strands`, `rows` and perhaps
+        `finish`. Grid: `name`, `technique`, `background`, `rows` and perhaps `finish` and
+        `carry`. Upper and lower case, commas and blanks between letters and knots, blank lines
+        and comments after `#` are all accepted in `strands` and `rows`; the letters of a grid's
+        row may also stand without blanks.
 
     Returns
     -------
@@ -43,18 +48,17 @@ def read_pattern(text: str) -> Pattern:
     """
     content = _parse(text)
     for key in content:
-        if key not in _KEYS:
-            raise PatternError(f"There is no setting '{_shown(key)}'. {_nearest(key, _KEYS)}")
+        if key not in _ALL_KEYS:
+            raise PatternError(f"There is no setting '{_shown(key)}'. {_nearest(key, _ALL_KEYS)}")
     technique = _text(content, "technique").strip().lower()
-    if technique == "grid":
-        raise PatternError(
-            f"Grid patterns cannot be planned yet. Use a diagonal pattern: {_EXAMPLES['technique']}"
-        )
     reader = _READERS.get(technique)
     if reader is None:
         raise PatternError(
             f"There is no technique '{_shown(technique)}'. {_nearest(technique, tuple(_READERS))}"
         )
+    for key in content:
+        if key not in _KEYS[technique]:
+            raise PatternError(f"A {technique} pattern has no '{key}'. Take that line out.")
     return reader(content)
 
 
@@ -105,8 +109,10 @@ _EXAMPLES = {
     "name": 'name = "Harbour stripes"',
     "technique": 'technique = "diagonal"',
     "strands": 'strands = "A A B B C C"',
+    "background": 'background = "A"',
     "rows": 'rows = """..."""',
     "finish": 'finish = "nearest"',
+    "carry": 'carry = "least"',
 }
 
 
@@ -115,12 +121,23 @@ def _read_diagonal(content: Mapping[str, object]) -> DiagonalPattern:
         name=clean_name(_text(content, "name")),
         slots=_read_slots(_text(content, "strands")),
         rows=_read_rows(_text(content, "rows")),
-        finish=_read_finish(_text(content, "finish") if "finish" in content else "exact"),
+        finish=_read_finish(content),
+    )
+
+
+def _read_grid(content: Mapping[str, object]) -> GridPattern:
+    return GridPattern(
+        name=clean_name(_text(content, "name")),
+        background=_text(content, "background").strip().upper(),
+        rows=_read_cells(_text(content, "rows")),
+        finish=_read_finish(content),
+        carry=_read_carry(content),
     )
 
 
 _READERS: dict[str, Callable[[Mapping[str, object]], Pattern]] = {
     "diagonal": _read_diagonal,
+    "grid": _read_grid,
 }
 
 
@@ -161,28 +178,43 @@ def _read_knot(word: str, row: int, place: int) -> Knot:
         ) from None
 
 
-def _read_finish(text: str) -> Finish:
+def _read_cells(text: str) -> tuple[CellRow, ...]:
+    lines = ["".join(_words(line)).upper() for line in text.splitlines()]
+    return tuple(tuple(line) for line in lines if line)
+
+
+def _read_finish(content: Mapping[str, object]) -> Finish:
+    return Finish(_choice(content, "finish", tuple(finish.value for finish in Finish)))
+
+
+def _read_carry(content: Mapping[str, object]) -> Carry:
+    return Carry(_choice(content, "carry", tuple(carry.value for carry in Carry)))
+
+
+def _choice(content: Mapping[str, object], key: str, choices: tuple[str, ...]) -> str:
+    """The first choice is meant where the file says nothing."""
+    if key not in content:
+        return choices[0]
+    text = _text(content, key)
     word = text.strip().lower().replace(" ", "_").replace("-", "_")
-    try:
-        return Finish(word)
-    except ValueError:
-        choices = tuple(finish.value for finish in Finish)
-        raise PatternError(
-            f"There is no finish '{_shown(text)}'. {_nearest(word, choices)}"
-        ) from None
+    if word not in choices:
+        raise PatternError(f"There is no {key} '{_shown(text)}'. {_nearest(word, choices)}")
+    return word
 
 
 def write_pattern(pattern: Pattern) -> str:
     """Write a pattern as the text of its file; `read_pattern` gives the same pattern back."""
+    lines = [f"name = {_quoted(pattern.name)}", f'technique = "{pattern.technique}"']
+    if isinstance(pattern, GridPattern):
+        lines.append(f'background = "{pattern.background}"')
+    else:
+        lines.append(f'strands = "{" ".join(pattern.slots)}"')
     rows = "\n".join(" ".join(row) or NO_KNOTS for row in pattern.rows)
-    lines = [
-        f"name = {_quoted(pattern.name)}",
-        f'technique = "{pattern.technique}"',
-        f'strands = "{" ".join(pattern.slots)}"',
-        f'rows = """\n{rows}\n"""',
-    ]
+    lines.append(f'rows = """\n{rows}\n"""')
     if pattern.finish is not Finish.EXACT:
         lines.append(f'finish = "{pattern.finish}"')
+    if isinstance(pattern, GridPattern) and pattern.carry is not Carry.LEAST:
+        lines.append(f'carry = "{pattern.carry}"')
     return "\n".join(lines) + "\n"
 
 
@@ -192,7 +224,7 @@ def _quoted(text: str) -> str:
 
 
 def written_rows(pattern: Pattern) -> list[str]:
-    """Return the rows of the repeat in words: "Row 7: f f b"."""
+    """Return the rows of the repeat as written: "Row 7: f f b", of a grid "Row 7: A B B A"."""
     return [
         f"Row {number}: {' '.join(row) or 'no knots'}"
         for number, row in enumerate(pattern.rows, start=1)

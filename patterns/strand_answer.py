@@ -2,10 +2,10 @@
 
 from dataclasses import dataclass
 
-from patterns import geometry, working
+from patterns import working
 from patterns.cut_lengths import CutRule, Ending, EndingError, Piece, pieces_for
 from patterns.geometry import Gauge, GaugeError, LengthError, StrandLength
-from patterns.knots import DiagonalPattern
+from patterns.techniques import Pattern, strand_table
 
 
 @dataclass(frozen=True)
@@ -86,7 +86,7 @@ class NoAnswer(ValueError):
 
 
 def answer_for(
-    pattern: DiagonalPattern,
+    pattern: Pattern,
     knotted_length_mm: int,
     gauge: Gauge,
     ending: Ending,
@@ -108,15 +108,15 @@ def answer_for(
         When the finish cannot be met or a length is out of range.
     """
     try:
-        table = geometry.strand_table(pattern, knotted_length_mm, gauge)
+        table = strand_table(pattern, knotted_length_mm, gauge, rule.join_tail_mm)
         pieces = pieces_for(table, ending, rule)
     except (LengthError, GaugeError, EndingError) as error:
         raise NoAnswer(str(error)) from error
     return StrandAnswer(
         rows=table.rows,
         repeat_rows=len(pattern.rows),
-        band_length_mm=round(geometry.band_length_mm(table.rows, gauge)),
-        band_width_mm=round(geometry.band_width_mm(pattern.strands, gauge)),
+        band_length_mm=round(table.band_length_mm),
+        band_width_mm=round(table.band_width_mm),
         strands=tuple(
             StrandLine(strand, working.knotted_working(strand, gauge)) for strand in table.strands
         ),

@@ -11,9 +11,9 @@ from inventory.models import Shade
 from inventory.page_helpers import say_with_undo
 from patterns.actions import LibraryError, set_colourway
 from patterns.forms import ColourwayForm
-from patterns.knots import DiagonalPattern
 from patterns.models import Colourway, Pattern
 from patterns.pictures import thumbnail
+from patterns.techniques import Pattern as PatternCore
 from patterns.views._shared import note_refusal, posted, removed, render_either
 
 
@@ -64,7 +64,7 @@ def _initial(colourway: Colourway | None) -> dict[str, object]:
     return {"name": colourway.name} | {f"slot_{slot}": shade.pk for slot, shade in shades.items()}
 
 
-def _picture(definition: DiagonalPattern, form: ColourwayForm) -> str:
+def _picture(definition: PatternCore, form: ColourwayForm) -> str:
     chosen = form.chosen
     colours = {slot: shade.colour for slot, shade in chosen.items()}
     words = ", ".join(f"{slot} {shade}" for slot, shade in chosen.items())

@@ -17,6 +17,7 @@ from patterns.models import KnottedLength, Pattern
 from patterns.pattern_file import written_rows
 from patterns.pictures import MOST_PICTURE_ROWS, band_picture
 from patterns.strand_answer import NoAnswer, answer_for
+from patterns.techniques import Pattern as PatternCore
 from patterns.views._shared import note_refusal, posted, removed, render_either, why_not_removed
 
 
@@ -30,18 +31,27 @@ def pattern_detail(request: HttpRequest, pk: int) -> HttpResponse:
         "pattern": pattern,
         "choice": choice,
         "written_rows": written_rows(definition),
-        "slots": sorted(set(definition.slots)),
-        "colour_repeats": colour_order(definition),
-        "strand_repeats": order_of_repeat(definition),
+        "slots": definition.used_slots,
         "colourways": colourways,
         "can_order": any(not missing for _, missing in colourways),
         "has_shades": Shade.objects.exists(),
-    } | _strands(pattern, definition, choice)
+    }
+    context |= _orders(definition) | _strands(pattern, definition, choice)
     return render_either(request, "patterns/pattern_detail.html", "patterns/_strands.html", context)
 
 
+def _orders(definition: PatternCore) -> dict[str, int]:
+    """Only the strands of diagonal patterns change places."""
+    if not isinstance(definition, DiagonalPattern):
+        return {}
+    return {
+        "colour_repeats": colour_order(definition),
+        "strand_repeats": order_of_repeat(definition),
+    }
+
+
 def _strands(
-    pattern: Pattern, definition: DiagonalPattern, choice: StrandChoiceForm
+    pattern: Pattern, definition: PatternCore, choice: StrandChoiceForm
 ) -> dict[str, object]:
     """Everything that changes with the choice; `why_not` says why there is no answer."""
     if not choice.is_valid():
@@ -72,7 +82,7 @@ def _strands(
     }
 
 
-def _picture(definition: DiagonalPattern, rows: int, shades: dict[str, Shade]) -> SafeString:
+def _picture(definition: PatternCore, rows: int, shades: dict[str, Shade]) -> SafeString:
     colours = {slot: shade.colour for slot, shade in shades.items()}
     title = f"{definition.name}, {rows} rows, the start at the left"
     # The drawing escapes its title; everything else in it is numbers and colours.

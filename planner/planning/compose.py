@@ -81,7 +81,7 @@ def _kind(exploded: ExplodedKind, names: Mapping[int, ShadeName]) -> SnapshotKin
         ending_name=kind.ending.name,
         knotted_length_mm=kind.knotted_length_mm,
         rows=exploded.table.rows,
-        band_width_mm=exploded.band_width_mm,
+        band_width_mm=exploded.table.band_width_mm,
         colours={slot: shade.colour for slot, shade in shades.items()},
         pieces=tuple(
             SnapshotPiece(
@@ -90,7 +90,10 @@ def _kind(exploded: ExplodedKind, names: Mapping[int, ShadeName]) -> SnapshotKin
                 strands=piece.strands,
                 cut_mm=piece.cut_mm,
                 fold_mm=piece.fold_mm,
-                is_sliding=piece.is_sliding,
+                role=piece.role,
+                label=piece.label,
+                short_label=piece.short_label,
+                fold_from=piece.labels[0] if piece.labels else "",
             )
             for piece in exploded.pieces
         ),
@@ -103,6 +106,8 @@ def _making(exploded: ExplodedKind, shades: Mapping[str, ShadeName]) -> dict[str
     kind = exploded.kind
     return {
         "shades": {slot: asdict(shade) for slot, shade in shades.items()},
+        "band_length_mm": exploded.table.band_length_mm,
+        "join_tail_mm": kind.rule.join_tail_mm,
         "strands": [asdict(strand) for strand in exploded.table.strands],
         "gauge": asdict(kind.gauge),
         "ending": asdict(kind.ending),

@@ -5,8 +5,8 @@ from dataclasses import dataclass
 from datetime import date
 
 from patterns.cut_lengths import CutRule, Ending, Piece, pieces_for
-from patterns.geometry import Gauge, StrandTable, band_width_mm, strand_table
-from patterns.knots import DiagonalPattern
+from patterns.geometry import Gauge, StrandTable
+from patterns.techniques import Pattern, strand_table
 
 
 @dataclass(frozen=True)
@@ -30,7 +30,7 @@ class Kind:
     knotted_length_mm : length of the band [mm].
     """
 
-    pattern: DiagonalPattern
+    pattern: Pattern
     pattern_text: str
     colourway_name: str
     size_name: str
@@ -62,7 +62,6 @@ class ExplodedKind:
     kind: Kind
     table: StrandTable
     pieces: tuple[Piece, ...]
-    band_width_mm: float
 
     @property
     def shade_by_slot(self) -> Mapping[str, int]:
@@ -96,13 +95,8 @@ def explode_kind(kind: Kind) -> ExplodedKind:
     patterns.geometry.LengthError
         When the pattern cannot be ended at this length.
     """
-    table = strand_table(kind.pattern, kind.knotted_length_mm, kind.gauge)
-    return ExplodedKind(
-        kind=kind,
-        table=table,
-        pieces=pieces_for(table, kind.ending, kind.rule),
-        band_width_mm=band_width_mm(kind.pattern.strands, kind.gauge),
-    )
+    table = strand_table(kind.pattern, kind.knotted_length_mm, kind.gauge, kind.rule.join_tail_mm)
+    return ExplodedKind(kind=kind, table=table, pieces=pieces_for(table, kind.ending, kind.rule))
 
 
 def explode(orders: tuple[Order, ...]) -> tuple[tuple[ExplodedKind, ...], tuple[Bracelet, ...]]:

@@ -5,8 +5,9 @@ from collections.abc import Callable
 from datetime import date
 from decimal import Decimal
 
-from patterns.drawing import Drawing, draw_band
+from patterns.drawing import draw_band
 from patterns.pattern_file import read_pattern
+from patterns.shapes import Drawing
 from planner.planning.snapshot import Snapshot, SnapshotKind, SnapshotShade, SnapshotStock
 from planner.planning.wording import proof_of_shade
 from planner.sheets.contents import (
@@ -90,11 +91,10 @@ def cutting_sheet(snapshot: Snapshot) -> CuttingSheet:
         piece = snapshot.kinds[kind_of[tag_number]].pieces[piece_index]
         return SheetCut(
             tag_number=tag_number,
-            strands=piece.strands,
+            label=piece.short_label if piece.role in ("strand", "base") else piece.label,
             slot=piece.slot,
             cut_mm=piece.cut_mm,
             fold_mm=piece.fold_mm,
-            is_sliding=piece.is_sliding,
         )
 
     return CuttingSheet(
@@ -164,14 +164,13 @@ def _code_text(key: int | None, number: int, address: str) -> str:
 def _tag_pieces(kind: SnapshotKind, shades: dict[str, SnapshotShade]) -> tuple[TagPiece, ...]:
     return tuple(
         TagPiece(
-            strands=piece.strands,
+            label=piece.short_label,
             slot=piece.slot,
             shade_code=piece.shade_code,
             shade_name=shades[piece.shade_code].name,
             shade_colour=shades[piece.shade_code].colour,
             cut_mm=piece.cut_mm,
             fold_mm=piece.fold_mm,
-            is_sliding=piece.is_sliding,
         )
         for piece in kind.pieces
     )

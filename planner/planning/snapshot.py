@@ -5,8 +5,6 @@ from datetime import date
 from decimal import Decimal
 from typing import Any
 
-from patterns.geometry import Gauge, band_length_mm
-
 
 @dataclass(frozen=True)
 class Habits:
@@ -24,14 +22,17 @@ class Habits:
 
 @dataclass(frozen=True)
 class SnapshotPiece:
-    """A piece of a kind, in the order of the kind's pieces."""
+    """A piece of a kind, in the order of the kind's pieces; `fold_from` names the fold's end."""
 
     slot: str
     shade_code: str
     strands: tuple[int, ...]
     cut_mm: int
     fold_mm: int | None
-    is_sliding: bool
+    role: str
+    label: str
+    short_label: str
+    fold_from: str
 
 
 @dataclass(frozen=True)
@@ -54,7 +55,7 @@ class SnapshotKind:
     @property
     def band_length_mm(self) -> int:
         """What the rows measure; a pattern that ends on whole repeats may miss the length asked."""
-        return round(band_length_mm(self.rows, Gauge(**self.making["gauge"])))
+        return round(float(self.making["band_length_mm"]))
 
 
 @dataclass(frozen=True)

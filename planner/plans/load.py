@@ -12,8 +12,9 @@ from inventory.models import PutUp, Shade, ShelfPiece, Workshop
 from patterns.actions import cut_rule
 from patterns.geometry import Gauge as GaugeCore
 from patterns.geometry import LengthError, rows_for
-from patterns.knots import DiagonalPattern
+from patterns.grid import GridPattern
 from patterns.models import Gauge, KnottedLength
+from patterns.techniques import Pattern
 from planner.models import OrderLine
 from planner.planning.demand import Kind, Order, ShadeName
 from planner.planning.netting import ShelfThread, ThreadOffer, reckoned_length
@@ -108,7 +109,7 @@ def _attach_colourways(lines: Sequence[OrderLine]) -> None:
 def _order(
     row: int,
     line: OrderLine,
-    pattern: DiagonalPattern,
+    pattern: Pattern,
     workshop: Workshop,
     gauge: GaugeCore,
     lengths: dict[tuple[int, int], int],
@@ -119,7 +120,7 @@ def _order(
             f"{line.size} has no knotted length for {line.ending}. Give it one under Sizes."
         )
     shades = {choice.slot: choice.shade_id for choice in line.colourway.shades.all()}
-    missing = sorted(set(pattern.slots) - set(shades))
+    missing = sorted(set(pattern.used_slots) - set(shades))
     if missing:
         raise LineProblem(
             f"the colourway {line.colourway} of {line.pattern} has no shade for "
@@ -133,7 +134,7 @@ def _order(
         size_name=line.size.name,
         is_child=line.size.is_child,
         has_metal_or_button=line.ending.has_metal_or_button,
-        shades=tuple(sorted((slot, shades[slot]) for slot in set(pattern.slots))),
+        shades=tuple((slot, shades[slot]) for slot in pattern.used_slots),
         knotted_length_mm=knotted_length_mm,
         gauge=gauge,
         ending=line.ending.as_core(),
@@ -153,7 +154,7 @@ def orders_stamp(orders: Sequence[Order]) -> str:
 def _values_of_kind(kind: Kind) -> list[object]:
     """Named one by one, so that a field the code gains does not make every old plan look stale."""
     ending = asdict(kind.ending)
-    return [
+    values: list[object] = [
         kind.pattern_text,
         kind.colourway_name,
         kind.size_name,
@@ -165,6 +166,9 @@ def _values_of_kind(kind: Kind) -> list[object]:
         [[name, ending[name]] for name in ENDING_VALUES],
         [kind.rule.safety_share, str(kind.rule.rounding_step_mm)],
     ]
+    if isinstance(kind.pattern, GridPattern):
+        values.append(kind.rule.join_tail_mm)
+    return values
 
 
 def load_shelf(shade_ids: Iterable[int], workshop: Workshop) -> LoadedShelf:

@@ -8,9 +8,10 @@ from django.db.models import Count
 from django.utils import timezone
 
 from inventory.models import Workshop
-from patterns.geometry import Gauge
+from patterns.geometry import Gauge, StrandLength
 from patterns.pattern_file import read_pattern
 from patterns.pictures import band_picture
+from patterns.working import knotted_working
 from planner.models import Plan, PlanBracelet, PlanShade, PlanStock
 from planner.planning.snapshot import SnapshotPiece
 from planner.planning.wording import bought_words, proof_of_plan, proof_of_shade
@@ -161,13 +162,14 @@ def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
     kind = read_kind(bracelet.kind)
     making = kind.making
     gauge = Gauge(**making["gauge"])
-    strands = {strand["strand"]: strand for strand in making["strands"]}
+    strands = [StrandLength(**strand) for strand in making["strands"]]
+    workings = {strand.strand: (strand.label, knotted_working(strand, gauge)) for strand in strands}
     pieces = [
         {
             "piece": kind.pieces[row.index],
             "shade": row.shade,
             "stock": row.stock,
-            "strands": [strands[number] for number in kind.pieces[row.index].strands],
+            "workings": [workings[number] for number in kind.pieces[row.index].strands],
             "ends_mm": making["ends_mm"][row.index],
         }
         for row in bracelet.pieces.all()
@@ -178,7 +180,6 @@ def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
         "bracelet": bracelet,
         "kind": kind,
         "pieces": pieces,
-        "gauge": gauge,
         "safety_share": making["safety_share"],
         "rounding_step_mm": making["rounding_step_mm"],
         "drawing": band_picture(

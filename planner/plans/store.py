@@ -5,6 +5,7 @@ from dataclasses import asdict
 from decimal import Decimal
 from typing import Any
 
+from patterns.geometry import Gauge, band_length_mm
 from planner.models import (
     Batch,
     Plan,
@@ -221,6 +222,8 @@ def read_kind(row: PlanKind) -> SnapshotKind:
     making = dict(row.making)
     pieces = making.pop("pieces")
     colours = making.pop("colours")
+    if "band_length_mm" not in making:  # plans of the first release
+        making["band_length_mm"] = band_length_mm(row.rows, Gauge(**making["gauge"]))
     return SnapshotKind(
         pattern_name=row.pattern_name,
         pattern_text=row.pattern_text,
@@ -231,12 +234,27 @@ def read_kind(row: PlanKind) -> SnapshotKind:
         rows=row.rows,
         band_width_mm=row.band_width_mm,
         colours=colours,
-        pieces=tuple(
-            SnapshotPiece(**{**piece, "strands": tuple(piece["strands"])}) for piece in pieces
-        ),
+        pieces=tuple(_read_piece(piece) for piece in pieces),
         making=making,
         cautions=tuple(row.cautions),
     )
+
+
+def _read_piece(piece: dict[str, Any]) -> SnapshotPiece:
+    """Plans of the first release named a piece by its strands alone."""
+    strands = tuple(piece["strands"])
+    if "label" not in piece:
+        is_sliding = piece.pop("is_sliding")
+        numbers = " and ".join(str(strand) for strand in strands)
+        piece |= {
+            "role": "sliding" if is_sliding else "strand",
+            "label": "sliding piece"
+            if is_sliding
+            else f"strand{'s'[: len(strands) - 1]} {numbers}",
+            "short_label": "slide" if is_sliding else " + ".join(map(str, strands)),
+            "fold_from": f"strand {strands[0]}" if strands else "",
+        }
+    return SnapshotPiece(**{**piece, "strands": strands})
 
 
 def _read_shades(plan: Plan, number_of: dict[int, int]) -> tuple[SnapshotShade, ...]:

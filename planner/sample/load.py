@@ -96,7 +96,7 @@ def _add_patterns(shades: dict[str, Shade]) -> None:
     patterns = {pattern.name: pattern for pattern in added}
     for row in _read("colourways.toml")["colourway"]:
         pattern = patterns[row["pattern"]]
-        slots = sorted(set(pattern.definition.slots))
+        slots = pattern.definition.used_slots
         chosen = [shades[code] for code in row["shades"].split()]
         set_colourway(
             pattern=pattern, name=row["name"], shades=dict(zip(slots, chosen, strict=True))

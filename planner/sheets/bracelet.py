@@ -6,8 +6,8 @@ All coordinates are points, except a drawing's own.
 from reportlab.lib.colors import Color
 from reportlab.pdfgen.canvas import Canvas
 
-from patterns.colours import ColourError
-from patterns.drawing import OUTLINE_WIDTH, Drawing, Line, Square, working_colours
+from patterns.colours import ColourError, working_colours
+from patterns.shapes import OUTLINE_WIDTH, Drawing, Knotted, Line
 from planner.sheets.pen import thread_colour
 
 # Room around the ground for half an outline, in the drawing's own unit.
@@ -38,7 +38,7 @@ def draw_shapes(canvas: Canvas, drawing: Drawing) -> None:
     because knots of a band do not overlap, and is far smaller.
     """
     threads: dict[str, list[Line]] = {}
-    knots: dict[str, list[Square]] = {}
+    knots: dict[str, list[Knotted]] = {}
     for shape in drawing.shapes:
         if isinstance(shape, Line):
             threads.setdefault(shape.colour, []).append(shape)
@@ -47,8 +47,8 @@ def draw_shapes(canvas: Canvas, drawing: Drawing) -> None:
     canvas.setLineJoin(1)
     for colour, lines in threads.items():
         _draw_threads(canvas, colour, lines, drawing.height)
-    for colour, squares in knots.items():
-        _draw_knots(canvas, colour, squares, drawing.height)
+    for colour, same_colour in knots.items():
+        _draw_knots(canvas, colour, same_colour, drawing.height)
 
 
 def _draw_threads(canvas: Canvas, colour: str, lines: list[Line], ground_height: float) -> None:
@@ -66,14 +66,13 @@ def _draw_threads(canvas: Canvas, colour: str, lines: list[Line], ground_height:
         canvas.drawPath(path, stroke=1, fill=0)
 
 
-def _draw_knots(canvas: Canvas, colour: str, squares: list[Square], ground_height: float) -> None:
+def _draw_knots(canvas: Canvas, colour: str, knots: list[Knotted], ground_height: float) -> None:
     path = canvas.beginPath()
-    for square in squares:
-        cx, cy, half = square.cx, ground_height - square.cy, square.half
-        path.moveTo(cx - half, cy)
-        path.lineTo(cx, cy + half)
-        path.lineTo(cx + half, cy)
-        path.lineTo(cx, cy - half)
+    for knot in knots:
+        first, *others = knot.corners
+        path.moveTo(first[0], ground_height - first[1])
+        for x, y in others:
+            path.lineTo(x, ground_height - y)
         path.close()
     canvas.setFillColor(thread_colour(colour))
     canvas.setStrokeColor(_outline_of(colour))

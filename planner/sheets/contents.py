@@ -4,7 +4,7 @@ from dataclasses import dataclass
 from datetime import date
 from decimal import Decimal
 
-from patterns.drawing import Drawing
+from patterns.shapes import Drawing
 
 
 @dataclass(frozen=True)
@@ -55,14 +55,13 @@ class PurchaseSheet:
 
 @dataclass(frozen=True)
 class SheetCut:
-    """One piece on the cutting sheet: whose tag, which strands, how long, where to fold."""
+    """One piece on the cutting sheet: whose tag, which strands ("4 + 1"), how long, where to fold."""
 
     tag_number: int
-    strands: tuple[int, ...]
+    label: str
     slot: str
     cut_mm: int
     fold_mm: int | None
-    is_sliding: bool = False
 
 
 @dataclass(frozen=True)
@@ -99,16 +98,15 @@ class CuttingSheet:
 
 @dataclass(frozen=True)
 class TagPiece:
-    """A piece as the tag shows it; two strands where the piece is folded."""
+    """A piece as the tag shows it; its label names two strands where the piece is folded."""
 
-    strands: tuple[int, ...]
+    label: str
     slot: str
     shade_code: str
     shade_name: str
     shade_colour: str
     cut_mm: int
     fold_mm: int | None
-    is_sliding: bool = False
 
 
 @dataclass(frozen=True)

@@ -244,7 +244,7 @@ class _StockBlock:
         pen.tick_box(x + 15, base - 1, 10)
         pen.figure(x + columns.cut, base, format_number(cut.cut_mm, self.unit), 12.5, font=STRONG)
         pen.text(x + columns.tag, base, str(cut.tag_number), 12.5, align="right")
-        strands = joined((_strand_words(cut), plain_text(cut.slot)), "  ")
+        strands = joined((cut.label, plain_text(cut.slot)), "  ")
         room = columns.width - columns.strands
         if cut.fold_mm is not None:
             room = columns.fold - columns.strands - 24
@@ -264,7 +264,3 @@ class _StockBlock:
         if self.stock.left_mm:
             pen.hatch(SIDE_PT + 15, y - 1, 10, 10, hatch_gap(self.stock))
         pen.text(SIDE_PT + 32, y, words, 11, font=STRONG if self.stock.goes_back else REGULAR)
-
-
-def _strand_words(cut: SheetCut) -> str:
-    return "sliding piece" if cut.is_sliding else " + ".join(str(strand) for strand in cut.strands)

@@ -45,13 +45,6 @@ class PieceColumns:
     folded: bool
 
 
-def strand_words(piece: TagPiece) -> str:
-    """Name a piece's strands: "3", "4 + 1", or that it is the sliding piece."""
-    if piece.is_sliding:
-        return "slide"
-    return " + ".join(str(strand) for strand in piece.strands)
-
-
 def columns_for(
     pieces: tuple[TagPiece, ...], unit: str, width: float, row_pt: float
 ) -> PieceColumns:
@@ -71,7 +64,7 @@ def columns_for(
     size = min(_MOST_SIZE_PT, row_pt * _SIZE_SHARE)
     cuts = [format_number(piece.cut_mm, unit) for piece in pieces]
     folds = [format_number(piece.fold_mm, unit) for piece in pieces if piece.fold_mm is not None]
-    strands = _widest((strand_words(piece) for piece in pieces), REGULAR, size)
+    strands = _widest((piece.label for piece in pieces), REGULAR, size)
     codes = _widest((printable(piece.shade_code) for piece in pieces), STRONG, size)
     strand = size * 1.24 + 4
     code = strand + min(max(strands, 22.0), size * 5) + 6

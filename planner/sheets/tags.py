@@ -13,7 +13,7 @@ from planner.sheets.fonts import REGULAR, STRONG, printable
 from planner.sheets.pages import draw_foot
 from planner.sheets.paper import Paper, paper_named
 from planner.sheets.pen import INK, MADDER, QUIET, RULE, Pen
-from planner.sheets.piece_columns import PieceColumns, columns_for, strand_words
+from planner.sheets.piece_columns import PieceColumns, columns_for
 from planner.sheets.tag_layouts import (
     FINISH_PT,
     LEAST_ROW_PT,
@@ -235,7 +235,7 @@ class _TagDrawing:
         letter = plain_text(piece.slot)
         pen.knot(x + size * 0.62, base + size * 0.32, half, piece.shade_colour, letter, STRONG)
         room = columns.code - columns.strand - 3
-        pen.text(x + columns.strand, base, strand_words(piece), size, room=room)
+        pen.text(x + columns.strand, base, piece.label, size, room=room)
         room = columns.name - columns.code - 3
         pen.text(x + columns.code, base, piece.shade_code, size, font=STRONG, room=room)
         pen.text(x + columns.name, base, piece.shade_name, size, room=columns.name_room)

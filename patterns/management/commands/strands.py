@@ -2,15 +2,17 @@
 
 import json
 from argparse import ArgumentParser
+from dataclasses import replace
 from fractions import Fraction
 from pathlib import Path
 from typing import Any
 
 from inventory.measures import MeasureError, parse_decimal, parse_length
 from inventory.shell import Error, OneLineCommand, read_file
-from patterns.geometry import Gauge, GaugeError, LengthError, StrandTable, strand_table
-from patterns.knots import DiagonalPattern, Finish, PatternError
+from patterns.geometry import Gauge, GaugeError, LengthError, StrandLength, StrandTable
+from patterns.knots import Finish, PatternError
 from patterns.pattern_file import MAX_FILE_BYTES, read_pattern
+from patterns.techniques import Pattern, strand_table
 
 
 class Command(OneLineCommand):
@@ -54,10 +56,10 @@ def _read_text(path: Path) -> str:
         raise Error(f"{shown} is not a text file in UTF-8.") from error
 
 
-def _with_finish(pattern: DiagonalPattern, options: dict[str, Any]) -> DiagonalPattern:
+def _with_finish(pattern: Pattern, options: dict[str, Any]) -> Pattern:
     if options["finish"] is None:
         return pattern
-    return DiagonalPattern(pattern.name, pattern.slots, pattern.rows, Finish(options["finish"]))
+    return replace(pattern, finish=Finish(options["finish"]))
 
 
 def _gauge(options: dict[str, Any]) -> Gauge:
@@ -86,25 +88,39 @@ def _number(option: str, text: str) -> float:
 
 
 def _as_json(table: StrandTable) -> str:
-    strands = [
-        {
-            "strand": strand.strand,
-            "slot": strand.slot,
-            "tied": strand.tied,
-            "base": strand.base,
-            "idle": strand.idle,
-            "knotted_mm": round(strand.knotted_mm, 1),
-        }
-        for strand in table.strands
-    ]
+    strands = [_values(strand) for strand in table.strands]
     return json.dumps({"rows": table.rows, "strands": strands})
 
 
+def _values(strand: StrandLength) -> dict[str, object]:
+    values: dict[str, object] = {
+        "strand": strand.strand,
+        "slot": strand.slot,
+        "tied": strand.tied,
+        "base": strand.base,
+        "idle": strand.idle,
+        "knotted_mm": round(strand.knotted_mm, 1),
+    }
+    if strand.role != "strand":
+        values |= {"role": strand.role, "passed": strand.passed, "turned": strand.turned}
+    if strand.role == "run":
+        values |= {"first_row": strand.first_row, "last_row": strand.last_row}
+    return values
+
+
 def _as_table(table: StrandTable) -> str:
-    lines = [f"{table.rows} rows", "strand  slot  tied  base  idle  knotted mm"]
-    lines += [
+    is_grid = any(strand.role != "strand" for strand in table.strands)
+    header = "strand  slot  tied  base  idle  knotted mm"
+    lines = [f"{table.rows} rows", header + ("  passed  turned  what it is" if is_grid else "")]
+    lines += [_line(strand) for strand in table.strands]
+    return "\n".join(lines)
+
+
+def _line(strand: StrandLength) -> str:
+    line = (
         f"{strand.strand:6}  {strand.slot:>4}  {strand.tied:4}  {strand.base:4}"
         f"  {strand.idle:4}  {strand.knotted_mm:10.1f}"
-        for strand in table.strands
-    ]
-    return "\n".join(lines)
+    )
+    if strand.role == "strand":
+        return line
+    return f"{line}  {strand.passed:6}  {strand.turned:6}  {strand.label}"

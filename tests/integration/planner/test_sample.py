@@ -15,7 +15,8 @@ from django.urls import reverse
 
 from inventory.models import Lot, PutUp, Shade, ShelfPiece, Supplier, Workshop
 from patterns.actions import missing_slots
-from patterns.geometry import Gauge, StrandTable, strand_table
+from patterns.geometry import Gauge, StrandTable
+from patterns.techniques import strand_table
 from patterns.knots import Knot
 from patterns.models import Colourway, KnottedLength, Pattern
 from patterns.pattern_file import read_pattern, write_pattern

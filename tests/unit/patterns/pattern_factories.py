@@ -2,7 +2,10 @@
 
 from hypothesis import strategies as st
 
+from patterns.grid import Carry, GridPattern
 from patterns.knots import SLOT_LETTERS, DiagonalPattern, Finish, Knot, knots_in_row
+
+DIAGONAL_FINISHES = [finish for finish in Finish if finish is not Finish.CENTRED]
 
 
 def make_pattern(rows, slots=None, finish=Finish.EXACT, name="Test"):
@@ -30,4 +33,18 @@ def patterns(draw, min_strands=2, max_strands=16, max_double_rows=5, names=None)
         for count in (knots_in_row(strands, row) for row in range(1, row_count + 1))
     )
     name = draw(names) if names is not None else "Test"
-    return DiagonalPattern(name, tuple(slots), rows, draw(st.sampled_from(Finish)))
+    return DiagonalPattern(name, tuple(slots), rows, draw(st.sampled_from(DIAGONAL_FINISHES)))
+
+
+@st.composite
+def grid_patterns(draw, max_columns=12, max_rows=16, names=None):
+    columns = draw(st.integers(2, max_columns))
+    cells = st.lists(st.sampled_from("ABCZ"), min_size=columns, max_size=columns)
+    rows = draw(st.lists(cells.map(tuple), min_size=1, max_size=max_rows))
+    return GridPattern(
+        name=draw(names) if names is not None else "Test",
+        background=draw(st.sampled_from("AB")),
+        rows=tuple(rows),
+        finish=draw(st.sampled_from(Finish)),
+        carry=draw(st.sampled_from(Carry)),
+    )

@@ -8,7 +8,8 @@ from pattern_factories import all_same
 
 from inventory.measures import format_length, parse_length
 from patterns.cut_lengths import CutRule, Ending, EndingError, pieces_for
-from patterns.geometry import Gauge, StrandLength, StrandTable, strand_table
+from patterns.geometry import Gauge, StrandLength, StrandTable
+from patterns.techniques import strand_table
 
 PLAITED = {
     "name": "Plaited",
@@ -36,6 +37,8 @@ def table_of(*strands):
             StrandLength(number, slot, 0, 0, 0, float(knotted_mm))
             for number, (slot, knotted_mm) in enumerate(strands, start=1)
         ),
+        band_length_mm=150,
+        band_width_mm=8,
     )
 
 
@@ -163,13 +166,13 @@ def test_pieces_for_sliding_closure_adds_a_piece_of_strand_one():
     pieces = pieces_for(table_of(("C", 500), ("A", 500)), ending, METRIC)
     assert len(pieces) == 3
     sliding = pieces[-1]
-    assert (sliding.slot, sliding.strands, sliding.cut_mm, sliding.is_sliding) == (
+    assert (sliding.slot, sliding.strands, sliding.cut_mm, sliding.role) == (
         "C",
         (),
         400,
-        True,
+        "sliding",
     )
-    assert not any(piece.is_sliding for piece in pieces[:-1])
+    assert not any(piece.role == "sliding" for piece in pieces[:-1])
 
 
 @pytest.mark.parametrize(
@@ -236,7 +239,7 @@ def test_pieces_for_cuts_each_strand_once_from_its_slot(table, ending, rule):
     assert all(slots[strand] == piece.slot for piece in pieces for strand in piece.strands)
     leftmost = [min(piece.strands) for piece in pieces if piece.strands]
     assert leftmost == sorted(leftmost)
-    assert sum(piece.is_sliding for piece in pieces) == (ending.sliding_piece_mm > 0)
+    assert sum(piece.role == "sliding" for piece in pieces) == (ending.sliding_piece_mm > 0)
 
 
 @given(tables, endings, rules)
@@ -254,7 +257,7 @@ def test_pieces_for_folds_leave_both_strands_enough(table, ending, rule):
 
 @given(tables, endings, rules)
 def test_pieces_for_folds_all_it_can(table, ending, rule):
-    pieces = [piece for piece in pieces_for(table, ending, rule) if not piece.is_sliding]
+    pieces = [piece for piece in pieces_for(table, ending, rule) if piece.role != "sliding"]
     single_slots = [piece.slot for piece in pieces if len(piece.strands) == 1]
     if ending.start == "straight":
         assert len(single_slots) == len(table.strands)

@@ -5,18 +5,11 @@ from hypothesis import given
 from hypothesis import strategies as st
 from pattern_factories import all_same, make_pattern, patterns
 
-from patterns.colours import ColourError
-from patterns.drawing import (
-    LOOSE_END,
-    MARGIN,
-    DrawingError,
-    Line,
-    Square,
-    draw_band,
-    to_svg,
-    working_colours,
-)
+from patterns.colours import ColourError, working_colours
+from patterns.drawing import draw_band
 from patterns.knots import mirrored, order_after, tie_rows
+from patterns.shapes import LOOSE_END, MARGIN, DrawingError, Line, Square
+from patterns.svg import to_svg
 
 SVG = "{http://www.w3.org/2000/svg}"
 COLOURS = {

@@ -4,7 +4,7 @@ from statistics import mean
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
-from pattern_factories import all_same, make_pattern, patterns
+from pattern_factories import DIAGONAL_FINISHES, all_same, make_pattern, patterns
 
 from patterns.geometry import (
     MAX_ROWS,
@@ -13,8 +13,8 @@ from patterns.geometry import (
     LengthError,
     band_length_mm,
     band_width_mm,
+    diagonal_table,
     rows_for,
-    strand_table,
 )
 from patterns.knots import DiagonalPattern, Finish
 
@@ -142,7 +142,7 @@ def test_rows_for_length_refused(length_mm):
         rows_for(all_same(4), length_mm, Gauge())
 
 
-@pytest.mark.parametrize("finish", Finish)
+@pytest.mark.parametrize("finish", DIAGONAL_FINISHES)
 def test_rows_for_too_many_rows(finish):
     with pytest.raises(LengthError, match=f"{MAX_ROWS} is the most"):
         rows_for(with_finish(all_same(4), finish), 5000, Gauge(0.1))
@@ -168,7 +168,7 @@ def test_band_measures():
 
 @pytest.mark.parametrize(
     ("strands", "without_cm", "with_cm"),
-    # Derived: see the Notes of `strand_table` in patterns/geometry.py; these figures were worked
+    # Derived: see the Notes of `diagonal_table` in patterns/geometry.py; these figures were worked
     # out of that formula with sympy, without / with idle runs.
     [
         (4, 53.397, 57.147),
@@ -182,53 +182,53 @@ def test_band_measures():
 )
 @pytest.mark.parametrize("diameter_mm", EXACT_DIAMETERS_MM)
 @pytest.mark.parametrize("knot", ["f", "bf"])
-def test_strand_table_mean_strand(strands, without_cm, with_cm, diameter_mm, knot):
+def test_diagonal_table_mean_strand(strands, without_cm, with_cm, diameter_mm, knot):
     pattern = all_same(strands, knot)
     for idle_run, expected_cm in ((0, without_cm), (sqrt(2), with_cm)):
-        table = strand_table(pattern, 150, Gauge(diameter_mm, idle_run=idle_run))
+        table = diagonal_table(pattern, 150, Gauge(diameter_mm, idle_run=idle_run))
         mean_mm = mean(strand.knotted_mm for strand in table.strands)
         assert mean_mm / 10 == pytest.approx(expected_cm, abs=6e-4)
 
 
 @given(patterns(max_strands=20).filter(lambda p: p.strands % 2 == 0))
-def test_strand_table_mean_strand_is_the_closed_form(pattern):
-    # Derived: see the Notes of `strand_table` in patterns/geometry.py; idle run 0, loop ratio 1.5.
+def test_diagonal_table_mean_strand_is_the_closed_form(pattern):
+    # Derived: see the Notes of `diagonal_table` in patterns/geometry.py; idle run 0, loop ratio 1.5.
     pattern = with_finish(pattern, Finish.EXACT)
-    table = strand_table(pattern, 150, Gauge(EXACT_DIAMETERS_MM[0], idle_run=0))
+    table = diagonal_table(pattern, 150, Gauge(EXACT_DIAMETERS_MM[0], idle_run=0))
     strands = pattern.strands
     closed_mm = 150 * (4 + 3 * pi) / sqrt(2) * (strands - 1) / (2 * strands)
     assert mean(strand.knotted_mm for strand in table.strands) == pytest.approx(closed_mm)
 
 
-def test_strand_table_six_strand_stripe():
+def test_diagonal_table_six_strand_stripe():
     # Common practice, no source: about 0.6 m a strand before ends, idle run 0.
-    table = strand_table(all_same(6), 150, Gauge(0.9, idle_run=0))
+    table = diagonal_table(all_same(6), 150, Gauge(0.9, idle_run=0))
     assert all(0.57 < strand.knotted_mm / 1000 < 0.63 for strand in table.strands)
 
 
-def test_strand_table_by_hand():
+def test_diagonal_table_by_hand():
     # 118 rows of six forward strands: strand 1 ties 5 and is base in 5 of every 12 rows and
     # idle in 2; 9 times, and 5, 4 and 1 in the last 10 rows. 50 x 10.28230 + 49 x 1.8
     # + 19 x 1.27279 = 514.115 + 88.2 + 24.183 mm.
-    strand = strand_table(all_same(6), 150, Gauge(0.9)).strands[0]
+    strand = diagonal_table(all_same(6), 150, Gauge(0.9)).strands[0]
     assert (strand.tied, strand.base, strand.idle) == (50, 49, 19)
     assert strand.knotted_mm == pytest.approx(626.498, abs=1e-3)
 
 
-def test_strand_table_base_strand_at_the_edge():
+def test_diagonal_table_base_strand_at_the_edge():
     # By hand: base in 59 of 118 rows is 59 x 1.8 = 106.2 mm, shorter than the 150 mm band, which
     # cannot be; 59 idle runs of 1.2728 mm more make 181.3 mm.
     pattern = make_pattern(["bf f f", "f f"])
-    bare = strand_table(pattern, 150, Gauge(0.9, idle_run=0)).strands[0]
-    full = strand_table(pattern, 150, Gauge(0.9)).strands[0]
+    bare = diagonal_table(pattern, 150, Gauge(0.9, idle_run=0)).strands[0]
+    full = diagonal_table(pattern, 150, Gauge(0.9)).strands[0]
     assert (full.tied, full.base, full.idle) == (0, 59, 59)
     assert bare.knotted_mm == pytest.approx(106, abs=0.5)
     assert full.knotted_mm == pytest.approx(181, abs=0.5)
 
 
 @given(patterns(), gauges, st.integers(150, 400))
-def test_strand_table_no_strand_shorter_than_the_band(pattern, gauge, length_mm):
-    table = strand_table(pattern, length_mm, gauge)
+def test_diagonal_table_no_strand_shorter_than_the_band(pattern, gauge, length_mm):
+    table = diagonal_table(pattern, length_mm, gauge)
     band_mm = band_length_mm(table.rows, gauge)
     assert all(strand.knotted_mm >= band_mm - 1e-6 for strand in table.strands)
     if pattern.finish in (Finish.EXACT, Finish.AT_LEAST):
@@ -236,10 +236,10 @@ def test_strand_table_no_strand_shorter_than_the_band(pattern, gauge, length_mm)
 
 
 @given(patterns(), gauges, st.integers(150, 400))
-def test_strand_table_idle_runs_make_the_length(pattern, gauge, length_mm):
+def test_diagonal_table_idle_runs_make_the_length(pattern, gauge, length_mm):
     # Derived: one strand sits out a row on average, for a straight sqrt 2 d, just what a row adds
     # to the band; so all idle runs together are exactly the length. With N even an odd last row has no idle strand yet, so there they are one row shorter.
-    table = strand_table(pattern, length_mm, gauge)
+    table = diagonal_table(pattern, length_mm, gauge)
     idle_mm = sum(strand.idle for strand in table.strands) * gauge.idle_mm
     missing = table.rows % 2 if pattern.strands % 2 == 0 else 0
     assert idle_mm == pytest.approx(band_length_mm(table.rows - missing, gauge))

@@ -5,7 +5,8 @@ from pattern_factories import all_same
 
 from patterns.cut_lengths import CutRule, pieces_for
 from patterns.defaults import BUTTONED_ENDINGS, DEFAULT_ENDINGS, DEFAULT_SIZES
-from patterns.geometry import Gauge, strand_table
+from patterns.geometry import Gauge
+from patterns.techniques import strand_table
 
 ENDINGS = {ending.name: ending for ending in DEFAULT_ENDINGS}
 ONE_FROM_95 = 1.645  # standard deviations, normal distribution

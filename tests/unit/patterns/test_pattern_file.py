@@ -95,7 +95,7 @@ def test_read_pattern_right_to_left_name():
         (
             "technique",
             "zzz",
-            "There is no setting 'zzz'. Use name, technique, strands, rows or finish.",
+            "There is no setting 'zzz'. Use name, technique, strands, rows, finish, background or carry.",
         ),
         (
             'technique = "diagonal"\n',
@@ -103,12 +103,12 @@ def test_read_pattern_right_to_left_name():
             "The file has no 'technique'. Add a line: technique = \"diagonal\"",
         ),
         ("diagonal", "diagnal", "There is no technique 'diagnal'. Did you mean diagonal?"),
-        ("diagonal", "grids", "There is no technique 'grids'. Use diagonal."),
-        ("diagonal", "", "There is no technique ''. Use diagonal."),
+        ("diagonal", "grids", "There is no technique 'grids'. Did you mean grid?"),
+        ("diagonal", "", "There is no technique ''. Use diagonal or grid."),
         (
             "diagonal",
             "Grid",
-            'Grid patterns cannot be planned yet. Use a diagonal pattern: technique = "diagonal"',
+            "A grid pattern has no 'strands'. Take that line out.",
         ),
         ('"Harbour stripes"', "7", "'name' has to be text in quotes"),
         ('"Harbour stripes"', '""', "The pattern has no name."),

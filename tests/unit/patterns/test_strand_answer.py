@@ -46,7 +46,7 @@ def test_answer_for_a_folded_start_pairs_strands():
 
 def test_answer_for_a_sliding_closure_counts_the_sliding_piece():
     found = answer(ending=SLIDING)
-    assert [line.piece.is_sliding for line in found.pieces].count(True) == 1
+    assert [line.piece.role for line in found.pieces].count("sliding") == 1
     assert found.slots[0].pieces == 3
 
 

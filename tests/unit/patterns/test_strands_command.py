@@ -135,7 +135,7 @@ def test_strands_bad_arguments(stripes, capsys, arguments, message):
         (b"name = 7", "has no 'technique'"),
         (STRIPES.replace("f f f", "f f x").encode(), "Row 1, knot 3: 'x' is not a knot"),
         (STRIPES.replace('"Stripes"', "7").encode(), "'name' has to be text"),
-        (STRIPES.replace("diagonal", "grid").encode(), "Grid patterns cannot be planned yet"),
+        (STRIPES.replace("diagonal", "grid").encode(), "A grid pattern has no 'strands'"),
         (STRIPES.encode("utf-16"), "not a text file in UTF-8"),
     ],
     ids=range(10),

@@ -7,8 +7,9 @@ import pytest
 
 from patterns.cut_lengths import CutRule, Ending, pieces_for
 from patterns.defaults import DEFAULT_ENDINGS
-from patterns.geometry import Gauge, StrandLength, StrandTable, strand_table
+from patterns.geometry import Gauge, StrandLength, StrandTable
 from patterns.pattern_file import read_pattern
+from patterns.techniques import strand_table
 from patterns.working import end_working, knotted_working, piece_working, start_working
 from tests.factories import pattern_text
 
@@ -64,7 +65,7 @@ def test_piece_working_ends_at_the_length_that_is_cut(ending: Ending, rule: CutR
 def test_piece_working_sums_can_be_redone(ending: Ending, rule: CutRule):
     table = strand_table(read_pattern(pattern_text(strands="A A A B C C")), 150, Gauge())
     for piece in pieces_for(table, ending, rule):
-        if piece.is_sliding:
+        if piece.role == "sliding":
             continue
         steps = piece_working(piece, ending, rule)
         first, second, total, step, cut = numbers(
@@ -78,7 +79,7 @@ def test_piece_working_sums_can_be_redone(ending: Ending, rule: CutRule):
 def test_piece_working_of_a_folded_pair_by_hand():
     ending = Ending("Fold", "folded", 0, 100, 1.25, 30, 90, 50, 80, 0)
     table = StrandTable(
-        1, (StrandLength(1, "A", 0, 0, 0, 600.0), StrandLength(2, "A", 0, 0, 0, 500.0))
+        1, (StrandLength(1, "A", 0, 0, 0, 600.0), StrandLength(2, "A", 0, 0, 0, 500.0)), 1, 8
     )
     rule = CutRule(0.1, 10)
     # End: 100 x 1.25 + 30 + 90 = 245. 660 + 245 + 25 = 930; 550 + 245 + 25 = 820; 1750.

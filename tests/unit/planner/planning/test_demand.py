@@ -5,7 +5,8 @@ from datetime import date
 import pytest
 
 from patterns.cut_lengths import Ending
-from patterns.geometry import Gauge, LengthError, strand_table
+from patterns.geometry import Gauge, LengthError
+from patterns.techniques import strand_table
 from planner.planning.demand import Order, explode
 from tests.plain import make_kind
 

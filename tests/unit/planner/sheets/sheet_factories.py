@@ -4,8 +4,9 @@ from datetime import date
 from decimal import Decimal
 from functools import cache
 
-from patterns.drawing import Drawing, draw_band
+from patterns.drawing import draw_band
 from patterns.knots import DiagonalPattern, Finish, Knot
+from patterns.shapes import Drawing
 from planner.sheets.contents import (
     CuttingSheet,
     PurchaseRow,
@@ -53,7 +54,7 @@ def band(strands: int, rows: int = 118) -> Drawing:
 def piece(strands: tuple[int, ...], shade: int = 0, cut_mm: int = 1240, **changes) -> TagPiece:
     code, name, colour = SHADES[shade % len(SHADES)]
     fields = {
-        "strands": strands,
+        "label": " + ".join(str(strand) for strand in strands),
         "slot": "ABCDEF"[shade % 6],
         "shade_code": code,
         "shade_name": name,
@@ -103,6 +104,10 @@ def tag_sheet(*tags: Tag, unit: str = "cm") -> TagSheet:
     return TagSheet(HEAD, unit, tags)
 
 
+def _label(place: int) -> str:
+    return f"{2 * place + 1} + {2 * place + 2}" if place % 2 else f"{place + 1}"
+
+
 def stock(
     first_tag: int, count: int, reckoned_mm: int = 7840, *, is_new: bool = True, **changes
 ) -> StockCut:
@@ -116,11 +121,10 @@ def stock(
         "cuts": tuple(
             SheetCut(
                 first_tag + place,
-                (2 * place + 1, 2 * place + 2) if place % 2 else (place + 1,),
+                "sliding piece" if place == 4 else _label(place),
                 "ABCDEF"[place % 6],
                 length,
                 length // 2 if place % 2 else None,
-                is_sliding=place == 4,
             )
             for place, length in enumerate(lengths)
         ),

@@ -8,7 +8,7 @@ import pytest
 from reportlab.pdfgen.canvas import Canvas
 from sheet_factories import band
 
-from patterns.drawing import Drawing, Line, Square
+from patterns.shapes import Drawing, Line, Square
 from planner.sheets.bracelet import draw_on_canvas, fitted_size
 
 

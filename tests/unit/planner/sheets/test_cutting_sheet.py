@@ -109,9 +109,7 @@ def test_fold_and_strands_stand_beside_the_cut():
 
 @PAPER_CASES
 def test_inches_keep_their_fractions_and_their_room(paper):
-    cuts = tuple(
-        SheetCut(1990 + n, (59, 60), "W", 8001 + n * 7, 4000 + n * 7, False) for n in range(6)
-    )
+    cuts = tuple(SheetCut(1990 + n, "59 + 60", "W", 8001 + n * 7, 4000 + n * 7) for n in range(6))
     piece = stock(1, 1, 60_000, cuts=cuts, left_mm=100)
     document = build_cutting_sheet(cutting_sheet(shade_cuts(0, piece), unit="in"), paper)
     assert ("315", "1990") in listed(document)
@@ -123,7 +121,7 @@ def test_inches_keep_their_fractions_and_their_room(paper):
 @PAPER_CASES
 @pytest.mark.parametrize("count", [36, 37, 250])
 def test_long_list_of_one_thread_is_continued(paper, count):
-    cuts = tuple(SheetCut(n, (1,), "A", 400, None) for n in range(1, count + 1))
+    cuts = tuple(SheetCut(n, "1", "A", 400, None) for n in range(1, count + 1))
     spool = stock(1, 1, 100_000, cuts=cuts, left_mm=100_000 - 400 * count, source="Spool of 100 m")
     document = build_cutting_sheet(cutting_sheet(shade_cuts(0, spool)), paper)
     assert listed(document) == [("40", str(n)) for n in range(1, count + 1)]

@@ -177,7 +177,7 @@ def test_bracelet_without_folds_has_no_fold_column():
 
 
 def test_sliding_piece_is_called_so():
-    slide = piece((), 2, 200, fold_mm=None, is_sliding=True)
+    slide = replace(piece((), 2, 200, fold_mm=None), label="slide")
     each = replace(tag(1), pieces=(*single_pieces(2), slide))
     assert "slide" in all_text(build_tag_sheet(tag_sheet(each), A4))
 
