@@ -205,8 +205,9 @@ class Piece:
         """What sheets call it: "strands 4 and 1", "leading strand", "run 2 of B"."""
         if self.role == "sliding":
             return "sliding piece"
-        if len(self.labels) == 2 and self.role == "strand":
-            return f"strands {self.strands[0]} and {self.strands[1]}"
+        kinds = {label.rpartition(" ")[0] for label in self.labels}
+        if len(self.labels) == 2 and len(kinds) == 1:
+            return f"{kinds.pop()}s {self.strands[0]} and {self.strands[1]}"
         return " and ".join(self.labels)
 
     @property

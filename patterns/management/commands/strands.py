@@ -10,6 +10,7 @@ from typing import Any
 from inventory.measures import MeasureError, parse_decimal, parse_length
 from inventory.shell import Error, OneLineCommand, read_file
 from patterns.geometry import Gauge, GaugeError, LengthError, StrandLength, StrandTable
+from patterns.grid_lengths import DEFAULT_JOIN_TAIL_MM
 from patterns.knots import Finish, PatternError
 from patterns.pattern_file import MAX_FILE_BYTES, read_pattern
 from patterns.techniques import Pattern, strand_table
@@ -29,6 +30,9 @@ class Command(OneLineCommand):
             "--idle-run", help="thread of an idle row in thread diameters (default 1.414)"
         )
         parser.add_argument(
+            "--join-tail", help="tail at each end of a run of a grid pattern (default 50mm)"
+        )
+        parser.add_argument(
             "--finish",
             choices=[finish.value for finish in Finish],
             help="end with whole repeats or not (default: as the file says)",
@@ -39,7 +43,7 @@ class Command(OneLineCommand):
         try:
             pattern = _with_finish(read_pattern(_read_text(Path(options["file"]))), options)
             length_mm = float(_millimetres("--length", options["length"]))
-            table = strand_table(pattern, length_mm, _gauge(options))
+            table = strand_table(pattern, length_mm, _gauge(options), _join_tail_mm(options))
         except (PatternError, GaugeError, LengthError) as error:
             raise Error(str(error)) from error
         self.stdout.write(_as_json(table) if options["json"] else _as_table(table))
@@ -70,6 +74,12 @@ def _gauge(options: dict[str, Any]) -> Gauge:
         if options[option] is not None:
             given[option] = _number("--" + option.replace("_", "-"), options[option])
     return Gauge(**given)
+
+
+def _join_tail_mm(options: dict[str, Any]) -> float:
+    if options["join_tail"] is None:
+        return DEFAULT_JOIN_TAIL_MM
+    return float(_millimetres("--join-tail", options["join_tail"]))
 
 
 def _millimetres(option: str, text: str) -> Fraction:

@@ -172,3 +172,38 @@ def test_strands_error_from_code_keeps_its_status(tmp_path):
     with pytest.raises(CommandError) as caught:
         call_command("strands", str(tmp_path / "missing.toml"), length="150mm")
     assert caught.value.returncode == 2
+
+
+GRID = '''name = "Bars"
+technique = "grid"
+background = "A"
+rows = """
+A B A
+B A B
+"""
+'''
+
+
+def test_strands_of_a_grid(tmp_path):
+    # By hand in test_grid_lengths, at d = 1 mm: the run takes 3 x 11.4248 + 7 = 41.3 mm.
+    path = tmp_path / "bars.toml"
+    path.write_text(GRID, encoding="utf-8")
+    options = ("--length", "4mm", "--thread", "1mm")
+    answer = strands_json(path, *options)
+    assert [strand["role"] for strand in answer["strands"]] == ["base"] * 3 + ["leading", "run"]
+    assert answer["strands"][4] == {
+        "strand": 5,
+        "slot": "B",
+        "tied": 3,
+        "base": 0,
+        "idle": 0,
+        "knotted_mm": 41.3,
+        "role": "run",
+        "passed": 2,
+        "turned": 1,
+        "first_row": 1,
+        "last_row": 2,
+    }
+    assert "run 1 of B" in strands(path, *options)
+    # With tails of 1 mm a join takes less than going down a row (4.5 mm): two runs.
+    assert len(strands_json(path, *options, "--join-tail", "1mm")["strands"]) == 3 + 1 + 3
