@@ -80,9 +80,32 @@ def make_pattern(name: str = "Ferry stripe", **differences: Any) -> Pattern:
     return add_pattern(text=pattern_text(name, **differences))
 
 
+def grid_text(
+    name: str = "Heart row",
+    *,
+    background: str = "A",
+    rows: tuple[str, ...] = ("ABABA", "BBBBB", "ABBBA", "AABAA", "AAAAA"),
+    finish: str = "",
+    carry: str = "",
+) -> str:
+    """The text of the file of a grid pattern."""
+    lines = "\n".join(rows)
+    choices = "".join(
+        f'{key} = "{value}"\n' for key, value in (("finish", finish), ("carry", carry)) if value
+    )
+    return (
+        f'name = "{name}"\ntechnique = "grid"\nbackground = "{background}"\n'
+        f'rows = """\n{lines}\n"""\n{choices}'
+    )
+
+
+def make_grid_pattern(name: str = "Heart row", **differences: Any) -> Pattern:
+    return add_pattern(text=grid_text(name, **differences))
+
+
 def make_colourway(pattern: Pattern, name: str = "Harbour", **shades: Shade) -> Colourway:
     """Every slot gets a shade of its own, unless one is given: make_colourway(p, A=madder)."""
-    for slot in sorted(set(pattern.definition.slots)):
+    for slot in pattern.definition.used_slots:
         shades.setdefault(slot, make_shade())
     return set_colourway(pattern=pattern, name=name, shades=shades)
 
