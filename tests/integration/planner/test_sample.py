@@ -16,10 +16,10 @@ from django.urls import reverse
 from inventory.models import Lot, PutUp, Shade, ShelfPiece, Supplier, Workshop
 from patterns.actions import missing_slots
 from patterns.geometry import Gauge, StrandTable
-from patterns.techniques import strand_table
 from patterns.knots import Knot
 from patterns.models import Colourway, KnottedLength, Pattern
 from patterns.pattern_file import read_pattern, write_pattern
+from patterns.techniques import strand_table
 from planner.actions import WorkshopExists, make_plan
 from planner.models import Batch, OrderLine
 from planner.order_list.lines import read_lines
