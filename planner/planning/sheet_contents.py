@@ -8,7 +8,13 @@ from decimal import Decimal
 from patterns.drawing import draw_band
 from patterns.pattern_file import read_pattern
 from patterns.shapes import Drawing
-from planner.planning.snapshot import Snapshot, SnapshotKind, SnapshotShade, SnapshotStock
+from planner.planning.snapshot import (
+    Snapshot,
+    SnapshotKind,
+    SnapshotPiece,
+    SnapshotShade,
+    SnapshotStock,
+)
 from planner.planning.wording import proof_of_shade
 from planner.sheets.contents import (
     CuttingSheet,
@@ -26,6 +32,7 @@ from planner.sheets.contents import (
 
 ROWS_DRAWN_ON_A_TAG = 40
 MOST_TAGS_NAMED = 20
+MOST_TAG_LINES = 64  # a diagonal pattern has at most 60 strands, and a sliding piece
 
 
 def sheet_head(snapshot: Snapshot) -> SheetHead:
@@ -164,7 +171,7 @@ def _code_text(key: int | None, number: int, address: str) -> str:
 def _tag_pieces(kind: SnapshotKind, shades: dict[str, SnapshotShade]) -> tuple[TagPiece, ...]:
     return tuple(
         TagPiece(
-            label=piece.short_label,
+            label=label,
             slot=piece.slot,
             shade_code=piece.shade_code,
             shade_name=shades[piece.shade_code].name,
@@ -172,8 +179,26 @@ def _tag_pieces(kind: SnapshotKind, shades: dict[str, SnapshotShade]) -> tuple[T
             cut_mm=piece.cut_mm,
             fold_mm=piece.fold_mm,
         )
-        for piece in kind.pieces
+        for label, piece in _tag_lines(kind.pieces)
     )
+
+
+def _tag_lines(pieces: tuple[SnapshotPiece, ...]) -> list[tuple[str, SnapshotPiece]]:
+    """A line a piece; the runs of a colour share one where a tag would have too many lines.
+
+    The line then says how many they are, and the longest: a scrap of that length serves any of
+    them. The cutting sheet and the knotting card have each run by itself.
+    """
+    if len(pieces) <= MOST_TAG_LINES:
+        return [(piece.short_label, piece) for piece in pieces]
+    lines = [(piece.short_label, piece) for piece in pieces if piece.role != "run"]
+    runs: dict[str, list[SnapshotPiece]] = defaultdict(list)
+    for piece in pieces:
+        if piece.role == "run":
+            runs[piece.slot].append(piece)
+    return lines + [
+        (f"{len(own)} runs", max(own, key=lambda piece: piece.cut_mm)) for own in runs.values()
+    ]
 
 
 def _tag(

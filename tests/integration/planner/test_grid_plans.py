@@ -108,3 +108,19 @@ def test_tail_at_a_join_belongs_to_the_plan(heart: Colourway, batch: Batch) -> N
     Workshop.objects.update(join_tail_mm=100)
     plan = make_plan(batch=batch, user=None)
     assert read_snapshot(plan).kinds[0].pieces[-1].cut_mm == before + 100
+
+
+def test_tag_of_hundreds_of_runs_names_how_many(page: Client, db: None, batch: Batch) -> None:
+    """Cells that never touch, each cut by the maker's wish: a tag has no room for a line each."""
+    make_ready_workshop()
+    dots = make_grid_pattern("Dots", rows=("ABABABABAB", "AAAAAAAAAA"), carry="cut")
+    make_order(batch, make_colourway(dots))
+    plan = make_plan(batch=batch, user=None)
+    (kind,) = read_snapshot(plan).kinds
+    runs = [piece for piece in kind.pieces if piece.role == "run"]
+    assert len(runs) == 5 * ceil(kind.rows / 2)
+    response = page.get(reverse("plan_sheet", args=[plan.pk, "tags", "pdf"]))
+    text = "".join(part.extract_text() for part in PdfReader(io.BytesIO(response.content)).pages)
+    assert f"{len(runs)} runs" in text
+    for name in ("cutting", "purchase"):
+        assert page.get(reverse("plan_sheet", args=[plan.pk, name, "pdf"])).status_code == 200
