@@ -11,6 +11,7 @@ from patterns.knots import (
     Finish,
     PatternError,
     clean_name,
+    shown,
 )
 
 MIN_COLUMNS = 2
@@ -76,8 +77,9 @@ class GridPattern:
     def __post_init__(self) -> None:
         object.__setattr__(self, "name", clean_name(self.name))
         if not _is_slot(self.background):
-            shown = str(self.background)[:20]
-            raise PatternError(f"The background '{shown}' is not a letter from A to Z.")
+            raise PatternError(
+                f"The background '{shown(self.background)}' is not a letter from A to Z."
+            )
         _check_cells(self.rows)
         if not isinstance(self.finish, Finish):
             raise PatternError(f"There is no finish called {self.finish!r}.")
@@ -130,7 +132,7 @@ def _check_cell_row(row: CellRow, number: int, columns: int) -> None:
     for place, slot in enumerate(row, start=1):
         if not _is_slot(slot):
             raise PatternError(
-                f"Row {number}, column {place}: '{str(slot)[:20]}' is not a letter from A to Z.",
+                f"Row {number}, column {place}: '{shown(slot)}' is not a letter from A to Z.",
                 row=number,
                 knot=place,
             )

@@ -84,6 +84,12 @@ def knots_in_row(strands: int, row: int) -> int:
     return (strands - (row - 1) % 2) // 2
 
 
+def shown(word: object, most: int = 30) -> str:
+    """Return what somebody wrote, short, and with a question mark for what cannot be printed."""
+    text = str(word)[:most]
+    return "".join(character if character.isprintable() else "?" for character in text)
+
+
 def clean_name(name: object) -> str:
     """Return a pattern's name without the blanks around it.
 
@@ -179,8 +185,7 @@ def _check_slots(slots: tuple[str, ...]) -> None:
         )
     for number, slot in enumerate(slots, start=1):
         if not (isinstance(slot, str) and len(slot) == 1 and slot in SLOT_LETTERS):
-            shown = str(slot)[:20]
-            raise PatternError(f"Strand {number}: '{shown}' is not a letter from A to Z.")
+            raise PatternError(f"Strand {number}: '{shown(slot)}' is not a letter from A to Z.")
 
 
 def _check_rows(rows: tuple[tuple[Knot, ...], ...], strands: int) -> None:
@@ -206,7 +211,7 @@ def _check_row(row: tuple[Knot, ...], number: int, strands: int) -> None:
     for place, knot in enumerate(row, start=1):
         if not isinstance(knot, Knot):
             raise PatternError(
-                f"Row {number}, knot {place}: '{str(knot)[:20]}' is not a knot. Use f, b, fb or bf.",
+                f"Row {number}, knot {place}: '{shown(knot)}' is not a knot. Use f, b, fb or bf.",
                 row=number,
                 knot=place,
             )

@@ -11,6 +11,7 @@ from patterns.knots import (
     Knot,
     PatternError,
     clean_name,
+    shown,
 )
 from patterns.techniques import Pattern
 
@@ -49,12 +50,12 @@ def read_pattern(text: str) -> Pattern:
     content = _parse(text)
     for key in content:
         if key not in _ALL_KEYS:
-            raise PatternError(f"There is no setting '{_shown(key)}'. {_nearest(key, _ALL_KEYS)}")
+            raise PatternError(f"There is no setting '{shown(key)}'. {_nearest(key, _ALL_KEYS)}")
     technique = _text(content, "technique").strip().lower()
     reader = _READERS.get(technique)
     if reader is None:
         raise PatternError(
-            f"There is no technique '{_shown(technique)}'. {_nearest(technique, tuple(_READERS))}"
+            f"There is no technique '{shown(technique)}'. {_nearest(technique, tuple(_READERS))}"
         )
     for key in content:
         if key not in _KEYS[technique]:
@@ -81,11 +82,7 @@ def _parse(text: str) -> dict[str, object]:
 
 
 def _one_line(error: Exception) -> str:
-    return _shown(" ".join(str(error).split()), 200)
-
-
-def _shown(word: str, most: int = 30) -> str:
-    return "".join(character if character.isprintable() else "?" for character in word[:most])
+    return shown(" ".join(str(error).split()), 200)
 
 
 def _nearest(word: str, choices: tuple[str, ...]) -> str:
@@ -128,7 +125,7 @@ def _read_diagonal(content: Mapping[str, object]) -> DiagonalPattern:
 def _read_grid(content: Mapping[str, object]) -> GridPattern:
     return GridPattern(
         name=clean_name(_text(content, "name")),
-        background=_text(content, "background").strip().upper(),
+        background=_capitals(_text(content, "background").strip()),
         rows=_read_cells(_text(content, "rows")),
         finish=_read_finish(content),
         carry=_read_carry(content),
@@ -141,16 +138,21 @@ _READERS: dict[str, Callable[[Mapping[str, object]], Pattern]] = {
 }
 
 
+def _capitals(letters: str) -> str:
+    """One letter stays one letter, which upper() would not promise: the sharp s becomes two."""
+    return "".join(letter.upper() if len(letter.upper()) == 1 else letter for letter in letters)
+
+
 def _words(line: str) -> list[str]:
     return line.partition("#")[0].replace(",", " ").split()
 
 
 def _read_slots(text: str) -> tuple[str, ...]:
-    slots = tuple(word.upper() for line in text.splitlines() for word in _words(line))
+    slots = tuple(_capitals(word) for line in text.splitlines() for word in _words(line))
     for number, slot in enumerate(slots, start=1):
         if len(slot) != 1 and slot.isalpha():
             raise PatternError(
-                f"Strand {number}: '{_shown(slot)}' is more than one letter. "
+                f"Strand {number}: '{shown(slot)}' is more than one letter. "
                 "Put a space between the letters."
             )
     return slots
@@ -172,14 +174,14 @@ def _read_knot(word: str, row: int, place: int) -> Knot:
         return Knot(word.lower())
     except ValueError:
         raise PatternError(
-            f"Row {row}, knot {place}: '{_shown(word)}' is not a knot. Use f, b, fb or bf.",
+            f"Row {row}, knot {place}: '{shown(word)}' is not a knot. Use f, b, fb or bf.",
             row=row,
             knot=place,
         ) from None
 
 
 def _read_cells(text: str) -> tuple[CellRow, ...]:
-    lines = ["".join(_words(line)).upper() for line in text.splitlines()]
+    lines = [_capitals("".join(_words(line))) for line in text.splitlines()]
     return tuple(tuple(line) for line in lines if line)
 
 
@@ -198,7 +200,7 @@ def _choice(content: Mapping[str, object], key: str, choices: tuple[str, ...]) -
     text = _text(content, key)
     word = text.strip().lower().replace(" ", "_").replace("-", "_")
     if word not in choices:
-        raise PatternError(f"There is no {key} '{_shown(text)}'. {_nearest(word, choices)}")
+        raise PatternError(f"There is no {key} '{shown(text)}'. {_nearest(word, choices)}")
     return word
 
 
