@@ -196,3 +196,26 @@ def _letter(character: str, height: int) -> Picture:
     if character == " ":
         return ((False,) * WORD_GAP,) * height
     return letters(height)[character]
+
+
+def alphabet_data() -> dict[str, object]:
+    """Return the alphabet as plain data, for a page that writes words itself.
+
+    Returns
+    -------
+    `letters` by height and name, each a list of rows of "#" and "."; `sameMarks`, the marks
+    that mean another; `mostLetters`; and `wordGap`, the cells of a blank.
+    """
+    return {
+        "letters": {
+            str(height): {name: _drawn(picture) for name, picture in letters(height).items()}
+            for height in HEIGHTS
+        },
+        "sameMarks": dict(SAME_MARKS),
+        "mostLetters": MAX_LETTERS,
+        "wordGap": WORD_GAP,
+    }
+
+
+def _drawn(picture: Picture) -> list[str]:
+    return ["".join("#" if cell else "." for cell in row) for row in picture]
