@@ -19,14 +19,20 @@ from patterns.models import (
     Gauge,
     KnottedLength,
     Pattern,
+    PatternVersion,
     Size,
 )
 from patterns.pattern_file import read_pattern
 from patterns.techniques import Pattern as PatternCore
+from patterns.techniques import usual_thread_mm
 
 
 class LibraryError(ValueError):
     """The library cannot be changed so; the text says why and what to do."""
+
+
+class VersionConflict(LibraryError):
+    """Somebody saved the pattern in the meantime; the text says which version stands now."""
 
 
 def cut_rule(workshop: Workshop | None) -> CutRule:
@@ -40,20 +46,44 @@ def cut_rule(workshop: Workshop | None) -> CutRule:
 
 
 @transaction.atomic
-def add_pattern(*, text: str) -> Pattern:
+def add_pattern(*, text: str, by: Any = None) -> Pattern:
     """Raises PatternError where the text is no pattern, LibraryError where its name is taken."""
     pattern = Pattern()
     _fill(pattern, text)
+    _keep_version(pattern, by)
     return pattern
 
 
 @transaction.atomic
-def change_pattern(*, pattern: Pattern, text: str) -> Pattern:
-    """Slots that are gone lose their shades; new ones wait for theirs, see `missing_slots`."""
+def change_pattern(
+    *, pattern: Pattern, text: str, by: Any = None, expected_version: int | None = None
+) -> Pattern:
+    """Make a new version, unless the text is the same.
+
+    Slots that are gone lose their shades; new ones wait for theirs, see `missing_slots`. Raises
+    VersionConflict where the pattern is not at the expected version any more.
+    """
+    stored = Pattern.objects.select_for_update().filter(pk=pattern.pk).first()
+    if stored is None:
+        raise LibraryError(f"{pattern} was removed in another window.")
+    if expected_version not in (None, stored.version):
+        raise VersionConflict(
+            f"{stored} was saved in another window since you opened it: it is at version "
+            f"{stored.version} now, and yours began at version {expected_version}."
+        )
+    pattern.version = stored.version + (text != stored.text)
     definition = _fill(pattern, text)
+    if text != stored.text:
+        _keep_version(pattern, by)
     gone = ColourwayShade.objects.filter(colourway__pattern=pattern)
     gone.exclude(slot__in=definition.used_slots).delete()
     return pattern
+
+
+def _keep_version(pattern: Pattern, by: Any) -> None:
+    PatternVersion.objects.create(
+        pattern=pattern, number=pattern.version, text=pattern.text, created_by=by
+    )
 
 
 def _fill(pattern: Pattern, text: str) -> PatternCore:
@@ -63,6 +93,7 @@ def _fill(pattern: Pattern, text: str) -> PatternCore:
     pattern.text = text
     pattern.strand_count = definition.strands
     pattern.repeat_rows = len(definition.rows)
+    pattern.thread_mm = round(usual_thread_mm(definition))
     _save_once(pattern, f"A pattern called {pattern.name} is there already. Choose another name.")
     return definition
 

@@ -1,13 +1,15 @@
 """What the techniques have in common: one name for any pattern, one way to its lengths."""
 
+from dataclasses import replace
 from typing import TypeAlias
 
 from patterns.geometry import Gauge, StrandTable, diagonal_table
 from patterns.grid import GridPattern
 from patterns.grid_lengths import DEFAULT_JOIN_TAIL_MM, grid_table
-from patterns.knots import DiagonalPattern
+from patterns.knots import DiagonalPattern, Finish
 
 Pattern: TypeAlias = DiagonalPattern | GridPattern
+USUAL_LENGTH_MM = 150
 
 
 def strand_table(
@@ -37,6 +39,19 @@ def strand_table(
     if isinstance(pattern, GridPattern):
         return grid_table(pattern, knotted_length_mm, gauge, join_tail_mm)
     return diagonal_table(pattern, knotted_length_mm, gauge)
+
+
+def usual_thread_mm(pattern: Pattern) -> float:
+    """Return the thread in the knots of a usual band, to compare patterns by [mm].
+
+    Notes
+    -----
+    The band is 150 mm at the standard gauge; a grid pattern's rows are taken in turn, so that a
+    picture longer than that compares too.
+    """
+    in_turn = replace(pattern, finish=Finish.EXACT)
+    table = strand_table(in_turn, USUAL_LENGTH_MM, Gauge())
+    return sum(strand.knotted_mm for strand in table.strands)
 
 
 def slot_words(pattern: Pattern, slot: str) -> str:
