@@ -1,8 +1,9 @@
 // Steps of a grid pattern: each takes a state and gives back the next one, or the same one where
 // nothing changes. No step alters a state. Rows and columns count from 0 here, from 1 in words.
 
-// A step that the pattern's limits forbid; its message is for the maker.
-export class StepRefused extends Error {}
+import { StepRefused } from "./step_refused.js";
+
+export { StepRefused };
 
 const withRows = (state, rows) => ({ ...state, rows });
 const columnsOf = (state) => state.rows[0].length;
@@ -163,4 +164,17 @@ export function makeRoom(state, rows, columns, limits) {
   const wider = addColumns(state, columnsOf(state), Math.max(0, columns - columnsOf(state)),
     limits);
   return addRows(wider, wider.rows.length, Math.max(0, rows - wider.rows.length), limits);
+}
+
+// Cells come and go at the end and on the right.
+export function resize(state, rows, columns, limits) {
+  const isWithin = (size, least, most) => Number.isInteger(size) && size >= least && size <= most;
+  if (!isWithin(rows, limits.minRows, limits.maxRows)
+    || !isWithin(columns, limits.minColumns, limits.maxColumns)) {
+    throw new StepRefused(`A grid pattern has ${limits.minRows} to ${limits.maxRows} rows and`
+      + ` ${limits.minColumns} to ${limits.maxColumns} columns.`);
+  }
+  const roomy = makeRoom(state, rows, columns, limits);
+  const shorter = removeRows(roomy, rows, roomy.rows.length - rows, limits);
+  return removeColumns(shorter, columns, columnsOf(shorter) - columns, limits);
 }
