@@ -31,7 +31,7 @@ RUN_STEPS = """async ([module, calls]) => {
       const after = steps[name](before, ...rest);
       return {state: after, same: after === before};
     } catch (error) {
-      if (!(error instanceof steps.StepRefused)) throw error;
+      if (error.constructor.name !== "StepRefused") throw error;
       return {refused: error.message};
     }
   });
