@@ -15,8 +15,10 @@ from django.urls import reverse
 
 from inventory.models import Lot, PutUp, Shade, ShelfPiece, Supplier, Workshop
 from patterns.actions import missing_slots
+from patterns.alphabet import lettering
 from patterns.geometry import Gauge, StrandTable
-from patterns.knots import Knot
+from patterns.grid import GridPattern
+from patterns.knots import DiagonalPattern, Finish, Knot
 from patterns.models import Colourway, KnottedLength, Pattern
 from patterns.pattern_file import read_pattern, write_pattern
 from patterns.techniques import strand_table
@@ -62,9 +64,35 @@ def test_sample_patterns_span_4_to_24_strands_odd_and_even(sample: Workshop) -> 
 
 def test_sample_patterns_use_every_kind_of_knot(sample: Workshop) -> None:
     used = {
-        knot for pattern in Pattern.objects.all() for row in pattern.definition.rows for knot in row
+        knot
+        for pattern in Pattern.objects.all()
+        if isinstance(pattern.definition, DiagonalPattern)
+        for row in pattern.definition.rows
+        for knot in row
     }
     assert used == set(Knot)
+
+
+def test_sample_grid_patterns_show_whole_pictures_on_every_wrist(sample: Workshop) -> None:
+    grids = [p for p in Pattern.objects.all() if isinstance(p.definition, GridPattern)]
+    assert len(grids) == 4
+    pictures = [p.definition for p in grids if p.definition.finish is Finish.CENTRED]
+    assert len(pictures) == 2
+    for picture in pictures:
+        # A band of 130 to 170 mm; a row adds 2 diameters of 0.9 mm.
+        assert len(picture.rows) * 1.8 < 130
+    for pattern in grids:
+        for length_mm in (130, 170):
+            table = strand_table(pattern.definition, length_mm, Gauge())
+            assert table.band_length_mm == pytest.approx(length_mm, abs=10 * 1.8)
+            assert table.band_width_mm <= 25
+
+
+def test_sample_name_is_written_in_the_built_in_alphabet(sample: Workshop) -> None:
+    pattern = Pattern.objects.get(name="Name on the bow").definition
+    assert isinstance(pattern, GridPattern)
+    lit = tuple(tuple(slot != pattern.background for slot in row[1:-1]) for row in pattern.rows)
+    assert lit == lettering("♥Marit♥", 7, "along")
 
 
 def test_sample_patterns_use_thread_evenly_and_unevenly(sample: Workshop) -> None:
