@@ -212,9 +212,11 @@ class StrandChoiceForm(forms.Form):
         Colourway.objects.none(), required=False, empty_label="undyed thread"
     )
 
-    def __init__(self, data: QueryDict, *, pattern: Pattern) -> None:
+    def __init__(self, data: QueryDict, *, pattern: Pattern | None) -> None:
+        """Of a pattern that is not saved yet any colourway may lend its shades."""
         self.sizes = list(Size.objects.all())
-        first_colourway = next(iter(pattern.colourways.all()), None)
+        colourways = pattern.colourways.all() if pattern else Colourway.objects.all()
+        first_colourway = next(iter(colourways), None) if pattern else None
         defaults = {
             "size": self.sizes[len(self.sizes) // 2] if self.sizes else None,
             "ending": Ending.objects.filter(is_default=True).first(),
@@ -223,7 +225,7 @@ class StrandChoiceForm(forms.Form):
         }
         typed = {name: data[name] for name in defaults if name in data}
         super().__init__({name: thing and thing.pk for name, thing in defaults.items()} | typed)
-        self.fields["colourway"].queryset = pattern.colourways.all()  # type: ignore[attr-defined]
+        self.fields["colourway"].queryset = colourways  # type: ignore[attr-defined]
         for field in self.fields.values():
             field.error_messages["invalid_choice"] = "That is not there any more. Choose another."
 

@@ -2,13 +2,16 @@
 
 from django.urls import path
 
-from patterns.views import colourways, endings, gauges, library, pattern, sizes
+from patterns.views import colourways, editor, endings, gauges, library, pattern, sizes
 
 urlpatterns = [
     path("", library.pattern_list, name="pattern_list"),
     path("new/", library.pattern_new, name="pattern_new"),
     path("<key:pk>/", pattern.pattern_detail, name="pattern_detail"),
-    path("<key:pk>/edit/", pattern.pattern_edit, name="pattern_edit"),
+    path("new/draw/", editor.pattern_draw, name="pattern_draw"),
+    path("preview/", editor.pattern_preview, name="pattern_preview"),
+    path("<key:pk>/edit/", editor.pattern_edit, name="pattern_edit"),
+    path("<key:pk>/edit/text/", pattern.pattern_edit_text, name="pattern_edit_text"),
     path("<key:pk>/pattern.toml", pattern.pattern_file, name="pattern_file"),
     path("<key:pk>/remove/", pattern.pattern_remove, name="pattern_remove"),
     path("<key:pattern_pk>/colourways/new/", colourways.colourway_new, name="colourway_new"),

@@ -96,7 +96,7 @@ def _shades(pattern: Pattern, colourway: object) -> dict[str, Shade]:
 
 
 @require_http_methods(["GET", "HEAD", "POST"])
-def pattern_edit(request: HttpRequest, pk: int) -> HttpResponse:
+def pattern_edit_text(request: HttpRequest, pk: int) -> HttpResponse:
     pattern = get_object_or_404(Pattern, pk=pk)
     form = PatternEditForm(posted(request), initial={"text": pattern.text})
     if request.method == "POST" and _changed(form, pattern):

@@ -116,6 +116,13 @@ export class EditingSession {
     this.onChange(this);
   }
 
+  // A pattern that was new has a name of its own now: its steps go along.
+  moveTo(key) {
+    this.storage.removeItem(this.key);
+    this.key = `flosswright-editing-${key}`;
+    this.store();
+  }
+
   // Drop the work that was brought back, and begin with what the server has.
   forget(start, version) {
     this._begin(start, version);
