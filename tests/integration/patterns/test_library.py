@@ -39,7 +39,7 @@ def test_library_says_which_slots_wait_for_a_shade(maker):
     pattern = make_pattern(strands="A A B B C C")
     make_colourway(pattern)
     maker.post(
-        reverse("pattern_edit", args=[pattern.pk]),
+        reverse("pattern_edit_text", args=[pattern.pk]),
         {"text": pattern_text(strands="A A B B D E")},
     )
     assert "needs a shade for D, E" in maker.get(LIBRARY).content.decode()

@@ -176,14 +176,16 @@ def test_pattern_page_makes_as_many_queries_for_twice_the_colourways(maker, patt
 
 
 @pytest.mark.parametrize(
-    "name", ["pattern_detail", "pattern_edit", "pattern_file", "pattern_remove"]
+    "name",
+    ["pattern_detail", "pattern_edit", "pattern_edit_text", "pattern_file", "pattern_remove"],
 )
 def test_pattern_that_is_not_there_is_not_found(maker, name):
     assert maker.get(reverse(name, args=[987_654_321_987_654_321])).status_code == 404
 
 
 @pytest.mark.parametrize(
-    "name", ["pattern_detail", "pattern_edit", "pattern_file", "pattern_remove"]
+    "name",
+    ["pattern_detail", "pattern_edit", "pattern_edit_text", "pattern_file", "pattern_remove"],
 )
 def test_pattern_signed_out_goes_to_the_sign_in(client, workshop, name):
     response = client.get(reverse(name, args=[make_pattern().pk]))
@@ -198,7 +200,7 @@ def test_pattern_page_refuses_other_methods(maker, pattern, name):
 def test_pattern_with_markup_for_a_name_is_shown_as_text(maker):
     pattern = make_pattern("<script>alert(1)</script>")
     make_colourway(pattern, "<img src=x onerror=alert(2)>")
-    for name in ("pattern_detail", "pattern_edit", "pattern_remove"):
+    for name in ("pattern_detail", "pattern_edit", "pattern_edit_text", "pattern_remove"):
         page = read(maker.get(reverse(name, args=[pattern.pk])))
         assert "<script>alert" not in page
         assert "<img" not in page
@@ -206,7 +208,9 @@ def test_pattern_with_markup_for_a_name_is_shown_as_text(maker):
 
 def test_pattern_edit_changes_text_and_name(maker, pattern):
     text = pattern_text("Renamed", strands="A B C D", rows=("f b", "f"))
-    response = maker.post(reverse("pattern_edit", args=[pattern.pk]), {"text": text}, follow=True)
+    response = maker.post(
+        reverse("pattern_edit_text", args=[pattern.pk]), {"text": text}, follow=True
+    )
     assert "Renamed is saved." in read(response)
     pattern.refresh_from_db()
     assert (pattern.name, pattern.text, pattern.strand_count) == ("Renamed", text, 4)
@@ -215,7 +219,7 @@ def test_pattern_edit_changes_text_and_name(maker, pattern):
 def test_pattern_edit_that_needs_a_new_shade_says_which(maker, pattern):
     make_colourway(pattern, "Dusk")
     response = maker.post(
-        reverse("pattern_edit", args=[pattern.pk]),
+        reverse("pattern_edit_text", args=[pattern.pk]),
         {"text": pattern_text(strands="A A B B C D")},
         follow=True,
     )
@@ -238,7 +242,7 @@ def test_pattern_edit_that_needs_a_new_shade_says_which(maker, pattern):
 def test_pattern_edit_wrong_changes_nothing_and_keeps_what_was_typed(maker, pattern, text, words):
     make_pattern("Taken")
     before = pattern.text
-    response = maker.post(reverse("pattern_edit", args=[pattern.pk]), {"text": text})
+    response = maker.post(reverse("pattern_edit_text", args=[pattern.pk]), {"text": text})
     assert words in response.content.decode().replace("&#x27;", "'")
     pattern.refresh_from_db()
     assert (pattern.name, pattern.text) == ("Ferry stripe", before)
