@@ -28,7 +28,7 @@ CSRF_TRUSTED_ORIGINS = [
 STATIC_ROOT = env.str("FLOSSWRIGHT_STATIC", str(BASE_DIR / "staticfiles"))
 STORAGES = {
     "default": {"BACKEND": "django.core.files.storage.FileSystemStorage"},
-    "staticfiles": {"BACKEND": "whitenoise.storage.CompressedManifestStaticFilesStorage"},
+    "staticfiles": {"BACKEND": "planner.static_files.StaticFilesStorage"},
 }
 
 SESSION_COOKIE_SECURE = True

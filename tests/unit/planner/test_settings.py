@@ -1,6 +1,7 @@
 """Settings: what they promise about the database, the browser and a server."""
 
 import os
+import re
 import subprocess
 import sys
 import threading
@@ -12,6 +13,8 @@ from django.db.utils import ConnectionHandler
 from planner.settings.databases import database_from_url
 
 ROOT = Path(__file__).parents[3]
+HASHED = re.compile(r"\.[0-9a-f]{12}\.js$")
+IMPORTED = re.compile(r"""\bfrom\s*["']([^"']+)["']""")
 SERVER = {
     "DJANGO_SETTINGS_MODULE": "planner.settings.production",
     "FLOSSWRIGHT_SECRET_KEY": "abcdefgh01234567" * 4,
@@ -85,6 +88,21 @@ def test_debug_is_off_whatever_the_environment_says(module):
         "settings.DEBUG", DJANGO_SETTINGS_MODULE=f"planner.settings.{module}", DEBUG="true"
     )
     assert told == "False"
+
+
+def test_hashed_modules_ask_for_hashed_modules(tmp_path):
+    result = manage(
+        "collectstatic", "--noinput", FLOSSWRIGHT_STATIC=str(tmp_path), DATABASE_URL="sqlite://"
+    )
+    assert result.returncode == 0, result.stderr
+    folder = tmp_path / "flosswright" / "editor"
+    hashed = [file for file in folder.glob("*.js") if HASHED.search(file.name)]
+    assert hashed
+    asked = [name for file in hashed for name in IMPORTED.findall(file.read_text())]
+    assert asked
+    for name in asked:
+        assert HASHED.search(name), name
+        assert (folder / name).exists()
 
 
 @pytest.fixture
