@@ -94,8 +94,9 @@ def sign_in(context: BrowserContext, user: User, address: str) -> None:
 
 def watch(page: Page, address: str, complaints: list[str]) -> None:
     def note_console(message: Any) -> None:
-        # A form that is refused comes back with 422, which Chromium notes as an error.
-        if message.type in ("error", "warning") and "status of 422" not in message.text:
+        # What is refused comes back with 422, a conflict with 409; Chromium notes both as errors.
+        is_refusal = any(f"status of {status}" in message.text for status in (409, 422))
+        if message.type in ("error", "warning") and not is_refusal:
             complaints.append(f"{page.url}: {message.text}")
 
     def note_request(request: Any) -> None:

@@ -115,7 +115,7 @@ export class KnotChart {
     const { square, way } = this.knots[row][place];
     put(square, "fill", colour);
     put(way, "stroke", inkOn(colour));
-    put(way, "points", WAYS[knot]);
+    put(way, "points", WAYS[knot] ?? "");
   }
 
   xOf(position) {
