@@ -189,6 +189,8 @@ class Piece:
         What each of its strands is called, in the same order.
     role
         What it becomes; a folded piece goes by its first strand.
+    added_mm
+        How much longer it is cut than it needs, to share a length with others [mm].
     """
 
     slot: str
@@ -199,6 +201,12 @@ class Piece:
     ends_mm: int
     labels: tuple[str, ...]
     role: PieceRole = "strand"
+    added_mm: int = 0
+
+    @property
+    def needed_mm(self) -> int:
+        """What it would be cut to if it did not share a length with others [mm]."""
+        return self.cut_mm - self.added_mm
 
     @property
     def label(self) -> str:
