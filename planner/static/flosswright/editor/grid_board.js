@@ -24,9 +24,9 @@ export class GridBoard {
     this.palette = new GridPalette(this.find("[data-palette]"), this);
     this.lettering = new LetteringPanel(this.find("[data-lettering]"), this);
     this.nameChart();
-    this.fitSize();
     this.listen();
     this.render();
+    this.whenShown(() => this.fitSize());
   }
 
   find(selector) {
@@ -50,12 +50,24 @@ export class GridBoard {
     this.chart.svg.setAttribute("aria-describedby", this.find("[data-keys]").id);
   }
 
+  // A chart that is not on the page yet has no width to fit into.
+  whenShown(action) {
+    const { box } = this.chart;
+    const watcher = new ResizeObserver(() => {
+      if (box.clientWidth === 0) return;
+      watcher.disconnect();
+      action();
+    });
+    watcher.observe(box);
+  }
+
   fitSize() {
     const columns = this.state.rows[0].length;
     const least = window.matchMedia("(pointer: coarse)").matches ? 28 : 18;
     const fitting = SIZES_PX.filter((size) =>
       size >= least && size <= 44 && size * columns + 50 <= this.chart.box.clientWidth);
     this.chart.columnPx = fitting.at(-1) ?? least;
+    this.render();
   }
 
   listen() {
@@ -151,6 +163,12 @@ export class GridBoard {
     this.chart.showCursor(cell);
     this.chart.reveal(cell);
     this.sayCell();
+  }
+
+  // Shows the cell that a message is about.
+  point(row, column) {
+    this.moveTo([row, column]);
+    this.chart.svg.focus();
   }
 
   begin(cell) {

@@ -171,6 +171,7 @@ export class GridChart {
     if (cell.slot === slot && cell.colour === colour && cell.isMarked === isMarked) return;
     Object.assign(cell, { slot, colour, isMarked });
     cell.rect.setAttribute("fill", colour);
+    cell.rect.dataset.slot = slot;
     cell.letter?.remove();
     cell.letter = null;
     if (!isMarked || this.rowPx < LEAST_LETTER_PX) return;

@@ -3,8 +3,8 @@
 import { inkOn } from "./grid_chart.js";
 
 const LETTERS = [..."ABCDEFGHIJKLMNOPQRSTUVWXYZ"];
-// A slot that has no shade yet is drawn in grey; its letter tells it apart.
-const NO_SHADE = "#a8a297";
+// Slots that have no shade yet are drawn in tones of undyed thread; their letters tell them apart.
+const NO_SHADE = ["#f1e9da", "#5c5448", "#a8a297", "#7d7468", "#cdc4b4"];
 
 export class GridPalette {
   constructor(element, board) {
@@ -20,7 +20,8 @@ export class GridPalette {
   }
 
   get allColours() {
-    return Object.fromEntries(LETTERS.map((slot) => [slot, this.board.colours[slot] ?? NO_SHADE]));
+    return Object.fromEntries(LETTERS.map((slot, place) =>
+      [slot, this.board.colours[slot] ?? NO_SHADE[place % NO_SHADE.length]]));
   }
 
   get slots() {
