@@ -5,6 +5,8 @@ from dataclasses import dataclass
 from patterns import working
 from patterns.cut_lengths import CutRule, Ending, EndingError, Piece, pieces_for
 from patterns.geometry import Gauge, GaugeError, LengthError, StrandLength
+from patterns.grid import GridPattern, first_picture_row
+from patterns.knots import Finish
 from patterns.techniques import Pattern, strand_table
 
 
@@ -40,10 +42,14 @@ class SlotLine:
 
 @dataclass(frozen=True)
 class StrandAnswer:
-    """Rows, band and pieces of one bracelet; lengths in mm, the band's to the nearest."""
+    """Rows, band and pieces of one bracelet; lengths in mm, the band's to the nearest.
+
+    `picture_rows` are the first and the last row of the band that show a centred picture.
+    """
 
     rows: int
     repeat_rows: int
+    picture_rows: tuple[int, int] | None
     band_length_mm: int
     band_width_mm: int
     strands: tuple[StrandLine, ...]
@@ -115,6 +121,7 @@ def answer_for(
     return StrandAnswer(
         rows=table.rows,
         repeat_rows=len(pattern.rows),
+        picture_rows=_picture_rows(pattern, table.rows),
         band_length_mm=round(table.band_length_mm),
         band_width_mm=round(table.band_width_mm),
         strands=tuple(
@@ -125,6 +132,13 @@ def answer_for(
         ),
         slots=_slot_lines(pieces),
     )
+
+
+def _picture_rows(pattern: Pattern, rows: int) -> tuple[int, int] | None:
+    if not isinstance(pattern, GridPattern) or pattern.finish is not Finish.CENTRED:
+        return None
+    first = first_picture_row(pattern, rows)
+    return first, min(rows, first + len(pattern.rows) - 1)
 
 
 def _slot_lines(pieces: tuple[Piece, ...]) -> tuple[SlotLine, ...]:

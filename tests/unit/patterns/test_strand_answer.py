@@ -1,8 +1,12 @@
+from dataclasses import replace
+
 import pytest
 
 from patterns.cut_lengths import CutRule, Ending
 from patterns.examples import ending_example, gauge_example
 from patterns.geometry import Gauge
+from patterns.grid import GridPattern
+from patterns.knots import Finish
 from patterns.pattern_file import read_pattern
 from patterns.strand_answer import NoAnswer, answer_for
 from tests.factories import pattern_text
@@ -24,6 +28,16 @@ def test_answer_for_150_mm_is_118_rows():
     assert (found.whole_repeats, found.rows_over) == (59, 0)
     # 118 rows x sqrt 2 x 0.9 mm = 150.2 mm; width 6 x sqrt 2 x 0.9 mm = 7.637 mm.
     assert (found.band_length_mm, found.band_width_mm) == (150, 8)
+
+
+def test_answer_for_a_centred_picture_says_which_rows_show_it():
+    rows = (("A", "B"),) * 20
+    picture = GridPattern("Picture", "A", rows, Finish.CENTRED)
+    # 150 mm / (2 x 0.9 mm) = 83.3, so 84 rows: 32 before the picture, 32 after it.
+    assert answer_for(picture, 150, Gauge(), TIES, RULE).picture_rows == (33, 52)
+    repeated = replace(picture, finish=Finish.EXACT)
+    assert answer_for(repeated, 150, Gauge(), TIES, RULE).picture_rows is None
+    assert answer().picture_rows is None
 
 
 def test_answer_for_adds_up_over_strands_and_slots():
