@@ -1,3 +1,5 @@
+from random import Random
+
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
@@ -215,6 +217,38 @@ def test_colour_order_equals_repeating_until_the_slots_return(pattern):
             break
         repeats += 1
     assert colour_order(pattern) == repeats
+
+
+def random_patterns(count, seed):
+    """2 to 20 strands, 2 to 16 rows; colours from few slots, so that they return early."""
+    random = Random(seed)
+    for _ in range(count):
+        strands, rows = random.randint(2, 20), 2 * random.randint(1, 8)
+        slots = random.choices(random.choice(["A", "AB", "ABC", "ABCDEFG"]), k=strands)
+        knots = tuple(
+            tuple(random.choices(tuple(Knot), k=knots_in_row(strands, row)))
+            for row in range(1, rows + 1)
+        )
+        yield DiagonalPattern("Random", tuple(slots), knots)
+
+
+def test_orders_of_1000_random_patterns_equal_sympy():
+    # Order of the repeat: sympy.combinatorics. Colour repeat: brute force, the repeat applied
+    # (by sympy's permutation) until every place has its first colour again.
+    differing = 0
+    for pattern in random_patterns(1000, seed=20):
+        reference = sympy_repeat(pattern)
+        assert [strand - 1 for strand in permutation(pattern)] == reference.array_form
+        assert order_of_repeat(pattern) == reference.order()
+        once = reference.array_form
+        repeats, colours = 1, [pattern.slots[place] for place in once]
+        while tuple(colours) != pattern.slots:
+            colours = [colours[place] for place in once]
+            repeats += 1
+        assert colour_order(pattern) == repeats
+        differing += repeats < int(reference.order())
+    # The two numbers are not the same thing: in many patterns the colours are back first.
+    assert differing > 200
 
 
 # --- mirror ----------------------------------------------------------------------------------
