@@ -14,8 +14,8 @@ from patterns.actions import LibraryError, change_pattern, cut_rule, missing_slo
 from patterns.forms import PatternEditForm, StrandChoiceForm
 from patterns.knots import DiagonalPattern, colour_order, order_of_repeat
 from patterns.models import KnottedLength, Pattern
-from patterns.pattern_file import written_rows
 from patterns.pictures import MOST_PICTURE_ROWS, band_picture
+from patterns.reading import written_rows
 from patterns.strand_answer import NoAnswer, answer_for
 from patterns.techniques import Pattern as PatternCore
 from patterns.views._shared import note_refusal, posted, removed, render_either, why_not_removed

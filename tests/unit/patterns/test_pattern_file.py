@@ -4,7 +4,7 @@ from hypothesis import strategies as st
 from pattern_factories import all_same, make_pattern, patterns
 
 from patterns.knots import DiagonalPattern, Finish, Knot, PatternError
-from patterns.pattern_file import MAX_FILE_BYTES, read_pattern, write_pattern, written_rows
+from patterns.pattern_file import MAX_FILE_BYTES, read_pattern, write_pattern
 
 GOOD = '''name = "Harbour stripes"
 technique = "diagonal"
@@ -248,8 +248,3 @@ def test_write_pattern_as_documented():
     assert (
         write_pattern(read_pattern(GOOD + 'finish = "nearest"\n')) == GOOD + 'finish = "nearest"\n'
     )
-
-
-def test_written_rows():
-    assert written_rows(read_pattern(GOOD)) == ["Row 1: f f b", "Row 2: fb bf"]
-    assert written_rows(make_pattern(["f", ""], slots="AB"))[1] == "Row 2: no knots"
