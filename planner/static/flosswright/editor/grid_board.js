@@ -1,6 +1,6 @@
 // The board of a grid pattern: the chart, what a hand or a key does to it, and its tools.
 
-import { GridChart } from "./grid_chart.js";
+import { EDGE_PX, GridChart } from "./grid_chart.js";
 import { LetteringPanel } from "./grid_lettering.js";
 import { GridPalette } from "./grid_palette.js";
 import * as steps from "./grid_steps.js";
@@ -61,12 +61,12 @@ export class GridBoard {
     watcher.observe(box);
   }
 
+  // As wide as the box allows, in whole pixels; a finger needs larger cells than a mouse.
   fitSize() {
-    const columns = this.state.rows[0].length;
-    const least = window.matchMedia("(pointer: coarse)").matches ? 28 : 18;
-    const fitting = SIZES_PX.filter((size) =>
-      size >= least && size <= 44 && size * columns + 50 <= this.chart.box.clientWidth);
-    this.chart.columnPx = fitting.at(-1) ?? least;
+    const least = window.matchMedia("(pointer: coarse)").matches ? 24 : 18;
+    const { box } = this.chart;
+    const fitting = Math.floor((box.clientWidth - EDGE_PX) / this.state.rows[0].length);
+    this.chart.columnPx = Math.min(Math.max(fitting, least), 44);
     this.render();
   }
 
@@ -96,10 +96,11 @@ export class GridBoard {
 
   changeView(button) {
     const { chart } = this;
-    const at = SIZES_PX.indexOf(chart.columnPx);
-    const way = { larger: 1, smaller: -1 }[button.dataset.view] ?? 0;
-    chart.columnPx = SIZES_PX[Math.min(Math.max(at + way, 0), SIZES_PX.length - 1)];
-    if (button.dataset.view === "lie") {
+    const { view } = button.dataset;
+    const here = chart.columnPx;
+    if (view === "larger") chart.columnPx = SIZES_PX.find((size) => size > here) ?? here;
+    if (view === "smaller") chart.columnPx = SIZES_PX.findLast((size) => size < here) ?? here;
+    if (view === "lie") {
       chart.isLying = !chart.isLying;
       button.setAttribute("aria-pressed", String(chart.isLying));
     }
@@ -198,7 +199,8 @@ export class GridBoard {
 
   finish() {
     const cells = this.strokeCells();
-    const end = this.stroke.cells.filter((cell) => this.chart.has(cell)).at(-1);
+    const inside = this.stroke.cells.filter((cell) => this.chart.has(cell));
+    const end = this.tool === "fill" ? this.stroke.from : inside.at(-1);
     this.cancel();
     if (this.lettering.isOpen) return;
     this.paint(cells);

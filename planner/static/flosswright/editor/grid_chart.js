@@ -3,7 +3,7 @@
 
 const SVG = "http://www.w3.org/2000/svg";
 const ROW_TO_COLUMN = 0.8;
-const EDGE_PX = 34; // room for the row numbers
+export const EDGE_PX = 34; // room for the numbers at the left, and of the rows below
 const STRANDS_PX = 26; // room for the base strands' ends and the column numbers
 const LEAST_LETTER_PX = 16;
 const LEAST_NUMBER_PX = 14;
@@ -58,7 +58,8 @@ export class GridChart {
   build(rows, columns) {
     this.rows = rows;
     this.columns = columns;
-    const [along, across] = [rows * this.rowPx + 2 * STRANDS_PX, columns * this.columnPx + EDGE_PX];
+    const start = this.isLying ? EDGE_PX : STRANDS_PX;
+    const [along, across] = [rows * this.rowPx + start + STRANDS_PX, columns * this.columnPx + EDGE_PX];
     const [width, height] = this.isLying ? [along, across] : [across, along];
     this.svg.setAttribute("width", width);
     this.svg.setAttribute("height", height);
@@ -144,7 +145,7 @@ export class GridChart {
   // column 1 lowest.
   boxOf(row, column) {
     if (this.isLying) {
-      return { x: STRANDS_PX + row * this.rowPx, y: (this.columns - 1 - column) * this.columnPx + 2,
+      return { x: EDGE_PX + row * this.rowPx, y: (this.columns - 1 - column) * this.columnPx + 2,
         width: this.rowPx, height: this.columnPx };
     }
     return { x: EDGE_PX + column * this.columnPx - 2, y: STRANDS_PX + row * this.rowPx,
@@ -155,7 +156,7 @@ export class GridChart {
     const frame = this.svg.getBoundingClientRect();
     const [x, y] = [clientX - frame.left, clientY - frame.top];
     if (this.isLying) {
-      return [Math.floor((x - STRANDS_PX) / this.rowPx),
+      return [Math.floor((x - EDGE_PX) / this.rowPx),
         this.columns - 1 - Math.floor((y - 2) / this.columnPx)];
     }
     return [Math.floor((y - STRANDS_PX) / this.rowPx),
@@ -171,6 +172,7 @@ export class GridChart {
     if (cell.slot === slot && cell.colour === colour && cell.isMarked === isMarked) return;
     Object.assign(cell, { slot, colour, isMarked });
     cell.rect.setAttribute("fill", colour);
+    cell.rect.setAttribute("stroke", inkOn(colour));
     cell.rect.dataset.slot = slot;
     cell.letter?.remove();
     cell.letter = null;
