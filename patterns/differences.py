@@ -105,13 +105,11 @@ def _row_keys(pattern: Pattern) -> list[tuple[int, tuple[str, ...]]]:
 def _block(
     first: Pattern, second: Pattern, ours: tuple[int, int], theirs: tuple[int, int]
 ) -> Iterator[RowDifference]:
-    """Pair the rows of a changed block in their order, where they pair the same strands."""
-    numbers, others = list(range(*ours)), list(range(*theirs))
-    if isinstance(first, DiagonalPattern) and (ours[0] - theirs[0]) % 2:
-        yield from (_only(first, number, "only first") for number in numbers)
-        yield from (_only(second, number, "only second") for number in others)
-        return
-    for number, other in zip_longest(numbers, others):
+    """Pair the rows of a changed block in their order.
+
+    Matches are of odd rows with odd ones, so a block begins alike in both and so do its rows.
+    """
+    for number, other in zip_longest(range(*ours), range(*theirs)):
         if other is None:
             yield _only(first, number, "only first")
         elif number is None:
