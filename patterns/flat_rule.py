@@ -71,7 +71,8 @@ def strand_needs(pieces: Iterable[Piece]) -> tuple[StrandNeed, ...]:
 
     Notes
     -----
-    Runs of a grid come from scraps, and a sliding piece is no strand: both are left out.
+    Runs of a grid come from scraps, and a sliding piece is no strand: both are left out. So is
+    what a piece is cut longer only to share its length with others.
     """
     return tuple(
         need
@@ -83,9 +84,9 @@ def strand_needs(pieces: Iterable[Piece]) -> tuple[StrandNeed, ...]:
 
 def _needs_of(piece: Piece) -> list[StrandNeed]:
     ends_mm = Fraction(piece.ends_mm, len(piece.strands))
-    cuts_mm = [piece.cut_mm]
+    cuts_mm = [piece.needed_mm]
     if piece.fold_mm is not None:
-        cuts_mm = [piece.fold_mm, piece.cut_mm - piece.fold_mm]
+        cuts_mm = [piece.fold_mm, piece.needed_mm - piece.fold_mm]
     return [
         StrandNeed(label, cut_mm, ceil(Fraction(knotted_mm) + ends_mm))
         for label, cut_mm, knotted_mm in zip(piece.labels, cuts_mm, piece.knotted_mm, strict=True)

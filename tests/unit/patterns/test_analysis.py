@@ -19,6 +19,7 @@ from patterns.flat_rule import FLAT_LENGTHS_MM, flat_length, smallest_flat_mm, s
 from patterns.geometry import Gauge
 from patterns.grid import Carry, GridPattern
 from patterns.knots import Finish, colour_order, order_of_repeat
+from patterns.shared_lengths import with_distinct_lengths
 from patterns.techniques import strand_table
 
 RULE = CutRule(0.1, 10)
@@ -176,6 +177,13 @@ def test_flat_rule_holds_together(pattern, ending, flat_mm):
     right = sum(need.cut_mm == flat_mm for need in needs)
     over = sum(need.cut_mm < flat_mm for need in needs)
     assert over + right + len(found.short) + len(found.tight) == pattern.strands
+
+
+@given(patterns(max_strands=9), st.sampled_from([TIES, FOLDED]), st.integers(1, 3))
+def test_flat_rule_leaves_out_what_shared_lengths_add(pattern, ending, lengths):
+    table = strand_table(replace(pattern, finish=Finish.EXACT), 120, GAUGE)
+    pieces = pieces_for(table, ending, RULE)
+    assert strand_needs(with_distinct_lengths(pieces, lengths)) == strand_needs(pieces)
 
 
 # --- thread by shade -------------------------------------------------------------------------
