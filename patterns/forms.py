@@ -27,6 +27,13 @@ FINISH_CHOICES = [
 ]
 
 
+LENGTHS_CHOICES = [
+    ("", "each its own length"),
+    ("1", "one length"),
+    *((str(count), f"{count} lengths") for count in range(2, 13)),
+]
+
+
 class PatternFileForm(forms.Form):
     """A pattern file: its text pasted, or the file itself."""
 
@@ -211,6 +218,9 @@ class StrandChoiceForm(forms.Form):
     colourway = forms.ModelChoiceField(
         Colourway.objects.none(), required=False, empty_label="undyed thread"
     )
+    lengths = forms.TypedChoiceField(
+        label="Cut in", choices=LENGTHS_CHOICES, required=False, coerce=int, empty_value=None
+    )
 
     def __init__(self, data: QueryDict, *, pattern: Pattern | None) -> None:
         """Of a pattern that is not saved yet any colourway may lend its shades."""
@@ -223,7 +233,7 @@ class StrandChoiceForm(forms.Form):
             "gauge": Gauge.objects.filter(is_default=True).first(),
             "colourway": first_colourway,
         }
-        typed = {name: data[name] for name in defaults if name in data}
+        typed = {name: data[name] for name in (*defaults, "lengths") if name in data}
         super().__init__({name: thing and thing.pk for name, thing in defaults.items()} | typed)
         self.fields["colourway"].queryset = colourways  # type: ignore[attr-defined]
         for field in self.fields.values():

@@ -7,6 +7,7 @@ from patterns.cut_lengths import CutRule, Ending, EndingError, Piece, pieces_for
 from patterns.geometry import Gauge, GaugeError, LengthError, StrandLength
 from patterns.grid import GridPattern, first_picture_row
 from patterns.knots import Finish
+from patterns.shared_lengths import costs_of_lengths, with_distinct_lengths
 from patterns.techniques import Pattern, strand_table
 
 
@@ -55,6 +56,12 @@ class StrandAnswer:
     strands: tuple[StrandLine, ...]
     pieces: tuple[PieceLine, ...]
     slots: tuple[SlotLine, ...]
+    length_costs: tuple[tuple[int, int], ...]
+
+    @property
+    def added_mm(self) -> int:
+        """Thread that the pieces take more, to share lengths [mm]."""
+        return sum(line.piece.added_mm for line in self.pieces)
 
     @property
     def shortest_mm(self) -> int:
@@ -97,6 +104,7 @@ def answer_for(
     gauge: Gauge,
     ending: Ending,
     rule: CutRule,
+    distinct_lengths: int | None = None,
 ) -> StrandAnswer:
     """Work out one bracelet.
 
@@ -107,6 +115,7 @@ def answer_for(
     gauge : the maker's gauge.
     ending : how the bracelet begins and closes.
     rule : safety share and rounding step.
+    distinct_lengths : in how many lengths the pieces are cut at the most; None for each its own.
 
     Raises
     ------
@@ -115,7 +124,7 @@ def answer_for(
     """
     try:
         table = strand_table(pattern, knotted_length_mm, gauge, rule.join_tail_mm)
-        pieces = pieces_for(table, ending, rule)
+        pieces = with_distinct_lengths(pieces_for(table, ending, rule), distinct_lengths)
     except (LengthError, GaugeError, EndingError) as error:
         raise NoAnswer(str(error)) from error
     return StrandAnswer(
@@ -131,6 +140,7 @@ def answer_for(
             PieceLine(piece, working.piece_working(piece, ending, rule)) for piece in pieces
         ),
         slots=_slot_lines(pieces),
+        length_costs=costs_of_lengths(pieces),
     )
 
 

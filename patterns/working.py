@@ -1,5 +1,6 @@
 """How each length was made, in words and numbers that a maker can redo."""
 
+from dataclasses import replace
 from fractions import Fraction
 from math import ceil
 
@@ -37,6 +38,9 @@ def _grid_working(strand: StrandLength, gauge: Gauge) -> str:
 
 def piece_working(piece: Piece, ending: Ending, rule: CutRule) -> tuple[str, ...]:
     """Return the steps from the knotted thread of a piece to its cut length, one a line."""
+    if piece.added_mm:
+        alone = replace(piece, cut_mm=piece.needed_mm, added_mm=0)
+        return (*piece_working(alone, ending, rule), shared_working(piece))
     if piece.role == "sliding":
         return (
             f"The sliding piece of {ending.name}: {in_mm(piece.ends_mm)}",
@@ -52,6 +56,12 @@ def piece_working(piece: Piece, ending: Ending, rule: CutRule) -> tuple[str, ...
         end_working(ending),
         _together([rule.with_safety_mm(piece.knotted_mm[0]), Fraction(piece.ends_mm)], piece, rule),
     )
+
+
+def shared_working(piece: Piece) -> str:
+    """Return how a piece came to share its length with others."""
+    where = f" at the end of {piece.labels[1]}" if len(piece.labels) == 2 else ""
+    return f"{in_mm(piece.added_mm)} more{where}, to share a length: {in_mm(piece.cut_mm)}"
 
 
 def _run_working(piece: Piece, rule: CutRule) -> tuple[str, ...]:

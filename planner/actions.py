@@ -26,6 +26,7 @@ LINE_FIELDS = (
     "quantity",
     "due_date",
     "note",
+    "distinct_lengths",
 )
 
 
@@ -57,6 +58,7 @@ def line_values(line: GoodLine) -> dict[str, Any]:
         "quantity": line.quantity,
         "due_date": line.due_date,
         "note": line.note,
+        "distinct_lengths": line.distinct_lengths,
     }
 
 

@@ -168,6 +168,7 @@ def _answer(definition: PatternCore, choice: StrandChoiceForm) -> dict[str, Any]
             chosen["gauge"].as_core(),
             chosen["ending"].as_core(),
             cut_rule(habits()),
+            chosen["lengths"],
         )
     except NoAnswer as error:
         return context | {"why_not": str(error)}

@@ -70,6 +70,7 @@ def _strands(
             chosen["gauge"].as_core(),
             chosen["ending"].as_core(),
             cut_rule(habits()),
+            chosen["lengths"],
         )
     except NoAnswer as error:
         return context | {"why_not": str(error)}

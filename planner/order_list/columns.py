@@ -11,11 +11,22 @@ from planner.order_list.cells import listed, one_line, shown
 from planner.order_list.limits import OrderListError
 
 Field = Literal[
-    "for_whom", "pattern", "colourway", "size", "ending", "quantity", "due_date", "note"
+    "for_whom",
+    "pattern",
+    "colourway",
+    "size",
+    "ending",
+    "quantity",
+    "due_date",
+    "note",
+    "distinct_lengths",
 ]
 
 DEFAULT_ORDER: tuple[Field, ...] = get_args(Field)
-"""The order of the columns in the grid, and in a list without column names."""
+"""The order of the columns in the grid."""
+
+UNNAMED_ORDER: tuple[Field, ...] = DEFAULT_ORDER[: DEFAULT_ORDER.index("note") + 1]
+"""The order in a list without column names: a comma in a note must not become another field."""
 
 FIELD_LABELS: Mapping[Field, str] = MappingProxyType(
     {
@@ -27,6 +38,7 @@ FIELD_LABELS: Mapping[Field, str] = MappingProxyType(
         "quantity": "quantity",
         "due_date": "due date",
         "note": "note",
+        "distinct_lengths": "lengths",
     }
 )
 
@@ -54,6 +66,8 @@ _SYNONYMS: Mapping[Field, str] = {
     "Datum, échéance, pour le, datum, uiterlijk, fecha, fecha de entrega, entrega",
     "note": "note, notes, remark, remarks, comment, comments, Notiz, Bemerkung, Anmerkung, remarque, "
     "opmerking, notitie, nota, notas, observación, observaciones",
+    "distinct_lengths": "lengths, distinct lengths, cut lengths, how many lengths, Längen, "
+    "longueurs, lengtes, largos",
 }
 
 
@@ -168,7 +182,7 @@ def read_columns(header: Sequence[str] | None) -> Columns:
     Parameters
     ----------
     header
-        The column names, or `None` for a list without them, which is read in `DEFAULT_ORDER`.
+        The column names, or `None` for a list without them, which is read in `UNNAMED_ORDER`.
 
     Returns
     -------
@@ -181,6 +195,6 @@ def read_columns(header: Sequence[str] | None) -> Columns:
         When two columns name the same field, or there is none for the pattern or the size.
     """
     if header is None:
-        return Columns(DEFAULT_ORDER, tuple(FIELD_LABELS[field] for field in DEFAULT_ORDER))
+        return Columns(UNNAMED_ORDER, tuple(FIELD_LABELS[field] for field in UNNAMED_ORDER))
     names = (one_line(name) or f"column {number}" for number, name in enumerate(header, start=1))
     return Columns(tuple(field_named(name) for name in header), tuple(names))

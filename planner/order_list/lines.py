@@ -5,7 +5,7 @@ from datetime import date
 
 from planner.order_list.catalogue import Catalogue
 from planner.order_list.cells import listed
-from planner.order_list.columns import DEFAULT_ORDER, FIELD_LABELS, read_columns
+from planner.order_list.columns import FIELD_LABELS, UNNAMED_ORDER, read_columns
 from planner.order_list.reader import RowReader
 from planner.order_list.results import BadLine, GoodLine, Reading
 from planner.order_list.table import Table
@@ -52,7 +52,7 @@ def read_lines(
     if unread:
         notices += (f"Left out, with nothing in the columns that are read: row {listed(unread)}.",)
     if table.header is None:
-        labels = ", ".join(FIELD_LABELS[field] for field in DEFAULT_ORDER)
+        labels = ", ".join(FIELD_LABELS[field] for field in UNNAMED_ORDER)
         notices += (f"The list does not name its columns, so they were read as: {labels}.",)
     return _sorted_out(lines, columns.ignored, notices)
 

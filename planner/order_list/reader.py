@@ -11,7 +11,11 @@ from planner.order_list.catalogue import Catalogue, Names, PatternChoice
 from planner.order_list.cells import UNREADABLE, clean_cell, listed, one_line, shown
 from planner.order_list.columns import DEFAULT_ORDER, FIELD_LABELS, Columns, Field
 from planner.order_list.dates import long_date, read_date
-from planner.order_list.limits import MAX_FOR_WHOM_CHARACTERS, MAX_NOTE_CHARACTERS
+from planner.order_list.limits import (
+    MAX_DISTINCT_LENGTHS,
+    MAX_FOR_WHOM_CHARACTERS,
+    MAX_NOTE_CHARACTERS,
+)
 from planner.order_list.problems import CellProblem
 from planner.order_list.results import BadLine, GoodLine, Problem
 from planner.order_list.sizes import Sizes
@@ -165,6 +169,7 @@ class RowReader:
         quantity = row.read("quantity", _read_quantity)
         due_date, due_notice = row.read("due_date", self._read_due_date) or (None, None)
         note = row.read("note", _read_note)
+        distinct_lengths = row.read("distinct_lengths", _read_distinct_lengths)
         if (
             row.problems
             or for_whom is None
@@ -189,6 +194,7 @@ class RowReader:
             due_date=due_date,
             note=note,
             cells=tuple(row.cells.values()),
+            distinct_lengths=distinct_lengths,
             notices=tuple(row.notices),
         )
 
@@ -284,4 +290,17 @@ def _read_quantity(text: str) -> int:
     except MeasureError as error:
         raise CellProblem(
             f"the quantity {shown(text)} is not a whole number from 1 to 9999. Write one, like 3."
+        ) from error
+
+
+def _read_distinct_lengths(text: str) -> int | None:
+    """Empty: each piece of a bracelet is cut to its own length."""
+    if not text:
+        return None
+    try:
+        return read_quantity(text, maximum=MAX_DISTINCT_LENGTHS)
+    except MeasureError as error:
+        raise CellProblem(
+            f"the lengths {shown(text)} are not a whole number from 1 to {MAX_DISTINCT_LENGTHS}. "
+            "Write in how many lengths the pieces of a bracelet are cut, or leave it empty."
         ) from error

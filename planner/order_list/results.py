@@ -20,6 +20,7 @@ class GoodLine:
     due_date: date | None
     note: str
     cells: tuple[str, ...]
+    distinct_lengths: int | None = None
     notices: tuple[str, ...] = ()
 
 

@@ -119,6 +119,7 @@ def resolved_rows(reading: Reading, catalogue: Catalogue) -> list[tuple[int, tup
                 str(line.quantity),
                 line.due_date.isoformat() if line.due_date else "",
                 line.note,
+                str(line.distinct_lengths or ""),
             ),
         )
         for line in reading.good

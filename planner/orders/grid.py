@@ -23,6 +23,7 @@ HEADINGS: tuple[tuple[str, str], ...] = (
     ("quantity", "How many"),
     ("due_date", "Due"),
     ("note", "Note"),
+    ("distinct_lengths", "Lengths"),
 )
 
 
@@ -108,6 +109,7 @@ def cells_of_line(line: OrderLine) -> dict[str, str]:
         "quantity": str(line.quantity),
         "due_date": line.due_date.isoformat() if line.due_date else "",
         "note": line.note,
+        "distinct_lengths": str(line.distinct_lengths or ""),
     }
 
 

@@ -94,6 +94,7 @@ def _kind(exploded: ExplodedKind, names: Mapping[int, ShadeName]) -> SnapshotKin
                 label=piece.label,
                 short_label=piece.short_label,
                 fold_from=piece.labels[0] if piece.labels else "",
+                added_mm=piece.added_mm,
             )
             for piece in exploded.pieces
         ),
@@ -108,6 +109,7 @@ def _making(exploded: ExplodedKind, shades: Mapping[str, ShadeName]) -> dict[str
         "shades": {slot: asdict(shade) for slot, shade in shades.items()},
         "band_length_mm": exploded.table.band_length_mm,
         "join_tail_mm": kind.rule.join_tail_mm,
+        "distinct_lengths": kind.distinct_lengths,
         "strands": [asdict(strand) for strand in exploded.table.strands],
         "gauge": asdict(kind.gauge),
         "ending": asdict(kind.ending),

@@ -6,6 +6,7 @@ from datetime import date
 
 from patterns.cut_lengths import CutRule, Ending, Piece, pieces_for
 from patterns.geometry import Gauge, StrandTable
+from patterns.shared_lengths import with_distinct_lengths
 from patterns.techniques import Pattern, strand_table
 
 
@@ -28,6 +29,7 @@ class Kind:
     pattern_text : the pattern as its own text, kept with the plan.
     shades : slot and shade key, by slot; hashable so that equal kinds meet.
     knotted_length_mm : length of the band [mm].
+    distinct_lengths : in how many lengths its pieces are cut at the most; None for each its own.
     """
 
     pattern: Pattern
@@ -41,6 +43,7 @@ class Kind:
     gauge: Gauge
     ending: Ending
     rule: CutRule
+    distinct_lengths: int | None = None
 
 
 @dataclass(frozen=True)
@@ -96,7 +99,10 @@ def explode_kind(kind: Kind) -> ExplodedKind:
         When the pattern cannot be ended at this length.
     """
     table = strand_table(kind.pattern, kind.knotted_length_mm, kind.gauge, kind.rule.join_tail_mm)
-    return ExplodedKind(kind=kind, table=table, pieces=pieces_for(table, kind.ending, kind.rule))
+    pieces = pieces_for(table, kind.ending, kind.rule)
+    return ExplodedKind(
+        kind=kind, table=table, pieces=with_distinct_lengths(pieces, kind.distinct_lengths)
+    )
 
 
 def explode(orders: tuple[Order, ...]) -> tuple[tuple[ExplodedKind, ...], tuple[Bracelet, ...]]:

@@ -225,4 +225,5 @@ def _tag(
         knotted_length_mm=kind.band_length_mm,
         drawing=drawing,
         cautions=kind.cautions,
+        distinct_lengths=kind.distinct_lengths,
     )

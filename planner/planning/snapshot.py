@@ -33,6 +33,7 @@ class SnapshotPiece:
     label: str
     short_label: str
     fold_from: str
+    added_mm: int = 0
 
 
 @dataclass(frozen=True)
@@ -56,6 +57,17 @@ class SnapshotKind:
     def band_length_mm(self) -> int:
         """What the rows measure; a pattern that ends on whole repeats may miss the length asked."""
         return round(float(self.making["band_length_mm"]))
+
+    @property
+    def added_mm(self) -> int:
+        """Thread that a bracelet takes more, so that its pieces share lengths [mm]."""
+        return sum(piece.added_mm for piece in self.pieces)
+
+    @property
+    def distinct_lengths(self) -> int | None:
+        """In how many lengths its pieces are cut at the most; None where each has its own."""
+        lengths: int | None = self.making.get("distinct_lengths")
+        return lengths
 
 
 @dataclass(frozen=True)
@@ -169,6 +181,11 @@ class Snapshot:
     @property
     def is_proven(self) -> bool:
         return all(shade.status == "optimal" and not shade.unplaced for shade in self.shades)
+
+    @property
+    def added_mm(self) -> int:
+        """Thread that all bracelets take more, so that pieces share lengths [mm]."""
+        return sum(self.kinds[bracelet.kind_index].added_mm for bracelet in self.bracelets)
 
     @property
     def piece_count(self) -> int:

@@ -139,6 +139,7 @@ def _order(
         gauge=gauge,
         ending=line.ending.as_core(),
         rule=cut_rule(workshop),
+        distinct_lengths=line.distinct_lengths,
     )
     return Order(row, kind, line.quantity, line.for_whom, line.due_date, line.note)
 
@@ -168,6 +169,8 @@ def _values_of_kind(kind: Kind) -> list[object]:
     ]
     if isinstance(kind.pattern, GridPattern):
         values.append(kind.rule.join_tail_mm)
+    if kind.distinct_lengths is not None:
+        values.append(["distinct lengths", kind.distinct_lengths])
     return values
 
 

@@ -48,6 +48,10 @@ def plan_page(plan: Plan) -> dict[str, Any]:
             [item.put_up_name for shade in shades for item in shade.purchases.all()],
         ),
         "proof": proof_of_plan(plan, shades),
+        "added_mm": sum(
+            read_kind(row).added_mm * row.bracelet_count
+            for row in plan.kinds.annotate(bracelet_count=Count("bracelets"))
+        ),
         "unplaced": [shade for shade in shades if shade.unplaced],
         "shelf_changed": shelf_changed,
         "orders_changed": orders_changed,
@@ -171,6 +175,7 @@ def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
             "stock": row.stock,
             "workings": [workings[number] for number in kind.pieces[row.index].strands],
             "ends_mm": making["ends_mm"][row.index],
+            "needed_mm": kind.pieces[row.index].cut_mm - kind.pieces[row.index].added_mm,
         }
         for row in bracelet.pieces.all()
     ]

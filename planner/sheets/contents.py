@@ -126,6 +126,7 @@ class Tag:
     knotted_length_mm: int
     drawing: Drawing
     cautions: tuple[str, ...]
+    distinct_lengths: int | None = None
 
 
 @dataclass(frozen=True)

@@ -77,7 +77,8 @@ def _answer(sheet: CuttingSheet) -> str:
         if part
     )
     shades = counted(sum(1 for shade in sheet.shades if shade.stock), "shade")
-    return f"{counted(pieces, 'piece')} in {shades}: {sources}."
+    lengths = len({cut.cut_mm for piece in stock for cut in piece.cuts})
+    return f"{counted(pieces, 'piece')} of {counted(lengths, 'length')} in {shades}: {sources}."
 
 
 def _blocks(sheet: CuttingSheet, paper: Paper) -> Iterator[Block]:

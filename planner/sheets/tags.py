@@ -188,6 +188,8 @@ class _TagDrawing:
         self.pen.rule(self.frame.left, foot + FINISH_PT - 2.5, self.frame.inner_width, RULE, 0.4)
         length = format_length(tag.knotted_length_mm, self.unit)
         words = f"Tie {counted(tag.rows, 'row')} to {length}"
+        if tag.distinct_lengths is not None:
+            words += f", cut in {counted(tag.distinct_lengths, 'length')}"
         used = pen.text(self.frame.left, foot + 3, words, 9.5, font=STRONG)
         ending = plain_text(tag.ending)
         if ending:

@@ -89,6 +89,7 @@ def _unsaved(line: GoodLine) -> OrderLine:
         quantity=line.quantity,
         due_date=line.due_date,
         note=line.note,
+        distinct_lengths=line.distinct_lengths,
     )
 
 

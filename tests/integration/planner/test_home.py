@@ -18,6 +18,7 @@ OWN = {
     "safety_share": "8,5",
     "short_measure_share": "2",
     "keep_length_mm": "12 in",
+    "join_tail_mm": "2 in",
 }
 
 

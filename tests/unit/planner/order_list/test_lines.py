@@ -44,11 +44,12 @@ def test_row_of_all_fields() -> None:
     row = {
         "for_whom": "  Harbour   choir ", "pattern": "Wave", "colourway": "Dusk", "size": "Large",
         "ending": "Loop and button", "quantity": "12", "due_date": "2026-11-20", "note": " two\nlines ",
+        "distinct_lengths": "3",
     }  # fmt: skip
     line = read_row(4, row, CATALOGUE, today=TODAY, market_date=MARKET)
     assert line == GoodLine(
         number=4, for_whom="Harbour choir", pattern_key=1, colourway_key=12, size_key=3, ending_key=2,
-        quantity=12, due_date=date(2026, 11, 20), note="two\nlines", cells=tuple(row.values()),
+        quantity=12, due_date=date(2026, 11, 20), note="two\nlines", distinct_lengths=3, cells=tuple(row.values()),
     )  # fmt: skip
 
 
@@ -257,9 +258,21 @@ def test_all_problems_of_a_row_come_at_once_in_the_order_of_the_columns() -> Non
     line = read_row(7, row, CATALOGUE, today=TODAY, market_date=None)
     assert isinstance(line, BadLine)
     fields = [problem.field for problem in line.problems]
-    assert fields == ["for_whom", "pattern", "size", "ending", "quantity", "due_date", "note"]
+    assert fields == [field for field in DEFAULT_ORDER if field != "colourway"]
     assert all(problem.message.startswith("Row 7: ") for problem in line.problems)
     assert line.cells == tuple(row.values())
+
+
+@pytest.mark.parametrize(("text", "lengths"), [("", None), ("1", 1), (" 2 ", 2), ("60", 60)])
+def test_lengths_of_a_line(text: str, lengths: int | None) -> None:
+    assert good(distinct_lengths=text).distinct_lengths == lengths
+
+
+@pytest.mark.parametrize("text", ["0", "61", "-1", "2.5", "two", "1e3", "9" * 400])
+def test_lengths_that_are_no_number_are_told(text: str) -> None:
+    (problem,) = bad(distinct_lengths=text).problems
+    assert problem.field == "distinct_lengths"
+    assert "are not a whole number from 1 to 60" in problem.message
 
 
 def test_nothing_in_the_workshop_yet() -> None:
@@ -285,7 +298,7 @@ def test_lines_of_a_list_with_columns_in_another_order() -> None:
     reading = read_lines(table, CATALOGUE, today=TODAY, market_date=MARKET)
     (line,) = reading.good
     assert (line.number, line.size_key, line.pattern_key, line.quantity) == (2, 3, 3, 2)
-    assert line.cells == ("", "Rope walk", "", "Large", "", "2", "", "")
+    assert line.cells == ("", "Rope walk", "", "Large", "", "2", "", "", "")
     assert [wrong.number for wrong in reading.bad] == [4]
     assert reading.ignored_columns == ("Price",)
     assert reading.notices == ("Left out, with nothing in the columns that are read: row 3.",)

@@ -56,7 +56,9 @@ def test_every_piece_stands_once_in_cutting_order(paper):
     document = large_document(paper)
     assert listed(document) == expected_cuts(sheet)
     assert overlapping(runs(document)) == []
-    assert f"{len(expected_cuts(sheet))} pieces in 6 shades" in all_text(document)
+    lengths = len({length for length, _ in expected_cuts(sheet)})
+    answer = f"{len(expected_cuts(sheet))} pieces of {lengths} lengths in 6 shades"
+    assert answer in all_text(document)
 
 
 @PAPER_CASES
