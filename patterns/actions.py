@@ -1,9 +1,10 @@
 """Every write to the pattern library that touches more than one row."""
 
 from collections.abc import Mapping
-from dataclasses import asdict
+from dataclasses import asdict, replace
 from decimal import Decimal
 from fractions import Fraction
+from itertools import chain, count
 from typing import Any
 
 from django.db import IntegrityError, models, transaction
@@ -12,6 +13,7 @@ from django.db.models.deletion import ProtectedError
 from inventory.models import Shade, Workshop
 from patterns.cut_lengths import CutRule
 from patterns.defaults import BUTTONED_ENDINGS, DEFAULT_ENDINGS, DEFAULT_SIZES, SizeDefault
+from patterns.knots import MAX_NAME_LENGTH
 from patterns.models import (
     Colourway,
     ColourwayShade,
@@ -22,7 +24,7 @@ from patterns.models import (
     PatternVersion,
     Size,
 )
-from patterns.pattern_file import read_pattern
+from patterns.pattern_file import read_pattern, write_pattern
 from patterns.techniques import Pattern as PatternCore
 from patterns.techniques import usual_thread_mm
 
@@ -78,6 +80,29 @@ def change_pattern(
     gone = ColourwayShade.objects.filter(colourway__pattern=pattern)
     gone.exclude(slot__in=definition.used_slots).delete()
     return pattern
+
+
+@transaction.atomic
+def keep_variant(*, pattern: Pattern, text: str, by: Any = None) -> Pattern:
+    """Add a variant of a pattern, under a free name, with the colourways that fit it.
+
+    Raises PatternError where the text is no pattern.
+    """
+    definition = read_pattern(text)
+    named = replace(definition, name=_free_name(definition.name))
+    kept = add_pattern(text=write_pattern(named), by=by)
+    for colourway in pattern.colourways.prefetch_related("shades__shade"):
+        shades = colourway.shades_by_slot()
+        if set(definition.used_slots) == shades.keys():
+            set_colourway(pattern=kept, name=colourway.name, shades=shades)
+    return kept
+
+
+def _free_name(name: str) -> str:
+    """Number a name that is taken: "Harbour stripes, even 2"."""
+    taken = {other.lower() for other in Pattern.objects.values_list("name", flat=True)}
+    tries = (f"{name[: MAX_NAME_LENGTH - 6]} {number}" for number in count(2))
+    return next(free for free in chain([name], tries) if free.lower() not in taken)
 
 
 def _keep_version(pattern: Pattern, by: Any) -> None:

@@ -2,7 +2,7 @@
 
 from django.urls import path
 
-from patterns.views import colourways, editor, endings, gauges, library, pattern, sizes
+from patterns.views import analysis, colourways, editor, endings, gauges, library, pattern, sizes
 
 urlpatterns = [
     path("", library.pattern_list, name="pattern_list"),
@@ -13,6 +13,8 @@ urlpatterns = [
     path("<key:pk>/edit/", editor.pattern_edit, name="pattern_edit"),
     path("<key:pk>/edit/text/", pattern.pattern_edit_text, name="pattern_edit_text"),
     path("<key:pk>/pattern.toml", pattern.pattern_file, name="pattern_file"),
+    path("<key:pk>/variants/", analysis.pattern_variants, name="pattern_variants"),
+    path("<key:pk>/variants/keep/", analysis.pattern_variant_keep, name="pattern_variant_keep"),
     path("<key:pk>/remove/", pattern.pattern_remove, name="pattern_remove"),
     path("<key:pattern_pk>/colourways/new/", colourways.colourway_new, name="colourway_new"),
     path("colourways/<key:pk>/edit/", colourways.colourway_edit, name="colourway_edit"),

@@ -19,6 +19,7 @@ from patterns.reading import written_rows
 from patterns.strand_answer import NoAnswer, answer_for
 from patterns.techniques import Pattern as PatternCore
 from patterns.views._shared import note_refusal, posted, removed, render_either, why_not_removed
+from patterns.views.analysis import what_it_does
 
 
 @require_safe
@@ -74,6 +75,7 @@ def _strands(
         )
     except NoAnswer as error:
         return context | {"why_not": str(error)}
+    context |= what_it_does(definition, answer, chosen, length_mm, shades)
     return context | {
         "answer": answer,
         "knotted_length_mm": length_mm,
