@@ -49,6 +49,22 @@ def contrast_ratio(first: str, second: str) -> float:
     return (lighter + 0.05) / (darker + 0.05)
 
 
+def ink_on(colour: str) -> str:
+    """Return black or white, whichever stands out more from a thread of this colour.
+
+    Raises
+    ------
+    ColourError
+        When the colour is not written as #rrggbb.
+
+    Notes
+    -----
+    One of the two always reaches 4.5 : 1, the contrast that WCAG 2.2, success criterion 1.4.3,
+    asks of text: their product is 21, and the square root of it is 4.58.
+    """
+    return max("#000000", "#ffffff", key=lambda ink: contrast_ratio(colour, ink))
+
+
 def working_colours(colour: str) -> str:
     """Return the tone for outlines and lines on a thread of this colour.
 

@@ -66,15 +66,24 @@ def draw_band(
     """
     if not 1 <= rows <= MAX_DRAWN_ROWS:
         raise DrawingError(f"Draw 1 to {MAX_DRAWN_ROWS} rows, not {rows}.")
-    slot_colours = _slot_colours(pattern, colours)
+    chosen = slot_colours(pattern, colours)
     if isinstance(pattern, GridPattern):
-        drawing = _draw_grid(pattern, rows, slot_colours)
+        drawing = _draw_grid(pattern, rows, chosen)
     else:
-        drawing = _draw_diagonal(pattern, rows, slot_colours)
+        drawing = _draw_diagonal(pattern, rows, chosen)
     return turned(drawing) if layout == "horizontal" else drawing
 
 
-def _slot_colours(pattern: Pattern, colours: Mapping[str, str]) -> dict[str, str]:
+def slot_colours(pattern: Pattern, colours: Mapping[str, str]) -> dict[str, str]:
+    """Return the colour of every slot of a pattern, checked, in small letters.
+
+    Raises
+    ------
+    DrawingError
+        When a slot has no colour.
+    ColourError
+        When a colour is not written as #rrggbb.
+    """
     for slot in pattern.used_slots:
         if slot not in colours:
             raise DrawingError(f"Slot {slot} has no colour. Choose one.")

@@ -2,7 +2,7 @@
 
 from dataclasses import dataclass
 from math import sqrt
-from typing import TypeVar
+from typing import Literal, TypeVar
 
 # A strand of a diagonal pattern takes one unit of the width: sqrt(2) thread diameters.
 THREAD_WIDTH = 1 / sqrt(2)
@@ -67,9 +67,30 @@ class Line:
     slot: str
 
 
+@dataclass(frozen=True)
+class Stroke:
+    """A line through several points, each (x, y)."""
+
+    points: tuple[tuple[float, float], ...]
+    width: float
+    colour: str
+
+
+@dataclass(frozen=True)
+class Label:
+    """One line of text, `y` its base line; without a colour it is written in the page's ink."""
+
+    x: float
+    y: float
+    text: str
+    size: float
+    anchor: Literal["start", "middle", "end"] = "start"
+    colour: str | None = None
+
+
 Knotted = Square | Block
 Shape = Knotted | Line
-ShapeKind = TypeVar("ShapeKind", Knotted, Line)
+ShapeKind = TypeVar("ShapeKind", Knotted, Line, Stroke)
 
 
 @dataclass(frozen=True)
@@ -84,6 +105,30 @@ class Drawing:
     width: float
     height: float
     shapes: tuple[Shape, ...]
+
+
+@dataclass(frozen=True)
+class Chart:
+    """A working chart on a ground of `width` by `height`; y grows downwards.
+
+    Parameters
+    ----------
+    threads
+        Runs of thread between the knots, drawn first and outlined as knots are.
+    knots
+        The knots or cells.
+    ways
+        What is drawn over the knots, in a colour that stands out from theirs.
+    labels
+        Letters, numbers and words.
+    """
+
+    width: float
+    height: float
+    threads: tuple[Stroke, ...]
+    knots: tuple[Knotted, ...]
+    ways: tuple[Stroke, ...]
+    labels: tuple[Label, ...]
 
 
 def turned(drawing: Drawing) -> Drawing:

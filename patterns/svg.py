@@ -5,7 +5,17 @@ from collections.abc import Iterable
 from xml.sax.saxutils import escape, quoteattr
 
 from patterns.colours import working_colours
-from patterns.shapes import OUTLINE_WIDTH, Block, Drawing, Knotted, Line, ShapeKind
+from patterns.shapes import (
+    OUTLINE_WIDTH,
+    Block,
+    Chart,
+    Drawing,
+    Knotted,
+    Label,
+    Line,
+    ShapeKind,
+    Stroke,
+)
 
 _NOT_IN_XML = re.compile("[^\t\n\r\u0020-\ud7ff\ue000-\ufffd\U00010000-\U0010ffff]")
 
@@ -37,13 +47,7 @@ def to_svg(
     The knots of one colour are one path: a long band stays small. Lines come first, as a
     wide stroke in the outline's tone under a narrower one in the colour.
     """
-    words = _NOT_IN_XML.sub("", title)
-    parts = [
-        '<svg xmlns="http://www.w3.org/2000/svg" role="img"'
-        f" aria-label={quoteattr(words)}{_size(drawing, height_px, width_px)}"
-        f' viewBox="0 0 {_short(drawing.width)} {_short(drawing.height)}">',
-        f"<title>{escape(words)}</title>",
-    ]
+    parts = [_opening(drawing, title, _size(drawing, height_px, width_px))]
     lines = [shape for shape in drawing.shapes if isinstance(shape, Line)]
     knotted = [shape for shape in drawing.shapes if not isinstance(shape, Line)]
     for colour, same_colour in _by_colour(lines).items():
@@ -53,7 +57,79 @@ def to_svg(
     return "".join([*parts, "</svg>"])
 
 
-def _size(drawing: Drawing, height_px: float | None, width_px: float | None) -> str:
+def chart_to_svg(chart: Chart, *, title: str, unit_px: float) -> str:
+    """Write a working chart as one SVG element.
+
+    Parameters
+    ----------
+    chart
+        The chart.
+    title
+        What it shows, for people who do not see it.
+    unit_px
+        Size of the chart's unit [px].
+
+    Returns
+    -------
+    `<svg>...</svg>` with presentation attributes only; its words are in the colour and the
+    typeface of the text around it.
+    """
+    size = _size(chart, None, chart.width * unit_px)
+    parts = [_opening(chart, title, size)]
+    for colour, threads in _by_colour(chart.threads).items():
+        parts.extend(_thread_paths(colour, threads))
+    for colour, knots in _by_colour(chart.knots).items():
+        parts.append(_knotted_path(colour, knots))
+    for way in _alike(chart.ways):
+        parts.append(_stroke_path(way, way[0].colour, way[0].width))
+    parts.extend(_text(label) for label in chart.labels)
+    return "".join([*parts, "</svg>"])
+
+
+def _opening(ground: Drawing | Chart, title: str, size: str) -> str:
+    words = _NOT_IN_XML.sub("", title)
+    return (
+        '<svg xmlns="http://www.w3.org/2000/svg" role="img"'
+        f" aria-label={quoteattr(words)}{size}"
+        f' viewBox="0 0 {_short(ground.width)} {_short(ground.height)}">'
+        f"<title>{escape(words)}</title>"
+    )
+
+
+def _alike(strokes: Iterable[Stroke]) -> Iterable[list[Stroke]]:
+    grouped: dict[tuple[str, float], list[Stroke]] = {}
+    for stroke in strokes:
+        grouped.setdefault((stroke.colour, stroke.width), []).append(stroke)
+    return grouped.values()
+
+
+def _thread_paths(colour: str, threads: list[Stroke]) -> list[str]:
+    width = threads[0].width
+    return [
+        _stroke_path(threads, working_colours(colour), width + OUTLINE_WIDTH),
+        _stroke_path(threads, colour, width - OUTLINE_WIDTH),
+    ]
+
+
+def _stroke_path(strokes: list[Stroke], colour: str, width: float) -> str:
+    path = "".join(
+        "M" + "L".join(f"{_short(x)} {_short(y)}" for x, y in stroke.points) for stroke in strokes
+    )
+    return (
+        f'<path d="{path}" fill="none" stroke="{colour}" stroke-width="{_short(width)}"'
+        ' stroke-linejoin="round" stroke-linecap="round"/>'
+    )
+
+
+def _text(label: Label) -> str:
+    anchor = "" if label.anchor == "start" else f' text-anchor="{label.anchor}"'
+    return (
+        f'<text x="{_short(label.x)}" y="{_short(label.y)}" font-size="{_short(label.size)}"'
+        f'{anchor} fill="{label.colour or "currentColor"}">{escape(label.text)}</text>'
+    )
+
+
+def _size(drawing: Drawing | Chart, height_px: float | None, width_px: float | None) -> str:
     if height_px is not None:
         width_px = height_px * drawing.width / drawing.height
     elif width_px is not None:
