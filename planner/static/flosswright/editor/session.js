@@ -1,6 +1,8 @@
 // One session of editing: the state, and every step back to its beginning, kept in the browser so
 // that a reload, a crash or a lost connection loses neither the work nor the way back.
 
+import { KeptWork, browserStorage } from "./kept_work.js";
+
 const MOST_STEPS = 5000;
 const STORE_AFTER_MS = 200;
 const FORMAT = 1;
@@ -44,24 +46,30 @@ export function applied(state, step, forward = true) {
   return next;
 }
 
+const endOf = ({ start, steps, at }) =>
+  steps.slice(0, at).reduce((state, step) => applied(state, step), start);
+
 const isEmpty = (step) =>
   step.removed.length === 0 && step.added.length === 0 && Object.keys(step.fields).length === 0;
 
 export class EditingSession {
   // `start` is the pattern as the server has it, at `version` (null for one that is not saved yet).
-  constructor({ key, start, version = null, storage = window.localStorage, onChange = () => {} }) {
-    this.key = `flosswright-editing-${key}`;
+  constructor({ key, start, version = null, storage = browserStorage(), onChange = () => {} }) {
     this.storage = storage;
     this.onChange = onChange;
-    this.identity = `${Date.now()}-${Math.random()}`;
     this.restored = null;
-    this.openElsewhere = false;
+    this.isKept = true;
+    this._timer = null;
+    this._keepUnder(key);
     this._begin(start, version);
     this._restore();
-    this._timer = null;
-    window.addEventListener("pagehide", () => this.store());
+    window.addEventListener("pagehide", () => { this.store(); this.kept.tell("gone"); });
+    window.addEventListener("pageshow", (event) => event.persisted && this.kept.tell("opened"));
     document.addEventListener("visibilitychange", () => document.hidden && this.store());
-    window.addEventListener("storage", (event) => this._noticeOthers(event));
+  }
+
+  _keepUnder(key) {
+    this.kept = new KeptWork(key, this.storage, () => this.onChange(this));
   }
 
   _begin(start, version) {
@@ -71,7 +79,10 @@ export class EditingSession {
     this.state = start;
     this.steps = [];
     this.at = 0;
+    this.droppedSteps = 0;
   }
+
+  get isOpenElsewhere() { return this.kept.others.size > 0; }
 
   get canUndo() { return this.at > 0; }
   get canRedo() { return this.at < this.steps.length; }
@@ -85,10 +96,15 @@ export class EditingSession {
     if (isEmpty(step)) return false;
     this.steps.length = this.at;
     this.steps.push(step);
-    if (this.steps.length > MOST_STEPS) this.start = applied(this.start, this.steps.shift());
+    if (this.steps.length > MOST_STEPS) this._forgetOldest();
     this.at = this.steps.length;
     this._changed(next);
     return true;
+  }
+
+  _forgetOldest() {
+    this.start = applied(this.start, this.steps.shift());
+    this.droppedSteps = Math.max(0, this.droppedSteps - 1);
   }
 
   undo() {
@@ -116,10 +132,11 @@ export class EditingSession {
     this.onChange(this);
   }
 
-  // A pattern that was new has a name of its own now: its steps go along.
+  // A pattern that was new has a place of its own now: its steps go along.
   moveTo(key) {
-    this.storage.removeItem(this.key);
-    this.key = `flosswright-editing-${key}`;
+    this.kept.drop();
+    this.kept.close();
+    this._keepUnder(key);
     this.store();
   }
 
@@ -127,7 +144,7 @@ export class EditingSession {
   forget(start, version) {
     this._begin(start, version);
     this.restored = null;
-    this.storage.removeItem(this.key);
+    this.kept.drop();
     this.onChange(this);
   }
 
@@ -142,23 +159,33 @@ export class EditingSession {
   store() {
     clearTimeout(this._timer);
     if (!this.isDirty && this.steps.length === 0) return;
-    let dropped = 0;
-    for (;;) {
-      try {
-        this.storage.setItem(this.key, this._asText(dropped));
-        return;
-      } catch (error) {
-        if (dropped >= this.at) return;
-        dropped = Math.min(this.at, Math.max(10, dropped * 2));
-      }
+    if (!this.isDirty && this.kept.isBeside) {
+      this.kept.drop();
+      return;
     }
+    let dropped = Math.min(this.droppedSteps, this.at);
+    while (!this._wrote(dropped) && dropped < this.at) {
+      dropped = Math.min(this.at, Math.max(10, dropped * 2));
+    }
+    this.droppedSteps = dropped;
+  }
+
+  _wrote(dropped) {
+    const wasKept = this.isKept;
+    try {
+      this.kept.write(this._asText(dropped));
+      this.isKept = true;
+    } catch {
+      this.isKept = false;
+    }
+    if (this.isKept !== wasKept) this.onChange(this);
+    return this.isKept;
   }
 
   _asText(dropped) {
-    const start = this.steps.slice(0, dropped).reduce((state, step) => applied(state, step), this.start);
+    const start = endOf({ start: this.start, steps: this.steps, at: dropped });
     return JSON.stringify({
       format: FORMAT,
-      identity: this.identity,
       when: new Date().toISOString(),
       version: this.version,
       saved: this.saved,
@@ -168,32 +195,34 @@ export class EditingSession {
     });
   }
 
+  // Unsaved work comes first, else the way back of what was saved.
   _restore() {
-    const kept = this._kept();
-    if (kept === null) return;
-    const state = kept.steps.slice(0, kept.at).reduce((before, step) => applied(before, step), kept.start);
-    const isWork = JSON.stringify(state) !== kept.saved;
-    // Saved elsewhere since, and nothing of ours is unsaved: the server's pattern is the newer one.
-    if (!isWork && kept.version !== this.version) return;
-    Object.assign(this, { start: kept.start, steps: kept.steps, at: kept.at, state });
-    if (isWork) {
-      this.restored = { when: new Date(kept.when), version: kept.version, isOlder: kept.version !== this.version };
-      this.version = kept.version;
-    }
+    const found = this.kept.found().flatMap((kept) => this._readable(kept));
+    const isWork = ({ work, state }) => JSON.stringify(state) !== work.saved;
+    const chosen = found.find(isWork);
+    if (chosen) this._bringBack(chosen);
+    else if (found[0]?.work.version === this.version) this._takeUp(found[0]);
   }
 
-  _kept() {
+  // What another version of this page kept, or something else spoilt, is no work.
+  _readable({ place, work }) {
     try {
-      const kept = JSON.parse(this.storage.getItem(this.key));
-      return kept?.format === FORMAT && kept.start.technique === this.start.technique ? kept : null;
+      if (work.format !== FORMAT || work.start.technique !== this.start.technique) return [];
+      return [{ place, work, state: endOf(work) }];
     } catch {
-      return null;
+      return [];
     }
   }
 
-  _noticeOthers(event) {
-    if (event.key !== this.key || event.newValue === null) return;
-    this.openElsewhere = true;
-    this.onChange(this);
+  _takeUp({ place, work, state }) {
+    this.kept.place = place;
+    Object.assign(this, { start: work.start, steps: work.steps, at: work.at, state });
+  }
+
+  _bringBack(chosen) {
+    const { version, when } = chosen.work;
+    this.restored = { when: new Date(when), isOlder: version !== this.version };
+    this._takeUp(chosen);
+    this.version = version;
   }
 }
