@@ -33,7 +33,7 @@ from patterns.knots import (
 )
 from patterns.models import KnottedLength, Pattern
 from patterns.pattern_file import write_pattern
-from patterns.pictures import MOST_PICTURE_ROWS, band_picture, neutral_colours
+from patterns.pictures import MOST_PICTURE_ROWS, band_picture
 from patterns.strand_answer import NoAnswer, answer_for
 from patterns.techniques import Pattern as PatternCore
 
@@ -109,12 +109,23 @@ def _page(request: HttpRequest, definition: PatternCore, pattern: Pattern | None
             "version": pattern.version if pattern else None,
             "preview_url": reverse("pattern_preview"),
             "save_url": request.path,
-            "colours": neutral_colours(definition)
-            | {slot: shade.colour for slot, shade in shades.items()},
+            "colours": {slot: shade.colour for slot, shade in shades.items()},
             "names": {slot: str(shade) for slot, shade in shades.items()},
+            "colourways": _colourways(pattern),
         },
     }
     return render(request, "patterns/editor.html", context)
+
+
+def _colourways(pattern: Pattern | None) -> dict[int, dict[str, dict[str, str]]]:
+    ways = {way.pk: way.shades_by_slot() for way in pattern.colourways.all()} if pattern else {}
+    return {
+        pk: {
+            "colours": {slot: shade.colour for slot, shade in shades.items()},
+            "names": {slot: str(shade) for slot, shade in shades.items()},
+        }
+        for pk, shades in ways.items()
+    }
 
 
 def _key(pattern: Pattern | None, definition: PatternCore) -> str:

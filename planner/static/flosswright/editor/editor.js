@@ -11,6 +11,10 @@ const page = document.querySelector("[data-editor]");
 const find = (selector) => page.querySelector(selector);
 const given = JSON.parse(document.getElementById("editor-data").textContent);
 
+// Shown first, because a board fits its size to its box.
+find("[data-begin]").hidden = true;
+find("[data-bench]").hidden = false;
+
 const session = new EditingSession({
   key: given.key, start: given.state, version: given.version, onChange: () => show(),
 });
@@ -59,7 +63,8 @@ function showNotices() {
     find("[data-restored-words]").textContent = `Your unsaved work of ${when} is back, with every step.` +
       (restored.isOlder ? " The pattern was saved elsewhere since you began it." : "");
   }
-  find("[data-elsewhere]").hidden = !session.openElsewhere;
+  find("[data-elsewhere]").hidden = !session.isOpenElsewhere;
+  find("[data-not-kept]").hidden = session.isKept;
 }
 
 function showProblem(problem) {
@@ -85,7 +90,8 @@ async function save({ asNew = false } = {}) {
   const state = session.state;
   tell("Saving …");
   try {
-    const { status, data } = await post(given.save_url, { state, version: session.version, as_new: asNew });
+    const { status, data } = await post(given.save_url,
+      JSON.stringify({ state, version: session.version, as_new: asNew }));
     if (status === 200) saved(data, state);
     else refused(status, data);
   } catch (error) {
@@ -160,11 +166,15 @@ for (const field of page.querySelectorAll("[data-field]")) {
     session.do({ ...session.state, [name]: field.value }, `Changed the ${field.dataset.words}`);
   });
 }
+// A colourway that is chosen colours the board too.
+find("[data-choice]").addEventListener("change", ({ target }) => {
+  if (target.name !== "colourway") return;
+  Object.assign(board, given.colourways[target.value] ?? { colours: {}, names: {} });
+  board.render();
+});
 page.addEventListener("click", clicked);
 document.addEventListener("keydown", pressed);
 window.addEventListener("beforeunload", (event) => {
   if (session.isDirty) event.preventDefault();
 });
-find("[data-begin]").hidden = true;
-find("[data-bench]").hidden = false;
 show();

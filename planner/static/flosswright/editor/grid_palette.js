@@ -1,9 +1,10 @@
 // The colours to paint with: one choice a slot, with its swatch, its letter and its shade.
 
 import { inkOn } from "./grid_chart.js";
+import { neutralColours } from "./tones.js";
 
 const LETTERS = [..."ABCDEFGHIJKLMNOPQRSTUVWXYZ"];
-// Slots that have no shade yet are drawn in tones of undyed thread; their letters tell them apart.
+// Slots that are not tied yet are shown in tones of undyed thread; their letters tell them apart.
 const NO_SHADE = ["#f1e9da", "#5c5448", "#a8a297", "#7d7468", "#cdc4b4"];
 
 export class GridPalette {
@@ -20,8 +21,10 @@ export class GridPalette {
   }
 
   get allColours() {
+    const { background, rows } = this.board.state;
+    const shown = { ...neutralColours([background, ...rows.flat()]), ...this.board.colours };
     return Object.fromEntries(LETTERS.map((slot, place) =>
-      [slot, this.board.colours[slot] ?? NO_SHADE[place % NO_SHADE.length]]));
+      [slot, shown[slot] ?? NO_SHADE[place % NO_SHADE.length]]));
   }
 
   get slots() {

@@ -3,27 +3,29 @@
 import * as steps from "./diagonal_steps.js";
 import { KnotChart } from "./knot_chart.js";
 import { StepRefused } from "./step_refused.js";
+import { neutralColours } from "./tones.js";
 import { leftOf } from "./walk.js";
 
 const CYCLE = { f: "b", b: "fb", fb: "bf", bf: "f" };
 const NAMES = {
   f: "forward", b: "backward", fb: "forward-backward", bf: "backward-forward",
 };
-const NO_SHADE = "#a8a297";
-const LETTERS = [..."ABCDEFGHIJKLMNOPQRSTUVWXYZ"];
-const UNITS_PX = [10, 13, 17, 22, 28, 36];
+const UNITS_PX = [10, 13, 17, 24, 30, 38];
+const LEAST_UNIT_PX = 24;
 const TAP_PX = 8; // a finger that moves farther scrolls
+
+const pairWords = (row) => `rows ${steps.pairOf(row) + 1} and ${steps.pairOf(row) + 2}`;
 
 export class KnotBoard {
   // element: templates/patterns/_editor_diagonal.html; colours: "#rrggbb" by slot; names: the shade
   // of each slot in words, where there is one.
   constructor(session, element, { colours, names = {} }) {
-    Object.assign(this, { session, element, names });
-    this.colours = Object.fromEntries(LETTERS.map((slot) => [slot, colours[slot] ?? NO_SHADE]));
+    Object.assign(this, { session, element, colours, names });
     this.cursor = { row: 0, place: 0 };
     this.chart = new KnotChart(this.find("[data-chart]"));
     this.chart.svg.setAttribute("aria-label", "Chart of the pattern, knot by knot");
     this.chart.svg.setAttribute("aria-describedby", this.find("[data-keys]").id);
+    this.fitSize();
     this.listen();
     this.render();
   }
@@ -40,6 +42,10 @@ export class KnotBoard {
     return this.find("[name=knot-brush]:checked").value;
   }
 
+  get fillKnot() {
+    return this.brush === "next" ? "f" : this.brush;
+  }
+
   listen() {
     const { svg } = this.chart;
     svg.addEventListener("pointerdown", (event) => { this.down = [event.clientX, event.clientY]; });
@@ -49,10 +55,17 @@ export class KnotBoard {
     this.find("[data-slot]").addEventListener("change", (event) => {
       this.setSlot(this.strandHere(), event.target.value);
     });
+    this.element.addEventListener("change", () => this.showPlace());
     this.element.addEventListener("click", (event) => {
       const button = event.target.closest("[data-view]");
       if (button) this.changeView(button.dataset.view);
     });
+  }
+
+  // As large as the box allows, and never too small for a finger.
+  fitSize() {
+    const fitting = UNITS_PX.filter((unit) => unit >= LEAST_UNIT_PX && this.chart.widthFor(this.state, unit) <= this.chart.box.clientWidth);
+    this.chart.unitPx = fitting.at(-1) ?? LEAST_UNIT_PX;
   }
 
   changeView(name) {
@@ -64,13 +77,22 @@ export class KnotBoard {
 
   render() {
     this.keepCursorInside();
-    this.chart.show(this.state, this.colours);
+    this.chart.show(this.state, { ...neutralColours(this.state.slots), ...this.colours });
     this.chart.showCursor(this.cursor);
+    this.showPlace();
+  }
+
+  // The tools name what they are about.
+  showPlace() {
     const strand = this.strandHere();
+    const row = this.cursor.row ?? 0;
     this.find("[data-strand]").textContent = strand + 1;
     this.find("[data-slot]").value = this.state.slots[strand];
     this.find("[data-count=strands]").textContent = this.state.slots.length;
     this.find("[data-count=rows]").textContent = this.state.rows.length;
+    this.find("[data-row]").textContent = row + 1;
+    this.find("[data-fill]").textContent = this.fillKnot;
+    for (const words of this.element.querySelectorAll("[data-pair]")) words.textContent = pairWords(row);
   }
 
   keepCursorInside() {
@@ -243,8 +265,7 @@ export class KnotBoard {
   step(name) {
     const row = this.cursor.row ?? 0;
     const slot = this.find("[data-slot]").value;
-    const knot = this.brush === "next" ? "f" : this.brush;
-    const pair = `rows ${steps.pairOf(row) + 1} and ${steps.pairOf(row) + 2}`;
+    const pair = pairWords(row);
     const named = {
       "strand-left": ["Added a strand at the left", (state) => steps.addLeftStrand(state, slot)],
       "strand-right": ["Added a strand at the right", (state) => steps.addRightStrand(state, slot)],
@@ -253,14 +274,14 @@ export class KnotBoard {
       "rows-after": [`Added two rows after ${pair}`, (state) => steps.addRows(state, row)],
       "rows-copy": [`Copied ${pair}`, (state) => steps.copyRows(state, row)],
       "rows-out": [`Took out ${pair}`, (state) => steps.removeRows(state, row)],
-      "row-fill": [`Row ${row + 1}: all ${NAMES[knot]}`, (state) => steps.fillRow(state, row, knot)],
+      "row-fill": [`Row ${row + 1}: all ${NAMES[this.fillKnot]}`, (state) => steps.fillRow(state, row, this.fillKnot)],
       "mirror": ["Mirrored left for right", steps.mirror],
       "begin-later": ["Begins two rows later", steps.beginLater],
       "begin-earlier": ["Begins two rows earlier", steps.beginEarlier],
       "colours-left": ["Moved the colours to the left", (state) => steps.shiftColours(state, -1)],
       "colours-right": ["Moved the colours to the right", (state) => steps.shiftColours(state, 1)],
-      "repeat": ["Repeated the rows", steps.repeatTwice],
-      "repeat-mirrored": ["Repeated the rows mirrored", steps.repeatMirrored],
+      "repeat": ["Wrote the repeat twice", steps.repeatTwice],
+      "repeat-mirrored": ["Wrote the repeat again mirrored", steps.repeatMirrored],
       "clear": ["Made every knot forward", steps.clear],
     }[name];
     if (!named) return false;

@@ -9,6 +9,10 @@ const EDGE_UNITS = 2.4; // room for the row numbers
 const HEAD_UNITS = 3; // room for the strands' letters
 const WORD_UNITS = 0.72; // a letter of the written row
 const MARGIN_UNITS = 0.6;
+const TAIL_UNITS = 1; // the strands hang on below
+const THREAD_UNITS = 0.5;
+const LEAST_AGAIN_ROWS = 2; // of the next repeat, in faint
+const LEAST_ROWS_SHOWN = 12;
 
 // From edge to edge of a square with its centre at 0: straight through, or bent back.
 const WAYS = {
@@ -32,61 +36,92 @@ const put = (element, name, value) => {
 export class KnotChart {
   constructor(box) {
     this.box = box;
-    this.unitPx = 22;
+    this.unitPx = 24;
     this.svg = shape(box, "svg", { class: "knot-chart", tabindex: 0, role: "application" });
     this.built = "";
   }
 
   show(state, colours) {
-    const wanted = [state.slots.length, state.rows.length].join(" ");
+    const { slots, rows } = state;
+    const wanted = [slots.length, rows.length].join(" ");
     if (wanted !== this.built) this.build(state);
     this.built = wanted;
     this.fit(state);
-    const { tied } = walk(state.slots.length, state.rows);
-    this.tied = tied;
-    state.slots.forEach((slot, strand) => this.showHead(strand, slot, colours[slot]));
-    tied.forEach((row, number) => {
-      row.forEach(({ knot, tying }, place) => {
-        this.showKnot(number, place, knot, colours[state.slots[tying]]);
-      });
-      const words = state.rows[number].join(" ") || "no knots";
-      if (this.words[number].textContent !== words) this.words[number].textContent = words;
-    });
+    const { tied, idle, order } = walk(slots.length, this.shownRows(rows));
+    const colourOf = (strand) => colours[slots[strand]];
+    this.tied = tied.slice(0, rows.length);
+    slots.forEach((slot, strand) => this.showHead(strand, slot, colours[slot]));
+    tied.forEach((row, number) => row.forEach(({ knot, tying }, place) => {
+      this.showKnot(number, place, knot, colourOf(tying));
+    }));
+    idle.forEach((row, number) => row.forEach(({ strand }, at) => put(this.edges[number][at], "fill", colourOf(strand))));
+    order.forEach((strand, position) => put(this.tails[position], "fill", colourOf(strand)));
+    rows.forEach((words, number) => this.showWords(number, words.join(" ") || "no knots"));
+  }
+
+  // The repeat, and how it goes on.
+  shownRows(rows) {
+    const again = Math.max(LEAST_AGAIN_ROWS, LEAST_ROWS_SHOWN - rows.length);
+    return Array.from({ length: rows.length + again }, (_, row) => rows[row % rows.length]);
+  }
+
+  showWords(row, words) {
+    if (this.words[row].textContent !== words) this.words[row].textContent = words;
   }
 
   // The size follows the unit, and the longest written row.
   fit(state) {
-    const longest = Math.max(8, ...state.rows.map((row) => row.join(" ").length));
-    const width = EDGE_UNITS + state.slots.length + 2 * MARGIN_UNITS + longest * WORD_UNITS;
-    const height = HEAD_UNITS + state.rows.length + 1 + 2 * MARGIN_UNITS;
+    const width = this.widthOf(state);
+    const height = HEAD_UNITS + this.rowsShown + 1 + TAIL_UNITS + MARGIN_UNITS;
     put(this.svg, "viewBox", `0 0 ${width.toFixed(2)} ${height.toFixed(2)}`);
     put(this.svg, "width", (width * this.unitPx).toFixed(1));
     put(this.svg, "height", (height * this.unitPx).toFixed(1));
+  }
+
+  widthOf(state) {
+    const longest = Math.max(15, ...state.rows.map((row) => row.join(" ").length));
+    return EDGE_UNITS + state.slots.length + 2 * MARGIN_UNITS + longest * WORD_UNITS;
+  }
+
+  widthFor(state, unitPx) {
+    return this.widthOf(state) * unitPx;
   }
 
   build(state) {
     this.svg.replaceChildren();
     const strands = state.slots.length;
     this.strands = strands;
-    const threads = shape(this.svg, "g", { class: "knot-threads", "aria-hidden": "true" });
-    const knots = shape(this.svg, "g", { class: "knot-squares", "aria-hidden": "true" });
-    const texts = shape(this.svg, "g", { class: "knot-texts", "aria-hidden": "true" });
-    this.cursor = shape(this.svg, "g", { class: "knot-cursor", "aria-hidden": "true" });
+    const shown = this.shownRows(state.rows);
+    this.rowsShown = shown.length;
+    const [threads, knots, texts, cursor] = ["threads", "squares", "texts", "cursor"]
+      .map((name) => shape(this.svg, "g", { class: `knot-${name}`, "aria-hidden": "true" }));
+    this.cursor = cursor;
+    const again = shape(knots, "g", { class: "knot-again" });
+    const ofRow = (row, parent) => (row < state.rows.length ? parent : again);
+    this.edges = walk(strands, shown).idle.map((row, number) => row.map(({ position }) =>
+      this.buildThread(ofRow(number, threads), position, this.yOf(number) - 1, this.yOf(number) + 1)));
+    this.tails = state.slots.map((_, position) =>
+      this.buildThread(again, position, this.yOf(shown.length - 1), this.yOf(shown.length) + TAIL_UNITS));
     this.heads = state.slots.map((_, strand) => this.buildHead(threads, texts, strand));
-    this.knots = state.rows.map((words, row) => words.map((_word, place) => this.buildKnot(knots, row, place)));
+    this.knots = shown.map((words, row) => words.map((_word, place) => this.buildKnot(ofRow(row, knots), row, place)));
     this.words = state.rows.map((_, row) => this.buildRowTexts(texts, row, strands));
+    const from = shape(texts, "text", { x: this.xOf(strands) + 0.5, y: this.yOf(state.rows.length) + 0.25, class: "again" });
+    from.textContent = "and from row 1 again";
+  }
+
+  buildThread(parent, position, top, bottom) {
+    const x = this.xOf(position + 0.5) - THREAD_UNITS / 2;
+    return shape(parent, "rect", { x, y: top, width: THREAD_UNITS, height: bottom - top });
   }
 
   buildHead(threads, texts, strand) {
     const x = this.xOf(strand + 0.5);
-    const line = shape(threads, "line", {
-      x1: x, x2: x, y1: HEAD_UNITS - 1, y2: HEAD_UNITS + MARGIN_UNITS + 0.5 + (strand % 2), "stroke-width": 0.5,
-    });
+    const thread = this.buildThread(threads, strand, HEAD_UNITS - 1, this.yOf(strand % 2 ? 1 : 0) - 0.5);
     const edge = shape(threads, "rect", { x: x - 0.44, y: 1, width: 0.88, height: 1.2, rx: 0.12 });
     const letter = shape(texts, "text", { x, y: 1.92, "text-anchor": "middle", class: "head" });
     const number = shape(texts, "text", { x, y: 0.75, "text-anchor": "middle", class: "number" });
     number.textContent = strand + 1;
-    return { line, edge, letter };
+    return { thread, edge, letter };
   }
 
   buildKnot(parent, row, place) {
@@ -104,8 +139,8 @@ export class KnotChart {
   }
 
   showHead(strand, slot, colour) {
-    const { line, edge, letter } = this.heads[strand];
-    put(line, "stroke", colour);
+    const { thread, edge, letter } = this.heads[strand];
+    put(thread, "fill", colour);
     put(edge, "fill", colour);
     put(letter, "fill", inkOn(colour));
     if (letter.textContent !== slot) letter.textContent = slot;
@@ -147,7 +182,7 @@ export class KnotChart {
     const about = Math.round(y - this.yOf(0));
     let best = null;
     for (let row = about - 1; row <= about + 1; row += 1) {
-      (this.knots[row] ?? []).forEach((_, place) => {
+      (this.tied[row] ?? []).forEach((_, place) => {
         const [cx, cy] = this.centreOf(row, place);
         const distance = Math.abs(cx - x) + Math.abs(cy - y);
         if (distance <= 1 && (best === null || distance < best.distance)) best = { row, place, distance };

@@ -17,11 +17,20 @@ function tieRow(words, row, order) {
   });
 }
 
-// The knots of the repeat's rows, and which strand stands at each position afterwards.
+// Positions at the edges that have no partner in a row.
+const idlePositions = (strands, row) =>
+  [0, strands - 1].filter((position) => (position < row % 2) || (position - (row % 2)) === 2 * knotsInRow(strands, row));
+
+// The knots of the rows and the strands that sit them out, and which strand stands at each
+// position afterwards.
 export function walk(strands, rows) {
   const order = Array.from({ length: strands }, (_, strand) => strand);
-  const tied = rows.map((words, row) => tieRow(words, row, order));
-  return { tied, order };
+  const idle = [];
+  const tied = rows.map((words, row) => {
+    idle.push(idlePositions(strands, row).map((position) => ({ position, strand: order[position] })));
+    return tieRow(words, row, order);
+  });
+  return { tied, idle, order };
 }
 
 // Which strand stands at each position after so many rows.
