@@ -4,15 +4,15 @@ export class NotReached extends Error {}
 
 const token = () => JSON.parse(document.body.getAttribute("hx-headers"))["x-csrftoken"];
 
-// Post JSON; gives {status, data} or {status, html}. No network, and a session that has ended, are
+// Post a text of JSON; gives {status, data} or {status, html}. No network, and a session that has ended, are
 // NotReached: nothing was saved, and it can be tried again.
-export async function post(url, body, signal) {
+export async function post(url, text, signal) {
   let response;
   try {
     response = await fetch(url, {
       method: "POST",
       headers: { "Content-Type": "application/json", "X-CSRFToken": token(), "X-Editor": "yes" },
-      body: JSON.stringify(body),
+      body: text,
       redirect: "manual",
       signal,
     });
