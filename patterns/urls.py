@@ -2,7 +2,17 @@
 
 from django.urls import path
 
-from patterns.views import analysis, colourways, editor, endings, gauges, library, pattern, sizes
+from patterns.views import (
+    analysis,
+    colourways,
+    comparison,
+    editor,
+    endings,
+    gauges,
+    library,
+    pattern,
+    sizes,
+)
 
 urlpatterns = [
     path("", library.pattern_list, name="pattern_list"),
@@ -13,6 +23,7 @@ urlpatterns = [
     path("<key:pk>/edit/", editor.pattern_edit, name="pattern_edit"),
     path("<key:pk>/edit/text/", pattern.pattern_edit_text, name="pattern_edit_text"),
     path("<key:pk>/pattern.toml", pattern.pattern_file, name="pattern_file"),
+    path("compare/", comparison.pattern_compare, name="pattern_compare"),
     path("<key:pk>/variants/", analysis.pattern_variants, name="pattern_variants"),
     path("<key:pk>/variants/keep/", analysis.pattern_variant_keep, name="pattern_variant_keep"),
     path("<key:pk>/remove/", pattern.pattern_remove, name="pattern_remove"),

@@ -20,6 +20,7 @@ from patterns.strand_answer import NoAnswer, answer_for
 from patterns.techniques import Pattern as PatternCore
 from patterns.views._shared import note_refusal, posted, removed, render_either, why_not_removed
 from patterns.views.analysis import what_it_does
+from patterns.views.comparison import others_to_compare
 
 
 @require_safe
@@ -33,6 +34,7 @@ def pattern_detail(request: HttpRequest, pk: int) -> HttpResponse:
         "choice": choice,
         "written_rows": written_rows(definition),
         "slots": definition.used_slots,
+        "others": others_to_compare(pattern),
         "colourways": colourways,
         "can_order": any(not missing for _, missing in colourways),
         "has_shades": Shade.objects.exists(),

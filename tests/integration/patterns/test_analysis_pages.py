@@ -6,7 +6,7 @@ from html import unescape
 import pytest
 from django.urls import reverse
 
-from patterns.actions import keep_variant
+from patterns.actions import change_pattern, keep_variant
 from patterns.models import Ending, Gauge, Pattern, Size
 from tests.factories import (
     make_colourway,
@@ -217,3 +217,113 @@ def test_lengths_read_as_the_maker_measures(maker, pattern):
     make_workshop(length_unit="in")
     page = read(maker.get(variants_of(pattern)))
     assert re.search(r"longest strand [\d/ ½¼¾]+ in", page)
+
+
+# --- two patterns side by side ---------------------------------------------------------------
+
+
+def compare(maker, **choice) -> str:
+    return read(maker.get(reverse("pattern_compare"), choice))
+
+
+@pytest.fixture
+def other(maker) -> Pattern:
+    return make_pattern("Ferry stripe", strands="A B B B", rows=("fb fb", "bf", "f f", "f"))
+
+
+def test_compare_page_tells_rows_slots_and_numbers(maker, pattern, other):
+    page = compare(maker, a=pattern.pk, b=other.pk)
+    assert "How do <bdi>Harbour stripes</bdi> and <bdi>Ferry stripe</bdi> differ?" in page
+    assert "2 rows are only in the second. 2 are the same." in page
+    assert "Strand 2" in page
+    assert "2 more" in page  # rows of a repeat
+    assert page.count("<svg") >= 2
+    # 110 rows: 55 of two knots, 55 of one.
+    assert ">165</summary>" in page
+
+
+def test_compare_page_marks_the_knots_that_differ(maker, pattern):
+    changed = make_pattern("Changed", strands="A A B B", rows=("fb b", "bf"))
+    page = compare(maker, a=pattern.pk, b=changed.pk)
+    assert "1 row has other knots. 1 is the same." in page
+    assert "<mark>b</mark>" in page
+    assert "<mark>fb</mark>" in page
+    assert ">knot 2</td>" in page
+
+
+def test_compare_page_of_a_pattern_with_itself_says_the_same(maker, pattern):
+    page = compare(maker, a=pattern.pk, b=pattern.pk)
+    assert "they are the same pattern" in page
+
+
+def test_compare_page_of_two_versions(maker, pattern):
+    change_pattern(
+        pattern=pattern,
+        text=pattern_text("Harbour stripes", strands="A A B B", rows=("fb b", "bf")),
+    )
+    page = compare(maker, a=pattern.pk, a_version=1, b=pattern.pk)
+    assert "<bdi>Harbour stripes, version 1</bdi>" in page
+    assert "1 row has other knots." in page
+    # The newest version is the pattern as it is.
+    assert "they are the same pattern" in compare(maker, a=pattern.pk, a_version=2, b=pattern.pk)
+    linked = read(maker.get(page_of(pattern)))
+    assert f"{reverse('pattern_compare')}?a={pattern.pk}&a_version=1&b={pattern.pk}" in linked
+
+
+@pytest.mark.parametrize("version", ["7", "x", "-1", "9" * 30, "\0"])
+def test_compare_page_for_a_version_that_is_not_there_says_so(maker, pattern, version):
+    page = compare(maker, a=pattern.pk, a_version=version, b=pattern.pk)
+    assert "That is not there any more. Choose another." in page
+
+
+@pytest.mark.parametrize("key", ["", "999", "x", "9" * 40, "\0", "1.5"])
+def test_compare_page_for_a_pattern_that_is_not_there_says_so(maker, pattern, key):
+    page = compare(maker, a=pattern.pk, b=key)
+    assert "How do two patterns differ?" in page
+    assert "Choose a pattern." in page or "That is not there" in page or "Null char" in page
+
+
+def test_compare_page_without_a_choice_asks_for_one(maker, pattern):
+    assert "Choose a pattern." in compare(maker)
+
+
+def test_compare_page_of_a_diagonal_and_a_grid(maker, pattern):
+    page = compare(maker, a=pattern.pk, b=make_grid_pattern().pk)
+    assert "One is a diagonal pattern, the other a grid" in page
+    assert "different" in page
+
+
+def test_compare_page_where_a_size_cannot_be_tied_still_shows_the_rows(maker, pattern):
+    long = make_pattern("Long", strands="A A B B", rows=("fb fb", "bf") * 90, finish="at_most")
+    page = compare(maker, a=pattern.pk, b=long.pk)
+    assert "One repeat of 180 rows is" in page
+    assert "178 rows are only in the second." in page
+
+
+def test_compare_page_for_an_unreadable_version_says_so(maker, pattern):
+    pattern.versions.create(number=9, text="not a pattern")
+    page = compare(maker, a=pattern.pk, a_version=9, b=pattern.pk)
+    assert "One of these versions cannot be read any more." in page
+
+
+def test_compare_page_needs_as_many_queries_for_many_patterns(maker, pattern, other, query_count):
+    address = f"{reverse('pattern_compare')}?a={pattern.pk}&b={other.pk}"
+    before = query_count(address), query_count(page_of(pattern))
+    for number in range(12):
+        make_pattern(f"Another {number}")
+    assert (query_count(address), query_count(page_of(pattern))) == before
+
+
+def test_compare_page_takes_no_post_and_needs_a_maker(maker, client):
+    assert maker.post(reverse("pattern_compare")).status_code == 405
+    assert client.get(reverse("pattern_compare")).status_code == 302
+
+
+def test_pattern_page_offers_the_others_to_compare_with(maker, pattern, other):
+    page = read(maker.get(page_of(pattern)))
+    assert f'<option value="{other.pk}">Ferry stripe</option>' in page
+    assert f'<option value="{pattern.pk}">' not in page.split("How does it differ")[1]
+
+
+def test_pattern_page_of_the_only_pattern_offers_no_comparison(maker, pattern):
+    assert "It is the only pattern in your library." in read(maker.get(page_of(pattern)))
