@@ -30,12 +30,11 @@ const preview = new Preview({
 let isSaving = false;
 
 function show() {
-  if (typeof board === "undefined") return;
+  preview.follow(); // the server works while the board is drawn
   board.render();
   showFields();
   showButtons();
   showNotices();
-  preview.follow();
 }
 
 function showFields() {

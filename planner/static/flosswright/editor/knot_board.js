@@ -78,6 +78,10 @@ export class KnotBoard {
   render() {
     this.keepCursorInside();
     this.chart.show(this.state, { ...neutralColours(this.state.slots), ...this.colours });
+    this.showCursor();
+  }
+
+  showCursor() {
     this.chart.showCursor(this.cursor);
     this.showPlace();
   }
@@ -144,7 +148,7 @@ export class KnotBoard {
 
   moveTo(cursor) {
     this.cursor = cursor;
-    this.render();
+    this.showCursor();
     this.chart.reveal(cursor);
     this.sayCursor();
   }
@@ -155,8 +159,8 @@ export class KnotBoard {
     if (!found || moved > TAP_PX) return;
     this.chart.svg.focus({ preventScroll: true });
     this.cursor = found;
+    this.showCursor();
     if (found.strand === undefined) this.useBrush();
-    else this.render();
     this.sayCursor();
   }
 
@@ -169,12 +173,10 @@ export class KnotBoard {
   setKnot(knot) {
     const { row, place } = this.cursor;
     this.do((state) => steps.setKnot(state, row, place, knot), `Row ${row + 1}, knot ${place + 1}: ${NAMES[knot]}`);
-    this.render();
   }
 
   setSlot(strand, slot) {
     this.do((state) => steps.setSlot(state, strand, slot), `Strand ${strand + 1}: ${this.slotWords(slot)}`);
-    this.render();
   }
 
   // Shows the knot that a message is about.

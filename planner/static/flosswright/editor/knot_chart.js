@@ -29,9 +29,16 @@ function shape(parent, name, attributes = {}) {
   return made;
 }
 
-const put = (element, name, value) => {
-  if (element.getAttribute(name) !== String(value)) element.setAttribute(name, value);
-};
+// Asking an element what it has takes longer than remembering what it was given.
+const given = new WeakMap();
+
+function put(element, name, value) {
+  const known = given.get(element) ?? {};
+  if (known[name] === value) return;
+  known[name] = value;
+  given.set(element, known);
+  element.setAttribute(name, value);
+}
 
 export class KnotChart {
   constructor(box) {
@@ -48,11 +55,12 @@ export class KnotChart {
     this.built = wanted;
     this.fit(state);
     const { tied, idle, order } = walk(slots.length, this.shownRows(rows));
+    const inks = Object.fromEntries(slots.map((slot) => [slot, inkOn(colours[slot])]));
     const colourOf = (strand) => colours[slots[strand]];
     this.tied = tied.slice(0, rows.length);
     slots.forEach((slot, strand) => this.showHead(strand, slot, colours[slot]));
     tied.forEach((row, number) => row.forEach(({ knot, tying }, place) => {
-      this.showKnot(number, place, knot, colourOf(tying));
+      this.showKnot(number, place, knot, colourOf(tying), inks[slots[tying]]);
     }));
     idle.forEach((row, number) => row.forEach(({ strand }, at) => put(this.edges[number][at], "fill", colourOf(strand))));
     order.forEach((strand, position) => put(this.tails[position], "fill", colourOf(strand)));
@@ -146,10 +154,10 @@ export class KnotChart {
     if (letter.textContent !== slot) letter.textContent = slot;
   }
 
-  showKnot(row, place, knot, colour) {
+  showKnot(row, place, knot, colour, ink) {
     const { square, way } = this.knots[row][place];
     put(square, "fill", colour);
-    put(way, "stroke", inkOn(colour));
+    put(way, "stroke", ink);
     put(way, "points", WAYS[knot] ?? "");
   }
 
