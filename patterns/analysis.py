@@ -115,6 +115,13 @@ class GridFacts:
     longest_run: StrandLength | None
     shortest_run: StrandLength | None
 
+    @property
+    def runs_are_even(self) -> bool:
+        """Whether there are runs, and all take the same to the millimetre."""
+        if self.longest_run is None or self.shortest_run is None:
+            return False
+        return round(self.longest_run.knotted_mm) == round(self.shortest_run.knotted_mm)
+
 
 @dataclass(frozen=True)
 class ShadeThread:

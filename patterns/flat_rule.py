@@ -34,9 +34,10 @@ class StrandNeed:
 
 @dataclass(frozen=True)
 class Shortfall:
-    """A strand that a flat length does not do for, and what it lacks [mm]."""
+    """Strands that a flat length does not do for, and what each of them lacks [mm]."""
 
     label: str
+    strands: int
     short_mm: int
     working: str
 
@@ -54,16 +55,19 @@ class FlatLength:
     working
         How that adds up.
     short
-        Strands that would run short, by their number.
+        Strands that would run short, those that lack most first.
     tight
         Strands that would just do, on the thread of their safety.
+    tight_strands
+        How many they are.
     """
 
     flat_mm: int
     too_much_mm: int
     working: str
     short: tuple[Shortfall, ...]
-    tight: tuple[str, ...]
+    tight: str
+    tight_strands: int
 
 
 def strand_needs(pieces: Iterable[Piece]) -> tuple[StrandNeed, ...]:
@@ -109,22 +113,54 @@ def flat_length(needs: tuple[StrandNeed, ...], flat_mm: int) -> FlatLength:
     alone, since the safety share is there to be used up. What lies between does, tightly.
     """
     over = [need for need in needs if flat_mm > need.cut_mm]
+    tight = [need.label for need in needs if need.bare_mm <= flat_mm < need.cut_mm]
     return FlatLength(
         flat_mm=flat_mm,
         too_much_mm=sum(flat_mm - need.cut_mm for need in over),
         working=_over_working(over, flat_mm),
-        short=tuple(_shortfall(need, flat_mm) for need in needs if flat_mm < need.bare_mm),
-        tight=tuple(need.label for need in needs if need.bare_mm <= flat_mm < need.cut_mm),
+        short=_shortfalls(needs, flat_mm),
+        tight=listed(tight),
+        tight_strands=len(tight),
     )
 
 
-def _shortfall(need: StrandNeed, flat_mm: int) -> Shortfall:
-    short_mm = need.bare_mm - flat_mm
+def _shortfalls(needs: tuple[StrandNeed, ...], flat_mm: int) -> tuple[Shortfall, ...]:
+    """Strands that lack the same are told together."""
+    by_need: dict[int, list[str]] = {}
+    for need in needs:
+        if flat_mm < need.bare_mm:
+            by_need.setdefault(need.bare_mm, []).append(need.label)
+    return tuple(
+        _shortfall(labels, bare_mm, flat_mm)
+        for bare_mm, labels in sorted(by_need.items(), reverse=True)
+    )
+
+
+def _shortfall(labels: list[str], bare_mm: int, flat_mm: int) -> Shortfall:
+    short_mm = bare_mm - flat_mm
     working = (
-        f"knots and ends {in_mm(need.bare_mm)}, without safety, - {in_mm(flat_mm)}"
-        f" = {in_mm(short_mm)}"
+        f"knots and ends {in_mm(bare_mm)}, without safety, - {in_mm(flat_mm)} = {in_mm(short_mm)}"
     )
-    return Shortfall(need.label, short_mm, working)
+    return Shortfall(listed(labels), len(labels), short_mm, working)
+
+
+def listed(labels: list[str]) -> str:
+    """Return "strands 1, 3 and 4", or "base strand 2 and leading strand"."""
+    kinds: dict[str, list[str]] = {}
+    for label in labels:
+        kind, _, number = label.rpartition(" ")
+        kinds.setdefault(kind if number.isdigit() else label, []).append(number)
+    return _joined([_of_one_kind(kind, numbers) for kind, numbers in kinds.items()])
+
+
+def _of_one_kind(kind: str, numbers: list[str]) -> str:
+    if not numbers[0].isdigit():
+        return kind
+    return f"{kind}{'' if len(numbers) == 1 else 's'} {_joined(numbers)}"
+
+
+def _joined(words: list[str]) -> str:
+    return " and ".join([", ".join(words[:-1]), words[-1]] if len(words) > 1 else words)
 
 
 def _over_working(over: list[StrandNeed], flat_mm: int) -> str:

@@ -15,7 +15,13 @@ from patterns.analysis import (
     thread_by_shade,
 )
 from patterns.cut_lengths import CutRule, Ending, pieces_for
-from patterns.flat_rule import FLAT_LENGTHS_MM, flat_length, smallest_flat_mm, strand_needs
+from patterns.flat_rule import (
+    FLAT_LENGTHS_MM,
+    flat_length,
+    listed,
+    smallest_flat_mm,
+    strand_needs,
+)
 from patterns.geometry import Gauge
 from patterns.grid import Carry, GridPattern
 from patterns.knots import Finish, colour_order, order_of_repeat
@@ -134,12 +140,12 @@ def test_flat_rule_by_hand():
     assert (short.flat_mm, long.flat_mm) == FLAT_LENGTHS_MM == (750, 1000)
     assert short.too_much_mm == 150
     assert [(lack.label, lack.short_mm) for lack in short.short] == [
-        ("strand 1", 332),  # 691.9 + 390 = 1081.9 -> 1082
+        ("strand 3", 363),  # 722.9 + 390 = 1112.9 -> 1113
         ("strand 2", 354),  # 1103.5 -> 1104
-        ("strand 3", 363),  # 1112.9 -> 1113
+        ("strand 1", 332),  # 1081.9 -> 1082
     ]
     assert long.too_much_mm == 400
-    assert [lack.short_mm for lack in long.short] == [82, 104, 113]
+    assert [lack.short_mm for lack in long.short] == [113, 104, 82]
     assert found.smallest_flat_mm == 1190
     # At 1190: 30 + 10 + 0 + 590 too much.
     assert found.at_smallest.too_much_mm == 630
@@ -152,8 +158,40 @@ def test_a_strand_between_its_need_and_its_cut_is_tight():
     table = strand_table(pattern, 150, GAUGE)
     needs = strand_needs(pieces_for(table, TIES, RULE))
     # 1120 is over 1113, what strand 3 needs bare, and under 1190, what it is cut to.
-    assert flat_length(needs, 1120).tight == ("strand 1", "strand 2", "strand 3")
+    assert flat_length(needs, 1120).tight == "strands 1, 2 and 3"
+    assert flat_length(needs, 1120).tight_strands == 3
     assert flat_length(needs, 1120).short == ()
+
+
+def test_strands_that_lack_the_same_are_told_together():
+    # All forward, six strands: by the symmetry of 107 rows some strands take the same.
+    table = strand_table(all_same(6), 150, GAUGE)
+    needs = strand_needs(pieces_for(table, TIES, RULE))
+    short = flat_length(needs, 750).short
+    assert sum(lack.strands for lack in short) == 6
+    assert len({lack.short_mm for lack in short}) == len(short) < 6
+    by_label = {need.label: need.bare_mm - 750 for need in needs}
+    for lack in short:
+        same = [label for label, short_mm in by_label.items() if short_mm == lack.short_mm]
+        assert lack.label == listed(same)
+
+
+@pytest.mark.parametrize(
+    ("labels", "words"),
+    [
+        ([], ""),
+        (["strand 1"], "strand 1"),
+        (["strand 1", "strand 12"], "strands 1 and 12"),
+        (["strand 1", "strand 2", "strand 3"], "strands 1, 2 and 3"),
+        (["leading strand"], "leading strand"),
+        (
+            ["base strand 1", "base strand 2", "leading strand"],
+            "base strands 1 and 2 and leading strand",
+        ),
+    ],
+)
+def test_strands_listed(labels, words):
+    assert listed(labels) == words
 
 
 @given(patterns(max_strands=9), st.sampled_from([TIES, FOLDED]), st.integers(300, 2500))
@@ -176,7 +214,8 @@ def test_flat_rule_holds_together(pattern, ending, flat_mm):
     # Every strand is over, tight, short, or exactly right.
     right = sum(need.cut_mm == flat_mm for need in needs)
     over = sum(need.cut_mm < flat_mm for need in needs)
-    assert over + right + len(found.short) + len(found.tight) == pattern.strands
+    short = sum(lack.strands for lack in found.short)
+    assert over + right + short + found.tight_strands == pattern.strands
 
 
 @given(patterns(max_strands=9), st.sampled_from([TIES, FOLDED]), st.integers(1, 3))
@@ -226,6 +265,7 @@ def test_grid_by_hand():
     total = 3 * 4 + leading + sum(runs)
     assert found.grid.leading_share == pytest.approx(leading / total, rel=1e-12)
     assert (found.grid.runs, found.grid.joins) == (2, 1)
+    assert not found.grid.runs_are_even
     assert found.grid.longest_run.knotted_mm == pytest.approx(runs[0])
     assert found.grid.shortest_run.knotted_mm == pytest.approx(runs[1])
     assert found.colours_back is None
@@ -243,6 +283,13 @@ def test_grid_of_the_background_alone_has_no_runs():
     assert (found.grid.runs, found.grid.joins) == (0, 0)
     assert found.grid.longest_run is None
     assert found.grid.shortest_run is None
+    assert not found.grid.runs_are_even
+
+
+def test_grid_of_single_cells_has_even_runs():
+    found = analysed(GridPattern("Dots", "A", (("B", "A", "B"),), carry=Carry.CUT), 2)
+    assert found.grid.runs == 2
+    assert found.grid.runs_are_even
 
 
 @given(grid_patterns(max_columns=6, max_rows=8))
