@@ -12,9 +12,9 @@ from inventory.fields import LengthField, LineField
 from inventory.models import Shade
 from inventory.page_helpers import habits
 from patterns.fields import BlockField, NumberField
-from patterns.knots import MAX_NAME_LENGTH, Finish, PatternError
+from patterns.knots import Finish, PatternError
 from patterns.models import Colourway, Ending, Gauge, Pattern, Size
-from patterns.pattern_file import MAX_FILE_BYTES, read_pattern, write_pattern
+from patterns.pattern_file import MAX_FILE_BYTES, read_pattern
 from patterns.techniques import Pattern as PatternCore
 from patterns.techniques import slot_words
 
@@ -113,62 +113,6 @@ class PatternEditForm(forms.Form):
         if "text" in cleaned:
             _read_into(self, "text", cleaned["text"])
         return cleaned
-
-
-class PatternRowsForm(forms.Form):
-    """A pattern typed by hand; it becomes the same text as a file holds."""
-
-    name = LineField(label="Name", max_length=MAX_NAME_LENGTH)
-    strands = BlockField(
-        label="Strands, left to right",
-        help_text="One letter a strand; equal letters are one colour. Six strands of three colours: A A B B C C",
-        widget=forms.TextInput(
-            attrs={"class": "code", "autocomplete": "off", "spellcheck": "false"}
-        ),
-    )
-    rows = BlockField(
-        label="Rows of one repeat",
-        help_text=(
-            "One line a row, a space between knots, an even number of rows. The first row pairs strands"
-            " 1-2, 3-4, …; the second 2-3, 4-5, …; and so on in turn."
-        ),
-        widget=forms.Textarea(attrs={"class": "code", "rows": 10, "spellcheck": "false"}),
-    )
-    finish = forms.ChoiceField(
-        label="The band ends",
-        choices=FINISH_CHOICES,
-        error_messages={"required": NOT_ON_LIST, "invalid_choice": NOT_ON_LIST},
-    )
-
-    def clean_strands(self) -> str:
-        """Read with rows that may not fit: what is wrong without naming a row is the strands."""
-        strands: str = self.cleaned_data["strands"]
-        try:
-            read_pattern(_as_file(PROBE | {"strands": strands}))
-        except PatternError as error:
-            if error.row is None:
-                raise ValidationError(str(error)) from None
-        return strands
-
-    def clean(self) -> dict[str, Any]:
-        cleaned = super().clean() or self.cleaned_data
-        if not self.errors:
-            _read_into(self, "rows", _as_file(cleaned))
-        if "definition" in cleaned:
-            cleaned["pattern_text"] = write_pattern(cleaned["definition"])
-        return cleaned
-
-
-PROBE = {"name": "Probe", "rows": "f\nf", "finish": Finish.EXACT.value}
-
-
-def _as_file(cleaned: dict[str, Any]) -> str:
-    quoted = {key: cleaned[key].replace("\\", "\\\\").replace('"', '\\"') for key in cleaned}
-    return (
-        f'name = "{quoted["name"]}"\ntechnique = "diagonal"\n'
-        f'strands = """\n{quoted["strands"]}"""\n'
-        f'rows = """\n{quoted["rows"]}"""\nfinish = "{quoted["finish"]}"\n'
-    )
 
 
 class ColourwayForm(forms.Form):

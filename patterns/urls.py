@@ -10,13 +10,16 @@ from patterns.views import (
     endings,
     gauges,
     library,
+    new,
     pattern,
     sizes,
 )
 
 urlpatterns = [
     path("", library.pattern_list, name="pattern_list"),
-    path("new/", library.pattern_new, name="pattern_new"),
+    path("new/", new.pattern_new, name="pattern_new"),
+    path("new/family/", new.pattern_family, name="pattern_family"),
+    path("new/rows/", new.pattern_rows, name="pattern_rows"),
     path("<key:pk>/", pattern.pattern_detail, name="pattern_detail"),
     path("new/draw/", editor.pattern_draw, name="pattern_draw"),
     path("preview/", editor.pattern_preview, name="pattern_preview"),

@@ -1,19 +1,16 @@
-"""The library of patterns, and adding one."""
+"""The library of patterns."""
 
 from dataclasses import dataclass
 
-from django.contrib import messages
 from django.core.paginator import Paginator
 from django.http import HttpRequest, HttpResponse
-from django.shortcuts import redirect, render
 from django.utils.safestring import SafeString, mark_safe
-from django.views.decorators.http import require_http_methods, require_safe
+from django.views.decorators.http import require_safe
 
-from patterns.actions import LibraryError, add_pattern, missing_slots
-from patterns.forms import PatternFileForm, PatternRowsForm
+from patterns.actions import missing_slots
 from patterns.models import Colourway, Pattern
 from patterns.pictures import thumbnail
-from patterns.views._shared import note_refusal, posted, render_either
+from patterns.views._shared import render_either
 
 PATTERNS_A_PAGE = 60
 LONGEST_SEARCH = 80
@@ -49,30 +46,3 @@ def _entry(pattern: Pattern) -> LibraryEntry:
     # The drawing escapes its title; everything else in it is numbers and colours.
     picture = mark_safe(thumbnail(definition, colours, title=title))
     return LibraryEntry(pattern, picture, colourways)
-
-
-@require_http_methods(["GET", "HEAD", "POST"])
-def pattern_new(request: HttpRequest) -> HttpResponse:
-    by_file = request.POST.get("way") == "file"
-    data = posted(request)
-    rows_form = PatternRowsForm(None if by_file else data, auto_id="rows_%s")
-    file_form = PatternFileForm(
-        data if by_file else None, request.FILES if by_file else None, auto_id="file_%s"
-    )
-    if request.method == "POST":
-        pattern = _added(file_form if by_file else rows_form)
-        if pattern:
-            messages.success(request, f"{pattern} is in your library.")
-            return redirect("pattern_detail", pk=pattern.pk)
-    context = {"section": "patterns", "rows_form": rows_form, "file_form": file_form}
-    return render(request, "patterns/pattern_new.html", context)
-
-
-def _added(form: PatternFileForm | PatternRowsForm) -> Pattern | None:
-    if not form.is_valid():
-        return None
-    try:
-        return add_pattern(text=form.cleaned_data["pattern_text"])
-    except LibraryError as error:
-        note_refusal(form, error)
-        return None

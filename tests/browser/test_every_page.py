@@ -48,6 +48,8 @@ PLAIN = (
     "pattern_list",
     "pattern_new",
     "pattern_draw",
+    "pattern_rows",
+    "pattern_family",
     "size_list",
     "size_new",
     "ending_list",

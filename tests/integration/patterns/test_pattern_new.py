@@ -4,33 +4,37 @@ from django.urls import reverse
 
 from patterns.models import Pattern
 from patterns.pattern_file import read_pattern
+from tests.data_builders.hostile_pastes import hostile_pastes as hostile
 from tests.factories import make_pattern, make_shade, pattern_text
 
 NEW = "/patterns/new/"
-ROWS = {"way": "rows", "name": "Quay", "strands": "A A B B", "rows": "f b\nfb", "finish": "exact"}
+BY_ROWS = "/patterns/new/rows/"
+ROWS = {"name": "Quay", "strands": "A A B B", "rows": "f b\nfb", "finish": "exact"}
 
 
 def upload(content: bytes, name: str = "quay.toml") -> dict:
-    return {"way": "file", "text": "", "file": SimpleUploadedFile(name, content)}
+    return {"text": "", "file": SimpleUploadedFile(name, content)}
 
 
 def errors(response) -> str:
     """The words of every error on the page."""
     assert response.status_code == 200
     assert not Pattern.objects.exists()
-    forms = (response.context["rows_form"], response.context["file_form"])
-    return " ".join(error for form in forms for list_ in form.errors.values() for error in list_)
+    form = response.context["form"]
+    return " ".join(error for list_ in form.errors.values() for error in list_)
 
 
 def test_pattern_new_says_the_limit_and_both_ways(maker):
     page = maker.get(NEW).content.decode()
     assert "at most 64 KB" in page
-    assert page.count("<form") == 3  # both ways, and signing out
+    for way in ("pattern_draw", "pattern_rows", "pattern_family"):
+        assert reverse(way) in page
+    assert page.count("<form") == 2  # a file, and signing out
 
 
 def test_pattern_new_pasted_is_kept_as_typed(maker):
     text = "# my own\n" + pattern_text("Quay")
-    response = maker.post(NEW, {"way": "file", "text": text.replace("\n", "\r\n")}, follow=True)
+    response = maker.post(NEW, {"text": text.replace("\n", "\r\n")}, follow=True)
     pattern = Pattern.objects.get()
     assert (pattern.name, pattern.text) == ("Quay", text)
     assert response.redirect_chain[-1][0] == reverse("pattern_detail", args=[pattern.pk])
@@ -44,7 +48,7 @@ def test_pattern_new_uploaded(maker, mark):
 
 
 def test_pattern_new_typed_becomes_the_same_text_as_a_file(maker):
-    maker.post(NEW, ROWS | {"name": 'Quay "north" \\ side', "finish": "nearest"})
+    maker.post(BY_ROWS, ROWS | {"name": 'Quay "north" \\ side', "finish": "nearest"})
     pattern = Pattern.objects.get()
     definition = read_pattern(pattern.text)
     assert definition.name == pattern.name == 'Quay "north" \\ side'
@@ -53,7 +57,7 @@ def test_pattern_new_typed_becomes_the_same_text_as_a_file(maker):
 
 
 def test_pattern_new_next_step_is_a_shade_then_a_colourway(maker):
-    page = maker.post(NEW, ROWS, follow=True).content.decode()
+    page = maker.post(BY_ROWS, ROWS, follow=True).content.decode()
     assert "you have no shades yet" in page
     assert reverse("shade_new") in page
     make_shade()
@@ -82,24 +86,24 @@ def test_pattern_new_next_step_is_a_shade_then_a_colourway(maker):
     ],
 )
 def test_pattern_new_typed_wrong_says_what_and_where(maker, change, words):
-    response = maker.post(NEW, ROWS | change)
+    response = maker.post(BY_ROWS, ROWS | change)
     assert words in errors(response)
 
 
-@pytest.mark.parametrize("strands", ["A", "A B ! C", "AB C", "A " * 61])
+@pytest.mark.parametrize("strands", ["A", "A B ! C", "A ? C", "A " * 61])
 def test_pattern_new_typed_wrong_strands_are_marked_there(maker, strands):
-    form = maker.post(NEW, ROWS | {"strands": strands}).context["rows_form"]
+    form = maker.post(BY_ROWS, ROWS | {"strands": strands}).context["form"]
     assert list(form.errors) == ["strands"]
 
 
 @pytest.mark.parametrize("strands", ["A B", "A B C", "A B C D", "A B C D E"])
 def test_pattern_new_typed_wrong_rows_are_marked_there(maker, strands):
     data = ROWS | {"strands": strands, "rows": "f f f f\nf"}
-    assert list(maker.post(NEW, data).context["rows_form"].errors) == ["rows"]
+    assert list(maker.post(BY_ROWS, data).context["form"].errors) == ["rows"]
 
 
 def test_pattern_new_typed_wrong_loses_nothing(maker):
-    page = maker.post(NEW, ROWS | {"rows": "f b\nf q"}).content.decode()
+    page = maker.post(BY_ROWS, ROWS | {"rows": "f b\nf q"}).content.decode()
     assert 'value="Quay"' in page
     assert "f b\nf q" in page
 
@@ -120,7 +124,7 @@ def test_pattern_new_typed_wrong_loses_nothing(maker):
     ],
 )
 def test_pattern_new_pasted_wrong_says_what(maker, text, words):
-    response = maker.post(NEW, {"way": "file", "text": text})
+    response = maker.post(NEW, {"text": text})
     assert words in errors(response)
     assert b"<script>'" not in response.content
 
@@ -154,15 +158,71 @@ def test_pattern_new_pasted_and_uploaded_asks_for_one(maker):
 
 def test_pattern_new_with_a_name_that_is_taken_says_so(maker):
     make_pattern("Quay")
-    response = maker.post(NEW, ROWS)
+    response = maker.post(BY_ROWS, ROWS)
     assert "A pattern called Quay is there already." in response.content.decode()
     assert Pattern.objects.count() == 1
 
 
-@pytest.mark.parametrize("data", [{}, {"way": "none"}, {"way": "file"}, {"way": ["rows", "file"]}])
-def test_pattern_new_with_nothing_typed_says_what_it_lacks(maker, data):
-    assert errors(maker.post(NEW, data))
+@pytest.mark.parametrize("data", [{}, {"way": "none"}])
+@pytest.mark.parametrize("url", [NEW, BY_ROWS])
+def test_pattern_new_with_nothing_typed_says_what_it_lacks(maker, url, data):
+    assert errors(maker.post(url, data))
 
 
 def test_pattern_new_refuses_other_methods(maker):
     assert maker.put(NEW).status_code == 405
+
+
+# --- by its rows, as makers type them --------------------------------------------------------
+
+
+def test_rows_in_the_words_of_makers(maker):
+    typed = "Row 1: F, B\n2. 1f\n(f) x2\n- # nothing here"
+    maker.post(BY_ROWS, ROWS | {"strands": "aabb", "rows": "f b\nfb\nx2"})
+    pattern = Pattern.objects.get()
+    assert [" ".join(row) for row in pattern.definition.rows] == ["f b", "fb", "f b", "fb"]
+    assert "".join(pattern.definition.slots) == "AABB"
+    problems = errors_of(maker.post(BY_ROWS, ROWS | {"name": "Other", "rows": typed}))
+    assert any("Row 4" in problem for problem in problems)
+
+
+def errors_of(response):
+    return [error for list_ in response.context["form"].errors.values() for error in list_]
+
+
+@pytest.mark.parametrize(
+    ("rows", "strands"),
+    [("f\n-", "AB"), ("f f f\nf f", "ABCDEF"), ("f f f\nb b b", "ABCDEFG"), ("2f\n1b", "ABCD")],
+)
+def test_strands_left_empty_are_as_many_as_the_rows_need(maker, rows, strands):
+    maker.post(BY_ROWS, ROWS | {"strands": "", "rows": rows})
+    assert "".join(Pattern.objects.get().definition.slots) == strands
+
+
+def test_every_row_that_is_not_understood_is_named(maker):
+    response = maker.post(BY_ROWS, ROWS | {"rows": "f huh\nffb\n9999f"})
+    page = response.content.decode()
+    for part in ("Row 1, knot 2: ", "huh", "Row 2, knot 1: ", "may be f f b", "Row 3, knot 1: "):
+        assert part in page
+    assert "f huh\nffb\n9999f" in page
+    assert not Pattern.objects.exists()
+
+
+@pytest.mark.parametrize("headers", [{}, {"HX-Request": "true"}])
+def test_looking_saves_nothing(maker, headers):
+    response = maker.post(BY_ROWS, ROWS | {"look": "yes"}, headers=headers)
+    page = response.content.decode()
+    assert "<svg" in page
+    assert "Row 1: f b" in page
+    assert page.startswith("<section") == bool(headers)
+    assert not Pattern.objects.exists()
+    assert maker.post(BY_ROWS, {"look": "yes"}, headers=headers).status_code == 200
+
+
+def test_hostile_pastes_are_refused_in_words(maker):
+    for number, text in enumerate(hostile()):
+        if number % 8:
+            continue
+        response = maker.post(BY_ROWS, ROWS | {"rows": text, "look": "yes"})
+        assert response.status_code == 200
+    assert not Pattern.objects.exists()

@@ -1,5 +1,3 @@
-import random
-
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
@@ -7,6 +5,7 @@ from pattern_factories import patterns
 
 from patterns.pattern_file import write_pattern
 from patterns.written_rows import MOST_PROBLEMS, read_written_rows
+from tests.data_builders.hostile_pastes import hostile_pastes
 
 
 def rows(text):
@@ -116,43 +115,9 @@ def test_rows_written_in_other_ways_read_back(pattern, chance):
     assert found.rows == pattern.rows
 
 
-def hostile(count=800, seed=2026):
-    """The same pastes every time: noise, huge counts, deep brackets, long lines, odd letters."""
-    chance = random.Random(seed)
-    words = (
-        "f",
-        "b",
-        "fb",
-        "bf",
-        "x2",
-        "3f",
-        "(",
-        ")",
-        "row 7:",
-        "999999999f",
-        "x" * 300,
-        "ß",
-        "→",
-    )
-    for number in range(count):
-        kind = number % 6
-        if kind == 0:
-            yield "".join(chr(chance.randrange(1, 0xD7FF)) for _ in range(chance.randrange(400)))
-        elif kind == 1:
-            yield chance.choice(("(", "9", "x", "f", ")", "-", "\0")) * chance.randrange(1, 9_000)
-        elif kind == 2:
-            yield " ".join(chance.choice(words) for _ in range(chance.randrange(1, 200)))
-        elif kind == 3:
-            yield "\n".join(chance.choice(words) for _ in range(chance.randrange(1, 900)))
-        elif kind == 4:
-            yield "\n".join(["30(30(30(30(f))))", "x400"] * chance.randrange(1, 40))
-        else:
-            yield chance.choice(words) * chance.randrange(1, 3_000)
-
-
 def test_hostile_pastes_are_told_row_and_place():
     told = 0
-    for text in hostile():
+    for text in hostile_pastes():
         found = read_written_rows(text)
         assert len(found.rows) <= 400
         assert all(len(row) <= 30 for row in found.rows)

@@ -1,0 +1,97 @@
+"""Adding a pattern: drawn, from a family, from its rows, from a file."""
+
+from django import forms
+from django.contrib import messages
+from django.http import HttpRequest, HttpResponse
+from django.shortcuts import redirect, render
+from django.utils.safestring import SafeString, mark_safe
+from django.views.decorators.http import require_http_methods
+
+from patterns.actions import LibraryError, add_pattern
+from patterns.families import FAMILIES, make_family
+from patterns.forms import PatternFileForm
+from patterns.forms_new import FamilyForm, PatternRowsForm
+from patterns.knots import SLOT_LETTERS
+from patterns.models import Pattern
+from patterns.pattern_file import write_pattern
+from patterns.pictures import band_picture, thumbnail
+from patterns.reading import written_rows
+from patterns.techniques import Pattern as PatternCore
+from patterns.views._shared import note_refusal, posted, render_either
+
+PICTURE_ROWS = 120
+EXAMPLE_STRANDS = 12
+
+
+@require_http_methods(["GET", "HEAD", "POST"])
+def pattern_new(request: HttpRequest) -> HttpResponse:
+    """The ways to add one; a file is added right here."""
+    form = PatternFileForm(posted(request), request.FILES or None, auto_id="file_%s")
+    if request.method == "POST" and form.is_valid():
+        pattern = _added(request, form, form.cleaned_data["pattern_text"])
+        if pattern:
+            return redirect("pattern_detail", pk=pattern.pk)
+    context = {"section": "patterns", "form": form, "families": _family_pictures()}
+    return render(request, "patterns/pattern_new.html", context)
+
+
+def _family_pictures() -> list[tuple[str, str, SafeString]]:
+    pictures = []
+    for key, family in FAMILIES.items():
+        colours = tuple(SLOT_LETTERS[: max(family.fewest_colours, 2)])
+        example = make_family(key, EXAMPLE_STRANDS, colours)
+        # The drawing escapes its title; everything else in it is numbers and colours.
+        pictures.append((key, family.name, mark_safe(thumbnail(example, {}, title=family.name))))
+    return pictures
+
+
+@require_http_methods(["GET", "HEAD", "POST"])
+def pattern_rows(request: HttpRequest) -> HttpResponse:
+    form = PatternRowsForm(posted(request))
+    only_look = "look" in request.POST
+    if request.method == "POST" and form.is_valid() and not only_look:
+        pattern = _added(request, form, write_pattern(form.cleaned_data["definition"]))
+        if pattern:
+            return redirect("pattern_detail", pk=pattern.pk)
+    definition = form.cleaned_data.get("definition") if form.is_bound else None
+    context: dict[str, object] = {"form": form, "definition": definition}
+    if definition:
+        context |= {"picture": _picture(definition), "rows": written_rows(definition)}
+    return render_either(request, "patterns/pattern_rows.html", "patterns/_rows_look.html", context)
+
+
+@require_http_methods(["GET", "HEAD", "POST"])
+def pattern_family(request: HttpRequest) -> HttpResponse:
+    if request.method == "POST":
+        form = FamilyForm(request.POST)
+        if form.is_valid():
+            pattern = _added(request, form, write_pattern(form.cleaned_data["definition"]))
+            if pattern:
+                return redirect("pattern_detail", pk=pattern.pk)
+    else:
+        first = {name: field.initial for name, field in FamilyForm.base_fields.items()}
+        form = FamilyForm(first | request.GET.dict())
+    definition = form.cleaned_data.get("definition") if form.is_valid() else None
+    context: dict[str, object] = {"form": form, "definition": definition}
+    if definition:
+        family = FAMILIES[form.cleaned_data["family"]]
+        context |= {"picture": _picture(definition), "sentence": family.sentence}
+    return render_either(
+        request, "patterns/pattern_family.html", "patterns/_family_look.html", context
+    )
+
+
+def _picture(definition: PatternCore) -> SafeString:
+    title = f"{definition.name}, the start at the left"
+    # The drawing escapes its title; everything else in it is numbers and colours.
+    return mark_safe(band_picture(definition, PICTURE_ROWS, {}, title=title))
+
+
+def _added(request: HttpRequest, form: forms.Form, text: str) -> Pattern | None:
+    try:
+        pattern = add_pattern(text=text, by=request.user)
+    except LibraryError as error:
+        note_refusal(form, error)
+        return None
+    messages.success(request, f"{pattern} is in your library.")
+    return pattern
