@@ -15,7 +15,7 @@ from patterns.shapes import Chart, Label, Square, Stroke
 
 HALF = 0.8
 _EDGE = HALF / 2
-_BEND = 0.2
+_BEND = 0.14
 _WAY_WIDTH = 0.17
 _THREAD_WIDTH = 0.44
 _LETTER_SIZE = 0.5
@@ -46,8 +46,8 @@ _WAYS = {
 _LETTER_PLACES = {
     Knot.F: (0.25, -0.24),
     Knot.B: (-0.25, -0.24),
-    Knot.FB: (0.46, 0.0),
-    Knot.BF: (-0.46, 0.0),
+    Knot.FB: (0.43, 0.0),
+    Knot.BF: (-0.43, 0.0),
 }
 
 

@@ -13,7 +13,7 @@ from patterns.reading import WrittenRow
 from patterns.shapes import THREAD_WIDTH, Block, Chart, Label, Stroke
 
 _LETTER_SIZE = 0.95
-_FIRST_SIZE = 0.72
+_FIRST_SIZE = 0.8
 _TEXT_SIZE = 0.95
 _COLUMN_SIZE = 0.8
 _CHARACTER_WIDTH = 0.58
@@ -99,7 +99,7 @@ class _GridChart:
     def _column_labels(self) -> list[Label]:
         return [
             Label(
-                self._x(column) + COLUMN_WIDTH / 2, _HEAD - 0.3, str(column), _COLUMN_SIZE, "middle"
+                self._x(column) + COLUMN_WIDTH / 2, _HEAD - 0.4, str(column), _COLUMN_SIZE, "middle"
             )
             for column in range(1, self.pattern.columns + 1)
         ]
@@ -110,7 +110,8 @@ class _GridChart:
             self._x(column) + COLUMN_WIDTH / 2 for column in range(1, self.pattern.columns + 1)
         )
         return tuple(
-            Stroke(((x, _HEAD), (x, self.foot + _LOOSE)), THREAD_WIDTH, colour) for x in centres
+            Stroke(((x, _HEAD + 0.3), (x, self.foot + _LOOSE)), THREAD_WIDTH, colour)
+            for x in centres
         )
 
     def _label_row(self, written: WrittenRow, y: float) -> None:

@@ -227,6 +227,19 @@ def _colour_words(pattern: Pattern, rows: int) -> tuple[str, ...]:
     )
 
 
+def again_words(pattern: Pattern, rows: int) -> str:
+    """Say which rows of the chart are repeats of the rows written; "" where there are none."""
+    charted, written = chart_range(pattern, rows), written_range(pattern, rows)
+    if charted == written:
+        return ""
+    again = _capital(_rows(written.stop, charted.stop - 1))
+    verb = "is" if charted.stop - written.stop == 1 else "are"
+    return (
+        f"{again} of the chart {verb} the repeat again, {_rows(1, written.stop - 1)}, "
+        "after the strands have changed places."
+    )
+
+
 def run_words(run: Run) -> str:
     """Say what a run ties, and where it begins and ends."""
     first, last = run.first, run.last

@@ -3,6 +3,8 @@
 All coordinates are points, except a drawing's own.
 """
 
+from collections.abc import Iterable
+
 from reportlab.lib.colors import Color
 from reportlab.pdfgen.canvas import Canvas
 
@@ -38,17 +40,16 @@ def draw_shapes(canvas: Canvas, drawing: Drawing) -> None:
     because knots of a band do not overlap, and is far smaller.
     """
     threads: dict[str, list[Line]] = {}
-    knots: dict[str, list[Knotted]] = {}
+    knots: list[Knotted] = []
     for shape in drawing.shapes:
         if isinstance(shape, Line):
             threads.setdefault(shape.colour, []).append(shape)
         else:
-            knots.setdefault(shape.colour, []).append(shape)
+            knots.append(shape)
     canvas.setLineJoin(1)
     for colour, lines in threads.items():
         _draw_threads(canvas, colour, lines, drawing.height)
-    for colour, same_colour in knots.items():
-        _draw_knots(canvas, colour, same_colour, drawing.height)
+    draw_knots(canvas, knots, drawing.height)
 
 
 def _draw_threads(canvas: Canvas, colour: str, lines: list[Line], ground_height: float) -> None:
@@ -64,6 +65,15 @@ def _draw_threads(canvas: Canvas, colour: str, lines: list[Line], ground_height:
         canvas.setStrokeColor(tone)
         canvas.setLineWidth(stroke)
         canvas.drawPath(path, stroke=1, fill=0)
+
+
+def draw_knots(canvas: Canvas, knots: Iterable[Knotted], ground_height: float) -> None:
+    """Draw knots in their drawing's unit, one path a colour."""
+    by_colour: dict[str, list[Knotted]] = {}
+    for knot in knots:
+        by_colour.setdefault(knot.colour, []).append(knot)
+    for colour, same_colour in by_colour.items():
+        _draw_knots(canvas, colour, same_colour, ground_height)
 
 
 def _draw_knots(canvas: Canvas, colour: str, knots: list[Knotted], ground_height: float) -> None:

@@ -2,7 +2,7 @@
 
 References
 ----------
-ISO 216 (A4) and ANSI/ASME Y14.1 (US Letter).
+ISO 216 (A4, A5) and ANSI/ASME Y14.1 (US Letter).
 """
 
 from dataclasses import dataclass
@@ -39,6 +39,15 @@ PAPERS: dict[str, Paper] = {
     for paper in (
         Paper("a4", "A4", 595.2756, 841.8898),
         Paper("letter", "US Letter", 612.0, 792.0),
+    )
+}
+
+# Knotting cards lie beside the knots, so they are half as large.
+CARD_PAPERS: dict[str, Paper] = {
+    paper.key: paper
+    for paper in (
+        Paper("a5", "A5", 419.5276, 595.2756),
+        Paper("half-letter", "half Letter", 396.0, 612.0),
     )
 }
 

@@ -10,6 +10,7 @@ from io import BytesIO
 from reportlab.lib.colors import Color, HexColor
 from reportlab.pdfgen.canvas import Canvas
 
+from patterns.colours import ink_on
 from planner.sheets.contents import SheetHead
 from planner.sheets.fonts import MISSING, REGULAR, printable, ready_fonts, shortened, width_of
 from planner.sheets.paper import Paper
@@ -20,12 +21,8 @@ QUIET = "#5d5a55"
 RULE = "#b8b1a4"
 MADDER = "#9b2d30"
 WHITE = "#ffffff"
-BLACK = "#000000"
 UNDYED = "#cfc8ba"
 
-# Contrast by WCAG 2.2: on a lighter ground black reads better, on a darker one white does, and
-# one of them always reaches 4.5 : 1.
-_LIGHT = 0.179
 _COLOUR = re.compile("#[0-9a-fA-F]{6}")
 
 
@@ -37,15 +34,7 @@ def thread_colour(colour: str) -> Color:
 
 def letter_colour_on(colour: str) -> str:
     """Choose black or white for letters on a thread colour, whichever contrasts more."""
-
-    def linear(share: float) -> float:
-        return share / 12.92 if share <= 0.04045 else float(((share + 0.055) / 1.055) ** 2.4)
-
-    thread = thread_colour(colour)
-    luminance = (
-        0.2126 * linear(thread.red) + 0.7152 * linear(thread.green) + 0.0722 * linear(thread.blue)
-    )
-    return BLACK if luminance > _LIGHT else WHITE
+    return ink_on(colour if _COLOUR.fullmatch(colour) else UNDYED)
 
 
 class Pen:

@@ -11,6 +11,7 @@ from patterns.grid import Cell, GridPattern, tie_cells
 from patterns.grid_lengths import Run
 from patterns.knots import Finish
 from patterns.reading import (
+    again_words,
     chart_range,
     counted_words,
     read_rows,
@@ -185,6 +186,16 @@ def test_chart_range_follows_short_repeats_until_the_colours_are_back():
     # 16 strands, all their own colour: back after 16 repeats of 2 rows, too many to chart.
     assert chart_range(all_same(16), 118) == range(1, 3)
     assert chart_range(grid(finish=Finish.CENTRED), 10) == range(4, 7)
+
+
+def test_again_words_tell_the_rows_that_come_again():
+    slant = make_pattern(["f f f", "f f"], slots="AABBCC")
+    assert again_words(slant, 118) == (
+        "Rows 3 to 12 of the chart are the repeat again, rows 1 to 2, "
+        "after the strands have changed places."
+    )
+    assert again_words(slant, 3).startswith("Row 3 of the chart is the repeat again")
+    assert again_words(slant, 2) == again_words(grid(), 20) == ""
 
 
 def test_run_words():
