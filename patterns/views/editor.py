@@ -109,6 +109,7 @@ def _page(request: HttpRequest, definition: PatternCore, pattern: Pattern | None
             "version": pattern.version if pattern else None,
             "preview_url": reverse("pattern_preview"),
             "save_url": request.path,
+            "new_url": reverse("pattern_draw"),
             "colours": {slot: shade.colour for slot, shade in shades.items()},
             "names": {slot: str(shade) for slot, shade in shades.items()},
             "colourways": _colourways(pattern),
@@ -207,11 +208,11 @@ def _save(request: HttpRequest, pattern: Pattern | None) -> HttpResponse:
         return JsonResponse({"message": str(error), "url": url}, status=409)
     except LibraryError as error:
         return _refusal(error, 422)
-    is_new = pattern is None or saved.pk != pattern.pk
-    words = f"{saved} is in your library." if is_new else f"{saved} is saved."
+    words = f"{saved} is saved." if pattern else f"{saved} is in your library."
     return JsonResponse(
         {
             "words": words,
+            "name": saved.name,
             "version": saved.version,
             "key": _key(saved, saved.definition),
             "url": reverse("pattern_detail", args=[saved.pk]),
@@ -224,7 +225,7 @@ def _save(request: HttpRequest, pattern: Pattern | None) -> HttpResponse:
 def _stored(
     request: HttpRequest, posted: dict[str, Any], pattern: Pattern | None, text: str
 ) -> Pattern:
-    if pattern is None or posted.get("as_new"):
+    if pattern is None:
         return add_pattern(text=text, by=request.user)
     version = posted.get("version")
     if isinstance(version, bool) or not isinstance(version, int):

@@ -42,6 +42,7 @@ def test_editor_begins_with_the_pattern_and_its_colours(maker, make):
     data = editor_data(maker.get(reverse("pattern_edit", args=[pattern.pk])))
     assert data["state"] == write_state(pattern.definition)
     assert data["version"] == 1
+    assert data["colourways"][str(colourway.pk)]["colours"] == data["colours"]
     assert data["colours"] == {
         slot: shade.colour for slot, shade in colourway.shades_by_slot().items()
     }
@@ -115,7 +116,7 @@ def test_saved_elsewhere_meanwhile_is_told_and_can_be_kept_beside(maker):
     assert refused.status_code == 409
     assert "saved in another window" in refused.json()["message"]
     assert Pattern.objects.get().name == "Theirs"
-    kept = post(maker, url, {"state": state(), "version": 1, "as_new": True})
+    kept = post(maker, DRAW, {"state": state()})
     assert kept.status_code == 200
     assert set(Pattern.objects.values_list("name", flat=True)) == {"Theirs", "Quay"}
 

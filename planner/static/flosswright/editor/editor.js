@@ -89,8 +89,8 @@ async function save({ asNew = false } = {}) {
   const state = session.state;
   tell("Saving …");
   try {
-    const { status, data } = await post(given.save_url,
-      JSON.stringify({ state, version: session.version, as_new: asNew }));
+    const { status, data } = await post(asNew ? given.new_url : given.save_url,
+      JSON.stringify({ state, version: session.version }));
     if (status === 200) saved(data, state);
     else refused(status, data);
   } catch (error) {
@@ -108,16 +108,29 @@ function saved(data, state) {
   const link = find("[data-saved-link]");
   link.hidden = false;
   link.href = data.url;
-  if (data.edit_url !== window.location.pathname) {
-    // A new pattern has an address of its own from here on, and its steps go along.
-    session.moveTo(data.key);
-    window.history.replaceState(null, "", data.edit_url);
-    Object.assign(given, { save_url: data.edit_url, key: data.key });
-    find("[data-as-new]").hidden = false;
-  }
+  showName(data.name);
+  if (data.edit_url !== window.location.pathname) moved(data);
+}
+
+// A new pattern has an address of its own from here on, and its steps go along.
+function moved(data) {
+  session.moveTo(data.key);
+  window.history.replaceState(null, "", data.edit_url);
+  given.save_url = data.edit_url;
+  find(".editor-bar [data-as-new]").hidden = false;
+}
+
+function showName(name) {
+  const heading = document.querySelector("h1");
+  heading.replaceChildren("How is ", Object.assign(document.createElement("bdi"), { textContent: name }), " tied?");
+  document.title = document.title.replace(/^.*?(?= · )/, `Draw ${name}`);
 }
 
 function refused(status, data) {
+  if (!data) {
+    tell("This pattern is not in your library any more. Save yours as a new pattern.", true);
+    return;
+  }
   tell(data.message, true);
   if (status === 409) {
     find("[data-conflict]").hidden = false;

@@ -215,7 +215,7 @@ export class EditingSession {
   }
 
   _takeUp({ place, work, state }) {
-    this.kept.place = place;
+    this.kept.takenUp = place;
     Object.assign(this, { start: work.start, steps: work.steps, at: work.at, state });
   }
 
