@@ -4,12 +4,12 @@ A unit is half the pitch of the knots: a strand is one unit wide, a row one unit
 drawn a little smaller than they lie, so that the strands can be seen to run between them.
 """
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from itertools import islice
 from math import cos, radians, sin
 
 from patterns.colours import ink_on
-from patterns.knots import DiagonalPattern, Knot, TiedKnot, order_after, tie_rows
+from patterns.knots import DiagonalPattern, Knot, TiedKnot, tie_rows
 from patterns.reading import WrittenRow
 from patterns.shapes import Chart, Label, Square, Stroke
 
@@ -89,11 +89,11 @@ class _DiagonalChart:
         self.labels: list[Label] = []
 
     def chart(self) -> Chart:
-        order = list(order_after(self.pattern, self.first - 1))
+        rows = tie_rows(self.pattern, self.written[-1].row)
+        order = self._order_at_the_start(islice(rows, self.first - 1))
         self._label_ends(order, _HEAD - 0.4, _HEAD - 1.2)
         # What hangs at each position: the points of its run so far, from its last knot on.
         runs = [[(self.left + place + 0.5, _HEAD)] for place in range(self.pattern.strands)]
-        rows = islice(tie_rows(self.pattern, self.written[-1].row), self.first - 1, None)
         for written, tied in zip(self.written, rows, strict=True):
             y = self.top + written.row - self.first + 1
             self._label_row(written, y)
@@ -111,6 +111,13 @@ class _DiagonalChart:
             ways=tuple(self.ways),
             labels=tuple(self.labels),
         )
+
+    def _order_at_the_start(self, rows_before: Iterable[list[TiedKnot]]) -> list[int]:
+        order = list(range(1, self.pattern.strands + 1))
+        for tied in rows_before:
+            for knot in tied:
+                _trade_places(knot, order)
+        return order
 
     def _width(self) -> float:
         if not self.with_words:
@@ -133,9 +140,7 @@ class _DiagonalChart:
             runs[place] += [(hanging, y - 0.5), (x + side, y - _EDGE)]
             self._add_thread(runs[place], order[place])
             runs[place] = [(x + side, y + _EDGE), (hanging, y + 0.5)]
-        if knot.knot.swaps:
-            first, second = order[knot.left - 1 : knot.left + 1]
-            order[knot.left - 1 : knot.left + 1] = second, first
+        _trade_places(knot, order)
 
     def _add_thread(self, points: list[tuple[float, float]], strand: int) -> None:
         # Between neighbouring rows a run ends where it begins to hang.
@@ -155,3 +160,9 @@ class _DiagonalChart:
         self.labels.append(Label(_NUMBERS_WIDTH, base, written.name, _NUMBER_SIZE, "end"))
         words = written.words if self.with_words else written.name
         self.labels.append(Label(self.right + _MARGIN, base, words, _NUMBER_SIZE))
+
+
+def _trade_places(knot: TiedKnot, order: list[int]) -> None:
+    if knot.knot.swaps:
+        first, second = order[knot.left - 1 : knot.left + 1]
+        order[knot.left - 1 : knot.left + 1] = second, first

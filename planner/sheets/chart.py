@@ -1,6 +1,7 @@
 """A working chart on paper: the same shapes as on the screen. All coordinates are points."""
 
 from reportlab.pdfgen.canvas import Canvas
+from reportlab.pdfgen.pathobject import PDFPathObject
 
 from patterns.colours import working_colours
 from patterns.shapes import OUTLINE_WIDTH, Chart, Stroke
@@ -21,12 +22,12 @@ def draw_chart_on_page(pen: Pen, chart: Chart, x: float, top: float, unit_pt: fl
     canvas.setLineJoin(1)
     canvas.setLineCap(1)
     for (colour, width), threads in _alike(chart.threads).items():
-        outline = working_colours(colour)
-        _draw_strokes(canvas, threads, outline, width + OUTLINE_WIDTH, chart.height)
-        _draw_strokes(canvas, threads, colour, width - OUTLINE_WIDTH, chart.height)
+        path = _path_of(canvas, threads, chart.height)
+        _draw_path(canvas, path, working_colours(colour), width + OUTLINE_WIDTH)
+        _draw_path(canvas, path, colour, width - OUTLINE_WIDTH)
     draw_knots(canvas, chart.knots, chart.height)
     for (colour, width), ways in _alike(chart.ways).items():
-        _draw_strokes(canvas, ways, colour, width, chart.height)
+        _draw_path(canvas, _path_of(canvas, ways, chart.height), colour, width)
     canvas.restoreState()
     for label in chart.labels:
         pen.text(
@@ -49,15 +50,17 @@ def _alike(strokes: tuple[Stroke, ...]) -> dict[tuple[str, float], list[Stroke]]
     return grouped
 
 
-def _draw_strokes(
-    canvas: Canvas, strokes: list[Stroke], colour: str, width: float, ground_height: float
-) -> None:
+def _path_of(canvas: Canvas, strokes: list[Stroke], ground_height: float) -> PDFPathObject:
     path = canvas.beginPath()
     for stroke in strokes:
         (first_x, first_y), *others = stroke.points
         path.moveTo(first_x, ground_height - first_y)
         for x, y in others:
             path.lineTo(x, ground_height - y)
+    return path
+
+
+def _draw_path(canvas: Canvas, path: PDFPathObject, colour: str, width: float) -> None:
     canvas.setStrokeColor(thread_colour(colour))
     canvas.setLineWidth(width)
     canvas.drawPath(path, stroke=1, fill=0)
