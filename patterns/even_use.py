@@ -155,23 +155,33 @@ class _Band:
 
     def key_with(self, place: Place, knot: Knot) -> Key:
         """Return the key with another knot at one place."""
+        repeat, tail, end = self.cost[-1][:], self.cost[self.rest][:], self.end[:]
+        for strand, other, more_mm in self._paths(place, knot):
+            repeat[strand] = self.cost[-1][other] + more_mm
+            end[strand] = self.end[other]
+            if place[0] < self.rest:
+                tail[strand] = self.cost[self.rest][other] + more_mm
+        return self._key(repeat, tail, end)
+
+    def _paths(self, place: Place, knot: Knot) -> list[tuple[int, int, float]]:
+        """Return for both strands of a knot whose path each takes from there, were the knot
+        another one, and the thread it has more than that strand has now [mm].
+
+        Where one of the two knots swaps and the other does not, each goes on as the other did.
+        """
         row, number = place
-        before = self.knots[row][number]
         left = 2 * number + row % 2
         first, second = self.standing[row][left], self.standing[row][left + 1]
-        # Where one of the two knots swaps and the other does not, each goes on as the other did.
-        goes_on = (first, second) if knot.swaps == before.swaps else (second, first)
-        repeat, tail, end = self.cost[-1][:], self.cost[self.rest][:], self.end[:]
-        ties = (self.tied_mm, self.base_mm)
-        for strand, other, knot_mm in zip(
-            (first, second), goes_on, ties if knot.left_ties else ties[::-1], strict=True
-        ):
-            here = self.cost[row][strand] + knot_mm - self.cost[row + 1][other]
-            repeat[strand] = here + self.cost[-1][other]
-            end[strand] = self.end[other]
-            if row < self.rest:
-                tail[strand] = here + self.cost[self.rest][other]
-        return self._key(repeat, tail, end)
+        if knot.swaps == self.knots[row][number].swaps:
+            paths = ((first, first), (second, second))
+        else:
+            paths = ((first, second), (second, first))
+        ties = (self.tied_mm, self.base_mm) if knot.left_ties else (self.base_mm, self.tied_mm)
+        before, after = self.cost[row], self.cost[row + 1]
+        return [
+            (strand, other, before[strand] + knot_mm - after[other])
+            for (strand, other), knot_mm in zip(paths, ties, strict=True)
+        ]
 
     def _key(self, repeat: list[float], tail: list[float], end: list[int]) -> Key:
         self.evaluations += 1
@@ -188,9 +198,18 @@ class _Band:
         return round(longest, 6), round(squares, 3)
 
     def put(self, place: Place, knot: Knot) -> None:
-        """Put another knot at a place."""
-        self.knots[place[0]][place[1]] = knot
-        self.walk()
+        """Put another knot at a place: from there on only its two strands are told anew."""
+        row, number = place
+        (first, path, more_mm), (second, other_path, other_more_mm) = self._paths(place, knot)
+        self.knots[row][number] = knot
+        for cost in self.cost[row + 1 :]:
+            taken_mm = cost[path] + more_mm, cost[other_path] + other_more_mm
+            cost[first], cost[second] = taken_mm
+        if path != first:
+            for standing in self.standing[row + 1 :]:
+                one, two = standing.index(first), standing.index(second)
+                standing[one], standing[two] = second, first
+            self.end[first], self.end[second] = self.end[second], self.end[first]
 
 
 def _busy(knots: int, row: int) -> set[int]:
@@ -271,14 +290,14 @@ def _search(band: _Band, places: tuple[Place, ...], most: int, good_mm: float) -
     _improve(band, places, most)
     best, knots = band.key(), [row[:] for row in band.knots]
     while band.evaluations < most and best[0] > good_mm:
-        for row, place in random.sample(places, min(_SHAKEN_KNOTS, len(places))):
-            band.knots[row][place] = random.choice(_KNOTS)
-        band.walk()
+        for place in random.sample(places, min(_SHAKEN_KNOTS, len(places))):
+            band.put(place, random.choice(_KNOTS))
         _improve(band, places, most)
         if (key := band.key()) < best:
             best, knots = key, [row[:] for row in band.knots]
         else:
             band.knots = [row[:] for row in knots]
+            band.walk()
     band.knots = knots
     band.walk()
 

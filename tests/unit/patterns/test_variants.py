@@ -12,6 +12,7 @@ from pattern_factories import all_same, make_pattern, patterns
 from patterns.even_use import (
     MOST_CHOICES_TRIED,
     MOST_EVALUATIONS,
+    _Band,
     even_use,
     free_places,
     repeats_to_write_out,
@@ -140,6 +141,22 @@ def test_even_use_by_hand():
     assert [(change.row, change.place, change.before) for change in found.changes] == [
         (1, 1, Knot.FB)
     ]
+
+
+@given(patterns(max_strands=8, max_double_rows=3), st.integers(1, 60), st.randoms())
+def test_looks_and_changes_without_a_walk_equal_a_walk(pattern, rows, random):
+    # The search works a change out from two strands; here each is walked from the start instead.
+    places = free_by_walking(pattern)
+    band = _Band(pattern, rows, GAUGE)
+    for place in random.choices(places, k=6) if places else []:
+        knot = random.choice(tuple(Knot))
+        expected = band.key_with(place, knot)
+        band.put(place, knot)
+        changed = tuple(tuple(row) for row in band.knots)
+        thread = plain_walk(DiagonalPattern("Now", pattern.slots, changed), rows)[1]
+        for longest, squares in (expected, band.key()):
+            assert longest == pytest.approx(max(thread), abs=1e-5)
+            assert squares == pytest.approx(sum(mm * mm for mm in thread), rel=1e-9)
 
 
 def test_even_use_leaves_what_is_even_already():
