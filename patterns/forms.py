@@ -1,6 +1,5 @@
-"""What makers type about patterns, colourways, sizes, endings and gauges."""
+"""What makers type about patterns, sizes, endings and gauges."""
 
-from collections.abc import Iterable
 from typing import Any
 
 from django import forms
@@ -9,14 +8,11 @@ from django.core.files.uploadedfile import UploadedFile
 from django.http import QueryDict
 
 from inventory.fields import LengthField, LineField
-from inventory.models import Shade
 from inventory.page_helpers import habits
 from patterns.fields import BlockField, NumberField
 from patterns.knots import Finish, PatternError
 from patterns.models import Colourway, Ending, Gauge, Pattern, Size
 from patterns.pattern_file import MAX_FILE_BYTES, read_pattern
-from patterns.techniques import Pattern as PatternCore
-from patterns.techniques import slot_words
 
 NOT_ON_LIST = "Choose one from the list."
 FINISH_CHOICES = [
@@ -113,44 +109,6 @@ class PatternEditForm(forms.Form):
         if "text" in cleaned:
             _read_into(self, "text", cleaned["text"])
         return cleaned
-
-
-class ColourwayForm(forms.Form):
-    """A shade for every slot; the shades are fetched once for all the choices."""
-
-    name = LineField(label="Name of the colourway", max_length=60)
-
-    def __init__(
-        self,
-        data: Any = None,
-        *,
-        definition: PatternCore,
-        shades: Iterable[Shade],
-        **kwargs: Any,
-    ) -> None:
-        super().__init__(data, **kwargs)
-        self.shades = {str(shade.pk): shade for shade in shades}
-        self.slots = definition.used_slots
-        choices = [("", "Choose a shade")] + [(pk, str(shade)) for pk, shade in self.shades.items()]
-        for slot in self.slots:
-            self.fields[f"slot_{slot}"] = forms.ChoiceField(
-                choices=choices,
-                label=f"{slot}: {slot_words(definition, slot)}",
-                error_messages={
-                    "required": f"Choose a shade for {slot}.",
-                    "invalid_choice": "That shade is not on your list. Choose another.",
-                },
-            )
-
-    @property
-    def slot_fields(self) -> list[forms.BoundField]:
-        return [self[f"slot_{slot}"] for slot in self.slots]
-
-    @property
-    def chosen(self) -> dict[str, Shade]:
-        """What is chosen so far; the preview shows it while the rest is open."""
-        values = {slot: str(self[f"slot_{slot}"].value()) for slot in self.slots}
-        return {slot: self.shades[pk] for slot, pk in values.items() if pk in self.shades}
 
 
 class StrandChoiceForm(forms.Form):

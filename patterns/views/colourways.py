@@ -10,7 +10,7 @@ from django.views.decorators.http import require_http_methods, require_POST
 from inventory.models import Shade
 from inventory.page_helpers import say_with_undo
 from patterns.actions import LibraryError, set_colourway
-from patterns.forms import ColourwayForm
+from patterns.forms_colourway import ColourwayForm
 from patterns.models import Colourway, Pattern
 from patterns.pictures import thumbnail
 from patterns.techniques import Pattern as PatternCore
