@@ -1,7 +1,8 @@
 """Every write to the pattern library that touches more than one row."""
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import asdict, replace
+from datetime import date, datetime
 from decimal import Decimal
 from fractions import Fraction
 from itertools import chain, count
@@ -295,3 +296,27 @@ def _default_ending(values: dict[str, Any]) -> Ending:
         **values | {"take_up": Decimal(str(values["take_up"]))},
         has_metal_or_button=values["name"] in BUTTONED_ENDINGS,
     )
+
+
+def archive_pattern(*, pattern: Pattern, at: datetime) -> Pattern:
+    """Out of the library and of new orders; what uses it keeps it."""
+    pattern.archived_at = at
+    pattern.save(update_fields=["archived_at"])
+    return pattern
+
+
+def bring_back_pattern(*, pattern: Pattern) -> Pattern:
+    pattern.archived_at = None
+    pattern.save(update_fields=["archived_at"])
+    return pattern
+
+
+@transaction.atomic
+def restore_version(*, version: PatternVersion, by: Any = None) -> Pattern:
+    """The old text becomes the newest version, so that going back can itself be taken back."""
+    return change_pattern(pattern=version.pattern, text=version.text, by=by)
+
+
+def note_planned(*, patterns: Iterable[int], on: date) -> None:
+    """Remember when patterns were last in a plan; the library can show what was made before."""
+    Pattern.objects.filter(pk__in=set(patterns)).update(last_planned_on=on)

@@ -13,6 +13,7 @@ from patterns.views import (
     new,
     pattern,
     sizes,
+    versions,
 )
 
 urlpatterns = [
@@ -24,11 +25,19 @@ urlpatterns = [
     path("new/draw/", editor.pattern_draw, name="pattern_draw"),
     path("preview/", editor.pattern_preview, name="pattern_preview"),
     path("<key:pk>/edit/", editor.pattern_edit, name="pattern_edit"),
+    path("<key:pk>/picture.svg", library.pattern_picture, name="pattern_picture"),
     path("<key:pk>/edit/text/", pattern.pattern_edit_text, name="pattern_edit_text"),
     path("<key:pk>/pattern.toml", pattern.pattern_file, name="pattern_file"),
     path("compare/", comparison.pattern_compare, name="pattern_compare"),
     path("<key:pk>/variants/", analysis.pattern_variants, name="pattern_variants"),
     path("<key:pk>/variants/keep/", analysis.pattern_variant_keep, name="pattern_variant_keep"),
+    path("<key:pk>/versions/", versions.pattern_versions, name="pattern_versions"),
+    path("<key:pk>/versions/<key:number>/", versions.pattern_version, name="pattern_version"),
+    path(
+        "<key:pk>/versions/<key:number>/restore/", versions.pattern_restore, name="pattern_restore"
+    ),
+    path("<key:pk>/archive/", versions.pattern_archive, name="pattern_archive"),
+    path("<key:pk>/bring-back/", versions.pattern_bring_back, name="pattern_bring_back"),
     path("<key:pk>/remove/", pattern.pattern_remove, name="pattern_remove"),
     path("<key:pattern_pk>/colourways/new/", colourways.colourway_new, name="colourway_new"),
     path("colourways/<key:pk>/edit/", colourways.colourway_edit, name="colourway_edit"),

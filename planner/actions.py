@@ -9,7 +9,7 @@ from django.db.models import Max
 from django.utils import timezone
 
 from inventory.models import Workshop
-from patterns.actions import load_defaults
+from patterns.actions import load_defaults, note_planned
 from planner.models import Batch, OrderDraft, OrderLine, Plan
 from planner.order_list.results import GoodLine
 from planner.orders.drafts import corrected
@@ -167,4 +167,7 @@ def make_plan(*, batch: Batch, user: Any) -> Plan:
 def _store_numbered(snapshot: Snapshot, batch: Batch, user: Any) -> Plan:
     Batch.objects.select_for_update().get(pk=batch.pk)
     last = batch.plans.aggregate(last=Max("number"))["last"] or 0
-    return store_snapshot(replace(snapshot, plan_number=last + 1), batch=batch, user=user)
+    plan = store_snapshot(replace(snapshot, plan_number=last + 1), batch=batch, user=user)
+    keys = {kind.pattern_key for kind in snapshot.kinds if kind.pattern_key is not None}
+    note_planned(patterns=keys, on=snapshot.plan_date)
+    return plan

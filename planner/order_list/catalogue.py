@@ -20,12 +20,16 @@ class Choice:
 
 @dataclass(frozen=True)
 class PatternChoice:
-    """A pattern with its colourways; a default key takes the place of a blank colourway."""
+    """A pattern with its colourways; a default key takes the place of a blank colourway.
+
+    An archived one is known by name, so that a list that asks for it can be told, but not ordered.
+    """
 
     key: int
     name: str
     colourways: tuple[Choice, ...]
     default_colourway_key: int | None = None
+    is_archived: bool = False
 
     def __post_init__(self) -> None:
         _check_keys(f"colourways of {self.name}", self.colourways)

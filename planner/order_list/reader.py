@@ -204,7 +204,10 @@ class RowReader:
         if not text:
             raise CellProblem("no pattern is given. Write its name.")
         key = _find(self._patterns, text, "no pattern called", "Check its name, or add it first.")
-        return self._pattern_by_key[key]
+        pattern = self._pattern_by_key[key]
+        if pattern.is_archived:
+            raise CellProblem(f"{pattern.name} is archived. Bring it back in the library first.")
+        return pattern
 
     def _read_colourway(self, pattern: PatternChoice, text: str) -> int:
         names = listed([colourway.name for colourway in pattern.colourways])

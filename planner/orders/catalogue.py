@@ -3,10 +3,12 @@
 from datetime import date
 from typing import TypedDict
 
+from django.db.models import Exists, OuterRef
 from django.utils import timezone
 
 from inventory.models import Workshop
 from patterns.models import Ending, Pattern, Size
+from planner.models import Batch, OrderLine
 from planner.order_list.catalogue import Catalogue, Choice, PatternChoice, SizeChoice
 
 
@@ -27,9 +29,15 @@ def how_to_read(market_date: date | None) -> HowToRead:
     }
 
 
-def load_catalogue() -> Catalogue:
-    """Four queries, however much there is."""
+def load_catalogue(batch: Batch | None = None) -> Catalogue:
+    """Four queries, however much there is.
+
+    Archived patterns cannot be ordered, except where the batch has ordered them already: its rows
+    are read again with every saving of the grid.
+    """
     patterns = Pattern.objects.prefetch_related("colourways").order_by("name")
+    ordered = Exists(OrderLine.objects.filter(batch=batch, pattern=OuterRef("pk")))
+    patterns = patterns.annotate(is_ordered=ordered)
     endings = list(Ending.objects.all())
     default = next((ending.pk for ending in endings if ending.is_default), None)
     return Catalogue(
@@ -40,6 +48,7 @@ def load_catalogue() -> Catalogue:
                 tuple(
                     Choice(colourway.pk, colourway.name) for colourway in pattern.colourways.all()
                 ),
+                is_archived=pattern.archived_at is not None and not pattern.is_ordered,
             )
             for pattern in patterns
         ),

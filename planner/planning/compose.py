@@ -100,6 +100,8 @@ def _kind(exploded: ExplodedKind, names: Mapping[int, ShadeName]) -> SnapshotKin
         ),
         making=_making(exploded, shades),
         cautions=cautions_for(kind.is_child, kind.has_metal_or_button),
+        pattern_key=kind.pattern_key,
+        pattern_version=kind.pattern_version,
     )
 
 

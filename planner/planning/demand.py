@@ -29,6 +29,7 @@ class Kind:
     pattern_text : the pattern as its own text, kept with the plan.
     shades : slot and shade key, by slot; hashable so that equal kinds meet.
     knotted_length_mm : length of the band [mm].
+    pattern_key, pattern_version : where the library had the text from.
     distinct_lengths : in how many lengths its pieces are cut at the most; None for each its own.
     """
 
@@ -44,6 +45,8 @@ class Kind:
     ending: Ending
     rule: CutRule
     distinct_lengths: int | None = None
+    pattern_key: int | None = None
+    pattern_version: int | None = None
 
 
 @dataclass(frozen=True)

@@ -52,6 +52,8 @@ class SnapshotKind:
     pieces: tuple[SnapshotPiece, ...]
     making: dict[str, Any]
     cautions: tuple[str, ...]
+    pattern_key: int | None = None
+    pattern_version: int | None = None
 
     @property
     def band_length_mm(self) -> int:

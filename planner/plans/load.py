@@ -140,6 +140,8 @@ def _order(
         ending=line.ending.as_core(),
         rule=cut_rule(workshop),
         distinct_lengths=line.distinct_lengths,
+        pattern_key=line.pattern_id,
+        pattern_version=line.pattern.version,
     )
     return Order(row, kind, line.quantity, line.for_whom, line.due_date, line.note)
 

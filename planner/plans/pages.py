@@ -9,6 +9,7 @@ from django.utils import timezone
 
 from inventory.models import Workshop
 from patterns.geometry import Gauge, StrandLength
+from patterns.models import Pattern
 from patterns.pattern_file import read_pattern
 from patterns.pictures import band_picture
 from patterns.working import knotted_working
@@ -58,8 +59,28 @@ def plan_page(plan: Plan) -> dict[str, Any]:
         "newer_plan": plan.newer(),
         "spoken_for": spoken_for(plan, shades),
         "other_paper": "letter" if plan.workshop["paper"] == "A4" else "a4",
+        "changed_patterns": changed_patterns(plan),
         "other_plans": plan.batch.plans.exclude(pk=plan.pk)[:10],
     }
+
+
+def changed_patterns(plan: Plan) -> list[dict[str, Any]]:
+    """Patterns of the plan that were saved again since; plans of the first release know none."""
+    then = {
+        kind.pattern_id_then: kind
+        for kind in plan.kinds.order_by("-pk")
+        if kind.pattern_id_then is not None
+    }
+    patterns = Pattern.objects.filter(pk__in=then)
+    return [
+        {
+            "name": then[pattern.pk].pattern_name,
+            "version": then[pattern.pk].pattern_version,
+            "pattern": pattern,
+        }
+        for pattern in patterns
+        if pattern.version != then[pattern.pk].pattern_version
+    ]
 
 
 def plan_context(plan: Plan) -> dict[str, Any]:
@@ -182,6 +203,7 @@ def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
     return {
         **plan_context(bracelet.plan),
         "newer_plan": bracelet.plan.newer(),
+        "pattern_now": Pattern.objects.filter(pk=bracelet.kind.pattern_id_then or 0).first(),
         "bracelet": bracelet,
         "kind": kind,
         "pieces": pieces,

@@ -81,6 +81,8 @@ def _habits_as_json(habits: Habits) -> dict[str, Any]:
 def _kind_row(plan: Plan, kind: SnapshotKind) -> PlanKind:
     return PlanKind(
         plan=plan,
+        pattern_id_then=kind.pattern_key,
+        pattern_version=kind.pattern_version,
         pattern_name=kind.pattern_name,
         pattern_text=kind.pattern_text,
         colourway_name=kind.colourway_name,
@@ -237,6 +239,8 @@ def read_kind(row: PlanKind) -> SnapshotKind:
         pieces=tuple(_read_piece(piece) for piece in pieces),
         making=making,
         cautions=tuple(row.cautions),
+        pattern_key=row.pattern_id_then,
+        pattern_version=row.pattern_version,
     )
 
 

@@ -64,7 +64,7 @@ def batch_detail(request: HttpRequest, pk: int) -> HttpResponse:
     batch = get_object_or_404(Batch, pk=pk)
     if request.method == "GET":
         return _grid_page(request, batch)
-    grid = read_grid(request.POST.dict(), load_catalogue(), how_to_read(batch.market_date))
+    grid = read_grid(request.POST.dict(), load_catalogue(batch), how_to_read(batch.market_date))
     if grid.bad:
         return _grid_page(request, batch, rows=grid.as_rows(), wrong=len(grid.bad))
     removed = list(batch.lines.for_grid().filter(pk__in=grid.removed))
@@ -112,7 +112,7 @@ def _say_saved(
 def lines_put_back(request: HttpRequest, pk: int) -> HttpResponse:
     """Undo of a removal: the rows come back at the end, as they were written."""
     batch = get_object_or_404(Batch, pk=pk)
-    grid = read_grid(request.POST.dict(), load_catalogue(), how_to_read(batch.market_date))
+    grid = read_grid(request.POST.dict(), load_catalogue(batch), how_to_read(batch.market_date))
     if grid.bad:
         return _grid_page(request, batch, rows=grid.as_rows(), wrong=len(grid.bad))
     put_back_lines(batch=batch, good=grid.added)
@@ -143,7 +143,7 @@ def _grid_page(
         "wrong": wrong,
         "wrong_rows": [row for row in rows if row.wrong_cells or row.whole_row][:20],
         "bracelets": lines.bracelet_count(),
-        "catalogue": load_catalogue(),
+        "catalogue": load_catalogue(batch),
         "plans": batch.plans.all()[:10],
         "drafts": batch.drafts.all(),
         "section": "orders",
