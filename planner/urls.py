@@ -2,7 +2,7 @@
 
 from django.urls import include, path
 
-from planner.views import batches, home, lists, plans, workshop
+from planner.views import batches, cards, home, lists, plans, workshop
 
 urlpatterns = [
     path("", home.home, name="home"),
@@ -23,7 +23,9 @@ urlpatterns = [
     path("plans/<key:pk>/shades/<key:shade_pk>/", plans.plan_shade, name="plan_shade"),
     path("plans/<key:pk>/bracelets/", plans.plan_bracelets, name="plan_bracelets"),
     path("plans/<key:pk>/<slug:sheet>.<slug:ending>", plans.plan_sheet, name="plan_sheet"),
+    path("plans/<key:plan_pk>/kinds/<key:pk>/card.pdf", cards.plan_card, name="plan_card"),
     path("b/<key:pk>/", plans.bracelet, name="bracelet"),
+    path("patterns/<key:pk>/card.pdf", cards.knotting_card, name="knotting_card"),
     path("patterns/", include("patterns.urls")),
     path("shelf/", include("inventory.urls")),
     path("", include("planner.signin.urls")),
