@@ -1,8 +1,10 @@
 """Patterns, colourways, sizes, endings and gauges."""
 
 import math
+from collections.abc import Mapping
 from decimal import Decimal
 from functools import lru_cache
+from typing import Any
 
 from django.conf import settings
 from django.core.validators import MaxValueValidator, MinValueValidator, RegexValidator
@@ -163,6 +165,14 @@ class KnottedLength(models.Model):
         return f"{self.size} with {self.ending}"
 
 
+LIBRARY_ORDER: dict[str, tuple[str | Lower, ...]] = {
+    "": (Lower("name"), "pk"),
+    "newest": ("-created_at", "-pk"),
+    "thread": ("thread_mm", Lower("name")),
+    "most-thread": ("-thread_mm", Lower("name")),
+}
+
+
 class PatternQuerySet(QuerySet["Pattern"]):
     def for_library_page(self) -> "PatternQuerySet":
         return self.prefetch_related("colourways__shades__shade")
@@ -172,6 +182,25 @@ class PatternQuerySet(QuerySet["Pattern"]):
         for word in words.split():
             found = found.filter(name__icontains=word)
         return found
+
+    def in_library(self) -> "PatternQuerySet":
+        return self.filter(archived_at=None)
+
+    def fitting(self, chosen: Mapping[str, Any]) -> "PatternQuerySet":
+        """What the filters of the library leave, in its order; see `LibraryForm.chosen`."""
+        found = self.search(chosen.get("q", ""))
+        found = found.filter(archived_at__isnull=chosen.get("kept") != "archived")
+        if made := chosen.get("made"):
+            found = found.filter(last_planned_on__isnull=made == "no")
+        limits = {
+            "technique": chosen.get("technique"),
+            "strand_count__gte": chosen.get("strands_from"),
+            "strand_count__lte": chosen.get("strands_to"),
+            "thread_mm__gte": getattr(chosen.get("thread"), "from_mm", None),
+            "thread_mm__lt": getattr(chosen.get("thread"), "below_mm", None),
+        }
+        found = found.filter(**{name: value for name, value in limits.items() if value})
+        return found.order_by(*LIBRARY_ORDER[chosen.get("sort", "")])
 
 
 @lru_cache(maxsize=128)
