@@ -156,7 +156,7 @@ def test_looks_and_changes_without_a_walk_equal_a_walk(pattern, rows, random):
         thread = plain_walk(DiagonalPattern("Now", pattern.slots, changed), rows)[1]
         for longest, squares in (expected, band.key()):
             assert longest == pytest.approx(max(thread), abs=1e-5)
-            assert squares == pytest.approx(sum(mm * mm for mm in thread), rel=1e-9)
+            assert squares == pytest.approx(sum(mm * mm for mm in thread), abs=1e-3)
 
 
 def test_even_use_leaves_what_is_even_already():
