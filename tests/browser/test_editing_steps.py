@@ -1,10 +1,9 @@
-"""The editor's steps on diagonal patterns, and its way back, in the browser's own JavaScript.
+"""The editor's steps on diagonal patterns, in the browser's own JavaScript.
 
 Checked against patterns.knots and against what each step promises about the band: the colours of
 its knots, row by row, read from a band that Python ties.
 """
 
-import itertools
 import random
 from collections.abc import Callable
 from typing import Any
@@ -48,47 +47,6 @@ RUN_STEPS = """async ([folder, calls]) => {
     }
   });
 }"""
-
-# A session on a storage that holds so many characters, as a browser's does.
-OPEN = """
-  const { EditingSession } = await import(`${folder}session.js`);
-  const kept = new Map();
-  const storage = {
-    getItem: (key) => kept.get(key) ?? null,
-    removeItem: (key) => kept.delete(key),
-    setItem: (key, text) => {
-      if (text.length > most) throw new DOMException("full", "QuotaExceededError");
-      kept.set(key, text);
-    },
-  };
-  const open = () => new EditingSession({ key: "test", start, version: 3, storage });
-"""
-PLAY = f"""async ([folder, start, states, most]) => {{
-  {OPEN}
-  const first = open();
-  const done = states.map((state) => first.do(state, "Step"));
-  first.store();
-  const session = open();
-  const back = [session.state];
-  while (session.undo()) back.push(session.state);
-  const again = [session.state];
-  while (session.redo()) again.push(session.state);
-  return {{ done, back: back.reverse(), again, characters: [...kept.values()][0]?.length }};
-}}"""
-PLAY_KNOTS = f"""async ([folder, start, places, most]) => {{
-  {OPEN}
-  const {{ setKnot }} = await import(`${{folder}}diagonal_steps.js`);
-  const first = open();
-  for (const [row, place] of places) first.do(setKnot(first.state, row, place, "b"), "Step");
-  first.store();
-  const session = open();
-  let back = 0;
-  while (session.undo()) back += 1;
-  const isStart = JSON.stringify(session.state) === JSON.stringify(start);
-  while (session.redo());
-  const isEnd = JSON.stringify(session.state) === JSON.stringify(first.state);
-  return {{ back, isStart, isEnd }};
-}}"""
 
 State = dict[str, Any]
 RunSteps = Callable[[list[list[Any]]], list[Any]]
@@ -153,10 +111,13 @@ def random_calls(state: State, chance: random.Random) -> list[list[Any]]:
         ["addRightStrand", state, slot],
         ["removeLeftStrand", state],
         ["removeRightStrand", state],
+        ["widen", state, 2 * place + row % 2],
+        ["narrow", state, 2 * place + row % 2],
         ["addRows", state, row],
         ["copyRows", state, row],
         ["removeRows", state, row],
         ["mirror", state],
+        ["turnRound", state],
         ["beginLater", state],
         ["beginEarlier", state],
         ["shiftColours", state, chance.choice([-1, 1])],
@@ -174,7 +135,7 @@ def test_every_step_gives_a_pattern_and_is_taken_back(
     pairs = []
     for call, after in zip(calls, steps(calls), strict=True):
         if isinstance(after, str):
-            assert call[0].startswith("remove"), after
+            assert call[0].startswith(("remove", "narrow")), after
             assert "at least 2" in after
             refused += 1
             continue
@@ -209,6 +170,42 @@ def test_mirror_twice_is_the_identity(steps: RunSteps, chance: random.Random) ->
     earlier = steps([["beginEarlier", state] for state in twice])
     for state, image, moved in zip(states, twice, earlier, strict=True):
         assert (moved if len(state["slots"]) % 2 else image) == state
+
+
+def test_turning_round_shows_the_band_from_its_other_end(
+    steps: RunSteps, chance: random.Random
+) -> None:
+    """Seen from the end, f was tied from the right: it is b. The last row stays the last."""
+    backwards = {"f": "b", "b": "f", "fb": "fb", "bf": "bf"}
+    states = random_states(chance)
+    turned = steps([["turnRound", state] for state in states])
+    for state, other in zip(states, turned, strict=True):
+        rows = len(state["rows"]) - 1
+        seen = [[(backwards[knot], slot) for knot, slot in row] for row in band(state, rows)]
+        assert band(other, rows) == seen[::-1]
+    assert steps([["turnRound", state] for state in turned]) == states
+
+
+def test_strands_inside_are_tied_as_the_two_beside_them(
+    steps: RunSteps, chance: random.Random
+) -> None:
+    """By positions: up to the two strands all is as before, from there on it comes again."""
+    states = random_states(chance)
+    places = [chance.randrange(len(state["slots"]) - 1) for state in states]
+    pairs = list(zip(states, places, strict=True))
+    wide = steps([["widen", state, left] for state, left in pairs])
+    for (state, left), wider in zip(pairs, wide, strict=True):
+        assert wider["slots"] == state["slots"][: left + 2] + state["slots"][left:]
+        for number, (old, new) in enumerate(zip(state["rows"], wider["rows"], strict=True)):
+            knots = {2 * place + number % 2: knot for place, knot in enumerate(old)}
+            for place, knot in enumerate(new):
+                at = 2 * place + number % 2
+                beside = knots.get(at if at <= left + 1 else at - 2)
+                assert knot == (beside or (old[-1] if old else "f")), (state, left, number)
+    assert (
+        steps([["narrow", state, left] for state, (_, left) in zip(wide, pairs, strict=True)])
+        == states
+    )
 
 
 def test_walk_is_pythons(page: Page, chance: random.Random) -> None:
@@ -329,71 +326,3 @@ def plain_state(strands: int, rows: int) -> State:
         "slots": ["A"] * strands,
         "rows": [["f"] * knots_in_row(strands, row) for row in range(1, rows + 1)],
     }
-
-
-# --- the way back ------------------------------------------------------------------------------
-
-
-def one_knot_after_another(start: State, number: int, chance: random.Random) -> list[State]:
-    states = []
-    state = start
-    knots = itertools.cycle(["b", "fb", "bf", "f"])
-    for knot in itertools.islice(knots, number):
-        row = 2 * chance.randrange(len(state["rows"]) // 2)
-        place = chance.randrange(len(state["rows"][row]))
-        changed = [*state["rows"][row]]
-        changed[place] = knot if changed[place] != knot else {"f": "b"}.get(knot, "f")
-        rows = [*state["rows"]]
-        rows[row] = changed
-        state = {**state, "rows": rows}
-        states.append(state)
-    return states
-
-
-def play(page: Page, start: State, states: list[State], most: int = 5_000_000) -> dict[str, Any]:
-    page.goto("/")
-    return page.evaluate(PLAY, [MODULES, start, states, most])
-
-
-def test_session_brings_back_every_step(page: Page, chance: random.Random) -> None:
-    """The states are of all sizes, so each step changes rows, strands and name at once."""
-    start, *states = random_states(chance)
-    states = [{**state, "name": f"Step {number}"} for number, state in enumerate(states)]
-    played = play(page, start, states)
-    assert played["done"] == [True] * len(states)
-    assert played["back"] == [start, *states]
-    assert played["again"] == [start, *states]
-
-
-def test_session_keeps_two_thousand_steps_of_the_largest_pattern(
-    page: Page, chance: random.Random
-) -> None:
-    """5 million characters is about what Chromium gives one origin."""
-    start = plain_state(MAX_STRANDS, MAX_REPEAT_ROWS)
-    places = [
-        (row, place) for row, knots in enumerate(start["rows"]) for place in range(len(knots))
-    ]
-    changed = chance.sample(places, 2_000)
-    page.goto("/")
-    played = page.evaluate(PLAY_KNOTS, [MODULES, start, changed, 5_000_000])
-    assert played == {"back": 2_000, "isStart": True, "isEnd": True}
-
-
-def test_full_storage_drops_the_oldest_steps_and_never_the_work(
-    page: Page, chance: random.Random
-) -> None:
-    start = plain_state(8, 8)
-    states = one_knot_after_another(start, 200, chance)
-    played = play(page, start, states, most=6_000)
-    kept = played["back"]
-    assert played["characters"] <= 6_000
-    assert 1 < len(kept) < 201
-    assert kept == states[-len(kept) :]
-    assert played["again"] == kept
-
-
-def test_same_state_is_no_step(page: Page) -> None:
-    start = plain_state(4, 4)
-    played = play(page, start, [start, {**start}])
-    assert played["done"] == [False, False]
-    assert played["back"] == [start]

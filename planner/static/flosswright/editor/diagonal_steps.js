@@ -2,7 +2,7 @@
 // The rows stay whole: as many knots as the strands need, and an even number of rows.
 // Rows, places and strands count from 0 here, from 1 in words.
 
-import { MIRRORED, knotsInRow, leftOf, orderAfter } from "./walk.js";
+import { MIRRORED, knotsInRow, orderAfter } from "./walk.js";
 import { StepRefused } from "./step_refused.js";
 
 export const LIMITS = { minStrands: 2, maxStrands: 60, minRows: 2, maxRows: 400 };
@@ -47,25 +47,49 @@ export function removeRightStrand(state) {
 // last row comes first, and the strands begin as they stand before it.
 export function addLeftStrand(state, slot) {
   refuseAbove(state.slots.length + 1, LIMITS.maxStrands, "strands");
-  const strands = state.slots.length + 1;
   const turned = [state.rows.at(-1), ...state.rows.slice(0, -1)];
   const rows = turned.map((words, row) => (row % 2 === 0 ? ["fb", ...words] : words));
   const before = slotsBefore(state.slots, [state.rows.at(-1)], state.rows.length - 1);
-  return {
-    ...state,
-    slots: [slot, ...before],
-    rows: rows.map((words, row) => words.slice(0, knotsInRow(strands, row))),
-  };
+  return { ...state, slots: [slot, ...before], rows };
 }
 
 export function removeLeftStrand(state) {
   refuseBelow(state.slots.length - 1, LIMITS.minStrands, "strands");
-  const after = orderAfterRow(state.slots.length, state.rows[0]).map((strand) => state.slots[strand]);
+  const after = orderAfter(state.slots.length, state.rows.slice(0, 1)).map((strand) => state.slots[strand]);
   const without = state.rows.map((words, row) => (row % 2 === 0 ? words.slice(1) : words));
   return { ...state, slots: after.slice(1), rows: [...without.slice(1), without[0]] };
 }
 
-const orderAfterRow = (strands, words) => orderAfter(strands, [words]);
+// Where, among the knots of a row, the strands at `left` and `left + 1` have their knot, or else the
+// knot that begins one position on.
+const placeAt = (left, row) => Math.floor((left + 1 - (row % 2)) / 2);
+
+// Two strands more, beside the two that meet at `left`: they are tied as these two are, and what
+// is to their right moves along.
+export function widen(state, left) {
+  refuseAbove(state.slots.length + 2, LIMITS.maxStrands, "strands");
+  const slots = [...state.slots];
+  slots.splice(left + 2, 0, ...slots.slice(left, left + 2));
+  const rows = state.rows.map((words, row) => {
+    const at = placeAt(left, row);
+    const longer = [...words];
+    longer.splice(at, 0, words[at] ?? words.at(-1) ?? "f");
+    return longer;
+  });
+  return { ...state, slots, rows };
+}
+
+export function narrow(state, left) {
+  refuseBelow(state.slots.length - 2, LIMITS.minStrands, "strands");
+  const slots = [...state.slots];
+  slots.splice(left, 2);
+  const rows = state.rows.map((words, row) => {
+    const shorter = [...words];
+    shorter.splice(Math.min(placeAt(left, row), words.length - 1), 1);
+    return shorter;
+  });
+  return { ...state, slots, rows };
+}
 
 // The slots that stand so after the rows, the first of which is row `first` of the repeat.
 function slotsBefore(slots, rows, first) {
@@ -123,6 +147,19 @@ function mirroredRows(state) {
   return rows.map((words) => words.map((knot) => MIRRORED[knot]).reverse());
 }
 
+const BACKWARDS = { f: "b", b: "f", fb: "fb", bf: "bf" };
+
+// From the other end. The last row stays the last, so that row 1 pairs the strands it has to.
+export function turnRound(state) {
+  const others = state.rows.slice(0, -1);
+  const order = orderAfter(state.slots.length, others);
+  return {
+    ...state,
+    slots: order.map((strand) => state.slots[strand]),
+    rows: [...others.reverse(), state.rows.at(-1)].map((words) => words.map((knot) => BACKWARDS[knot])),
+  };
+}
+
 // Begin two rows later; the strands begin as they stand there, so the band looks the same.
 export function beginLater(state) {
   const first = state.rows.slice(0, 2);
@@ -164,6 +201,3 @@ export function repeatMirrored(state) {
 export function clear(state) {
   return { ...state, rows: state.rows.map((words) => words.map(() => "f")) };
 }
-
-// Where a knot lies: its left position, for boards and tests alike.
-export const positionOf = leftOf;

@@ -16,6 +16,8 @@ const TAP_PX = 8; // a finger that moves farther scrolls
 
 const pairWords = (row) => `rows ${steps.pairOf(row) + 1} and ${steps.pairOf(row) + 2}`;
 
+const twoWords = (left) => `places ${left + 1} and ${left + 2}`;
+
 export class KnotBoard {
   // element: templates/patterns/_editor_diagonal.html; colours: "#rrggbb" by slot; names: the shade
   // of each slot in words, where there is one.
@@ -97,6 +99,7 @@ export class KnotBoard {
     this.find("[data-row]").textContent = row + 1;
     this.find("[data-fill]").textContent = this.fillKnot;
     for (const words of this.element.querySelectorAll("[data-pair]")) words.textContent = pairWords(row);
+    for (const words of this.element.querySelectorAll("[data-two]")) words.textContent = twoWords(this.leftHere());
   }
 
   keepCursorInside() {
@@ -113,6 +116,12 @@ export class KnotBoard {
   // The strand of a head, or the one that ties the knot.
   strandHere() {
     return this.cursor.strand ?? this.chart.tied?.[this.cursor.row]?.[this.cursor.place]?.tying ?? 0;
+  }
+
+  // The left one of the two positions that the knot is tied on.
+  leftHere() {
+    const { strand, row, place } = this.cursor;
+    return strand === undefined ? leftOf(row, place) : Math.min(strand, this.state.slots.length - 2);
   }
 
   do(step, label) {
@@ -268,15 +277,20 @@ export class KnotBoard {
     const row = this.cursor.row ?? 0;
     const slot = this.find("[data-slot]").value;
     const pair = pairWords(row);
+    const left = this.leftHere();
+    const two = twoWords(left);
     const named = {
       "strand-left": ["Added a strand at the left", (state) => steps.addLeftStrand(state, slot)],
       "strand-right": ["Added a strand at the right", (state) => steps.addRightStrand(state, slot)],
       "strand-left-out": ["Took out the left strand", steps.removeLeftStrand],
       "strand-right-out": ["Took out the right strand", steps.removeRightStrand],
+      "widen": [`Two strands more beside ${two}`, (state) => steps.widen(state, left)],
+      "narrow": [`Took out ${two}`, (state) => steps.narrow(state, left)],
       "rows-after": [`Added two rows after ${pair}`, (state) => steps.addRows(state, row)],
       "rows-copy": [`Copied ${pair}`, (state) => steps.copyRows(state, row)],
       "rows-out": [`Took out ${pair}`, (state) => steps.removeRows(state, row)],
       "row-fill": [`Row ${row + 1}: all ${NAMES[this.fillKnot]}`, (state) => steps.fillRow(state, row, this.fillKnot)],
+      "turn-round": ["Turned end for end", steps.turnRound],
       "mirror": ["Mirrored left for right", steps.mirror],
       "begin-later": ["Begins two rows later", steps.beginLater],
       "begin-earlier": ["Begins two rows earlier", steps.beginEarlier],
