@@ -3,7 +3,7 @@
 from collections import defaultdict
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
-from decimal import ROUND_DOWN, Decimal
+from decimal import Decimal
 
 from planner.cutting import Group, Lot, LotResult, LotStock, Offer, solve_with_lots
 from planner.cutting.bounds import usable_lengths
@@ -50,22 +50,6 @@ class NettedShade:
     usable_mm: int
     left_mm: int
     result: LotResult
-
-
-def reckoned_length(length_mm: int, short_measure_share: Decimal) -> int:
-    """Return what an unmeasured skein is trusted to hold.
-
-    Parameters
-    ----------
-    length_mm : nominal length [mm].
-    short_measure_share : share by which skeins may run short, 0 to 0.5.
-
-    Returns
-    -------
-    Length [mm], rounded down.
-    """
-    exact = Decimal(length_mm) * (1 - short_measure_share)
-    return int(exact.quantize(Decimal(1), rounding=ROUND_DOWN))
 
 
 def group_key(bracelet_number: int) -> str:

@@ -9,6 +9,7 @@ from itertools import count
 from django.db.models import prefetch_related_objects
 
 from inventory.models import PutUp, Shade, ShelfPiece, Workshop
+from inventory.on_shelf import reckoned_length
 from patterns.actions import cut_rule
 from patterns.geometry import Gauge as GaugeCore
 from patterns.geometry import LengthError, rows_for
@@ -17,7 +18,7 @@ from patterns.models import Gauge, KnottedLength
 from patterns.techniques import Pattern
 from planner.models import OrderLine
 from planner.planning.demand import Kind, Order, ShadeName
-from planner.planning.netting import ShelfThread, ThreadOffer, reckoned_length
+from planner.planning.netting import ShelfThread, ThreadOffer
 from planner.planning.snapshot import Habits
 
 ENDING_VALUES = (

@@ -1,7 +1,6 @@
 """Netting as pieces, not as metres; lots kept; sums that close."""
 
 from collections import Counter
-from decimal import Decimal
 
 from hypothesis import given, settings
 from hypothesis import strategies as st
@@ -11,7 +10,6 @@ from planner.planning.demand import Order, explode
 from planner.planning.netting import (
     groups_by_shade,
     net,
-    reckoned_length,
     usable_on_shelf,
 )
 from tests.plain import make_kind, make_offer, make_thread
@@ -28,12 +26,6 @@ def test_usable_on_shelf_is_not_a_total_in_metres() -> None:
 def test_usable_on_shelf_counts_whole_pieces_only() -> None:
     """Only 6 strands of 1.2 m come out of an 8 m skein (common practice, no source)."""
     assert usable_on_shelf([Group("1", (1_200,) * 10)], [make_thread(1, 8_000)]) == 6 * 1_200
-
-
-def test_reckoned_length_rounds_down() -> None:
-    assert reckoned_length(8_000, Decimal("0.02")) == 7_840
-    assert reckoned_length(7_999, Decimal("0.02")) == 7_839
-    assert reckoned_length(8_000, Decimal(0)) == 8_000
 
 
 def test_net_buys_what_the_remnants_cannot_give() -> None:
