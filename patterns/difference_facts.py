@@ -207,7 +207,8 @@ def _looks(first: Side, second: Side) -> Fact | None:
     words = f"{len(different)} of {rows} rows show other slots" if different else "the same"
     if different and len(different) < rows:
         words += f", the first is row {different[0]}"
-    return Fact("Picture", "words", Value(0), Value(0), words, 0)
+    drawn_above = Value(0, "as drawn above")
+    return Fact("Picture", "words", drawn_above, drawn_above, words, 0)
 
 
 def _shown(pattern: Pattern, rows: int) -> list[tuple[str, ...]]:
