@@ -1,11 +1,14 @@
 """Shades, put-ups to buy, lots, and thread on the shelf."""
 
+from collections import Counter, defaultdict
 from decimal import Decimal
 
 from django.core.validators import MaxValueValidator, MinValueValidator, RegexValidator
 from django.db import models
 from django.db.models import Count, Exists, OuterRef, Prefetch, Q, QuerySet, Sum
 from django.db.models.functions import Lower
+
+from inventory.on_shelf import OnShelf, reckoned_length
 
 LONGEST_LENGTH_MM = 10_000_000
 colour_validator = RegexValidator(r"^#[0-9a-f]{6}\Z", "Choose a colour.")
@@ -197,6 +200,23 @@ class Lot(models.Model):
 class ShelfPieceQuerySet(QuerySet["ShelfPiece"]):
     def on_shelf(self) -> "ShelfPieceQuerySet":
         return self.filter(removed_at__isnull=True)
+
+    def by_shade(self, short_measure_share: Decimal) -> dict[int, OnShelf]:
+        """The thread on the shelf by the shade's key: one query, however many shades there are."""
+        lots: dict[int, dict[int, list[int]]] = defaultdict(lambda: defaultdict(list))
+        totals: Counter[int] = Counter()
+        whole: Counter[int] = Counter()
+        rows = self.on_shelf().values_list("lot__shade_id", "lot_id", "kind", "length_mm")
+        for shade, lot, kind, length_mm in rows.order_by("pk"):
+            is_whole = kind == ShelfPiece.Kind.WHOLE
+            trusted = reckoned_length(length_mm, short_measure_share) if is_whole else length_mm
+            lots[shade][lot].append(trusted)
+            totals[shade] += length_mm
+            whole[shade] += is_whole
+        return {
+            shade: OnShelf(totals[shade], whole[shade], tuple(map(tuple, of_shade.values())))
+            for shade, of_shade in lots.items()
+        }
 
     def for_shade_page(self) -> "ShelfPieceQuerySet":
         return self.on_shelf().select_related("lot").order_by("lot__name", "-length_mm", "pk")
