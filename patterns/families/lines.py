@@ -5,11 +5,12 @@ once, a gap a row, to and fro as a *swing* tells. So a family is a fold, a swing
 """
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal
 
-from patterns.knots import Knot, knots_in_row
+from patterns.knots import Knot
 
+Panels = Literal[1, 2, 4]
 Rows = tuple[tuple[Knot, ...], ...]
 
 
@@ -20,15 +21,18 @@ class Gap:
     Parameters
     ----------
     level
-        How far it lies from the first side of its panel; odd where its left strand is odd.
+        How far it lies from the first side of its panel.
     slope
         1 where levels rise to the right, -1 where they fall, 0 where two panels meet.
+    later
+        By how many rows its panel lags behind the first.
     wall
         On which side of the gap a strand stands that keeps its place, and only is base.
     """
 
     level: int
     slope: Literal[-1, 0, 1]
+    later: int = 0
     wall: Literal["", "left", "right"] = ""
 
 
@@ -52,7 +56,7 @@ class Lines:
     count: int
 
 
-def folded(strands: int, panels: Literal[1, 2, 4]) -> tuple[Gap, ...]:
+def folded(strands: int, panels: Panels) -> tuple[Gap, ...]:
     """Return the gaps of a band, left to right, folded into panels of equal width.
 
     Parameters
@@ -65,22 +69,19 @@ def folded(strands: int, panels: Literal[1, 2, 4]) -> tuple[Gap, ...]:
     Notes
     -----
     Folded once, the right half mirrors the left: gap p has the level of gap N - p. With N even
-    the halves meet in gap N/2. With N odd the strand in the middle is a wall, and the levels of
-    the right half are greater by one, because its knots come one row later. Folded twice, the
-    left half is folded in the same way: at a gap if it has an even number of strands, else at a
-    strand.
+    the halves meet in gap N/2. With N odd the strand in the middle is a wall, and the right half
+    lags by a row, because gaps p and N - p are never tied in the same row. Folded twice, the
+    left half of N//2 strands is folded in the same way.
     """
     if panels == 1:
         return tuple(Gap(gap, 1) for gap in range(1, strands))
     half = strands // 2
     left = _slope(half) if panels == 2 else _hill(half)
     if strands % 2:
-        left = (*left[:-1], Gap(left[-1].level, left[-1].slope, "right"))
-        middle: tuple[Gap, ...] = ()
-    else:
-        middle = (Gap(left[-1].level, 0),)
-        left = left[:-1]
-    return (*left, *middle, *(_mirrored(gap, strands % 2) for gap in reversed(left)))
+        left = (*left[:-1], replace(left[-1], wall="right"))
+        return (*left, *(_mirrored(gap, 1) for gap in reversed(left)))
+    middle = replace(left[-1], slope=0)
+    return (*left[:-1], middle, *(_mirrored(gap, 0) for gap in reversed(left[:-1])))
 
 
 def _slope(half: int) -> tuple[Gap, ...]:
@@ -88,22 +89,20 @@ def _slope(half: int) -> tuple[Gap, ...]:
 
 
 def _hill(half: int) -> tuple[Gap, ...]:
-    """Rise and fall, over the strands of half a band and the gap behind them."""
-    top, is_odd = divmod(half, 2)
-    rise = [Gap(gap, 1) for gap in range(1, top + 1)]
-    fall = [Gap(2 * (top + is_odd) - gap, -1) for gap in range(top + 1, half + 1)]
-    if is_odd:
-        rise[-1] = Gap(rise[-1].level, 1, "right")
-        fall[0] = Gap(fall[0].level, -1, "left")
-    else:
-        rise[-1] = Gap(rise[-1].level, 0)
-    return (*rise, *fall)
+    """Rise and fall over the strands of half a band, down to level 0 in the gap behind them."""
+    top, lag = divmod(half, 2)
+    rise = _slope(top)
+    fall = [Gap(top - step, -1, lag) for step in range(top + 1)]
+    if lag:
+        rise = (*rise[:-1], replace(rise[-1], wall="right"))
+        return (*rise, replace(fall[0], wall="left"), *fall[1:])
+    return (*rise[:-1], Gap(top, 0), *fall[1:])
 
 
-def _mirrored(gap: Gap, later: int) -> Gap:
+def _mirrored(gap: Gap, lag: int) -> Gap:
     slopes: dict[int, Literal[-1, 0, 1]] = {-1: 1, 0: 0, 1: -1}
     walls: dict[str, Literal["", "left", "right"]] = {"": "", "left": "right", "right": "left"}
-    return Gap(gap.level + later, slopes[gap.slope], walls[gap.wall])
+    return Gap(gap.level, slopes[gap.slope], gap.later + lag, walls[gap.wall])
 
 
 def steady_lines(gaps: Sequence[Gap], panel_strands: int) -> Lines:
@@ -116,11 +115,9 @@ def steady_lines(gaps: Sequence[Gap], panel_strands: int) -> Lines:
     panel_strands
         Strands that move in one panel; after as many lines the first strand ties again.
     """
-    rows = tuple(
-        tuple(_knot(gap, 1, 1) for gap in gaps[row % 2 :: 2]) for row in (0, 1)
-    )
+    rows = tuple(tuple(_knot(gap, 1, 1) for gap in gaps[row % 2 :: 2]) for row in (0, 1))
     numbers = tuple(
-        tuple((row + 1 - gap.level) // 2 % panel_strands for gap in gaps[row % 2 :: 2])
+        tuple((row + 1 - gap.later - gap.level) // 2 % panel_strands for gap in gaps[row % 2 :: 2])
         for row in range(2 * panel_strands)
     )
     return Lines(rows, numbers, panel_strands)
@@ -141,19 +138,22 @@ def swinging_lines(gaps: Sequence[Gap], swing: Sequence[int]) -> Lines:
     -----
     Where the swing turns, the strand that ties goes back to where it came from, and so does its
     base strand: every strand retraces its way, and after the repeat stands in its first place.
-    A knot at level q belongs to the line q - swing.
+    A knot at level q belongs to the line q - swing, the swing of its panel's row.
     """
     rows, ways = [], []
-    for row, moved in enumerate(swing):
-        came = moved - swing[row - 1]
-        goes = swing[(row + 1) % len(swing)] - moved
+    for row in range(len(swing)):
         tied = gaps[row % 2 :: 2]
-        rows.append(tuple(_knot(gap, came, goes) for gap in tied))
-        ways.append(tuple(gap.level - moved for gap in tied))
-    ranks = {way: rank for rank, way in enumerate(sorted({w for row in ways for w in row}))}
-    last = len(ranks) - 1
-    numbers = tuple(tuple(last - ranks[way] for way in row) for row in ways)
-    return Lines(tuple(rows), numbers, len(ranks))
+        rows.append(tuple(_swung_knot(gap, swing, row) for gap in tied))
+        ways.append(tuple(gap.level - swing[row - gap.later] for gap in tied))
+    nearest_first = sorted({way for row in ways for way in row}, reverse=True)
+    number = {way: place for place, way in enumerate(nearest_first)}
+    numbers = tuple(tuple(number[way] for way in row) for row in ways)
+    return Lines(tuple(rows), numbers, len(number))
+
+
+def _swung_knot(gap: Gap, swing: Sequence[int], row: int) -> Knot:
+    before, now, after = (swing[(row - gap.later + step) % len(swing)] for step in (-1, 0, 1))
+    return _knot(gap, now - before, after - now)
 
 
 def _knot(gap: Gap, came: int, goes: int) -> Knot:
@@ -165,6 +165,38 @@ def _knot(gap: Gap, came: int, goes: int) -> Knot:
     if came == gap.slope:
         return Knot.F if goes == gap.slope else Knot.FB
     return Knot.BF if goes == gap.slope else Knot.B
+
+
+def plaited_lines(strands: int) -> Lines:
+    """Return the lines of a plait: every strand goes on to the other edge, and comes back.
+
+    Notes
+    -----
+    Left of the middle the strand from the left ties, right of it the one from the right. The
+    strand that ties gap p in row r has left the left edge r - p rows after row 1, or, on its
+    way back, r + p - 2 N.
+    """
+    middle = strands // 2
+    gaps = range(1, strands)
+    rows = tuple(
+        tuple(Knot.F if gap <= middle else Knot.B for gap in gaps[row % 2 :: 2]) for row in (0, 1)
+    )
+    numbers = tuple(
+        tuple(
+            (row + 1 + (-gap if gap <= middle else gap)) // 2 % strands
+            for gap in gaps[row % 2 :: 2]
+        )
+        for row in range(2 * strands)
+    )
+    return Lines(rows, numbers, strands)
+
+
+def standing_lines(strands: int) -> Lines:
+    """Return lines that run straight down, one for each strand but the last, which never ties."""
+    gaps = range(1, strands)
+    rows = tuple(tuple(Knot.FB for _ in gaps[row % 2 :: 2]) for row in (0, 1))
+    numbers = tuple(tuple(gap - 1 for gap in gaps[row % 2 :: 2]) for row in (0, 1))
+    return Lines(rows, numbers, strands - 1)
 
 
 def slots_for(lines: Lines, colours: Sequence[str], strands: int) -> tuple[str, ...]:
@@ -181,28 +213,23 @@ def slots_for(lines: Lines, colours: Sequence[str], strands: int) -> tuple[str, 
 
     Notes
     -----
-    A strand takes the colour of the first knot that it ties. One that never ties does not show;
-    it takes that of its neighbour, so that it asks for no shade of its own.
+    A strand takes the colour of the knots that it ties. One that never ties shows at most along
+    an edge; it takes the colour of the knots that are tied on it nearest to an edge.
     """
     slots = [""] * strands
+    round_it: list[tuple[int, str]] = [(strands, "")] * strands
     order = list(range(strands))
     for row, numbers in enumerate(lines.numbers):
         knots = lines.rows[row % len(lines.rows)]
         for place, (knot, number) in enumerate(zip(knots, numbers, strict=True)):
             left = 2 * place + row % 2
-            tying = order[left if knot.left_ties else left + 1]
-            slots[tying] = slots[tying] or colours[number]
+            pair = order[left], order[left + 1]
+            tying, base = pair if knot.left_ties else pair[::-1]
+            slots[tying] = colours[number]
+            round_it[base] = min(round_it[base], (min(left, strands - 2 - left), colours[number]))
             if knot.swaps:
-                order[left : left + 2] = order[left + 1], order[left]
-    for place, slot in enumerate(slots):
-        neighbours = [*reversed(slots[:place]), *slots[place + 1 :]]
-        slots[place] = slot or next(filter(None, neighbours))
-    return tuple(slots)
-
-
-def all_f_swing(strands: int) -> Lines:
-    """Return the lines of one panel that swing over the whole width."""
-    return swinging_lines(folded(strands, 1), to_and_fro(strands))
+                order[left : left + 2] = reversed(pair)
+    return tuple(slot or nearest for slot, (_, nearest) in zip(slots, round_it, strict=True))
 
 
 def to_and_fro(reach: int) -> tuple[int, ...]:
@@ -210,6 +237,12 @@ def to_and_fro(reach: int) -> tuple[int, ...]:
     return (*range(reach, 0, -1), *range(reach))
 
 
-def whole_rows(strands: int, count: int) -> list[int]:
-    """Return the number of knots of each of the first rows."""
-    return [knots_in_row(strands, row) for row in range(1, count + 1)]
+def rounded(reach: int) -> tuple[int, ...]:
+    """Return a swing that goes to and fro one step before each turn, so that turns look round."""
+    rest = max(1, reach // 5)
+    return (
+        *range(reach, 0, -1),
+        *(0, 1) * rest,
+        *range(reach),
+        *(reach, reach - 1) * rest,
+    )
