@@ -48,7 +48,10 @@ class Measure:
 
 @dataclass(frozen=True)
 class SizeRows:
-    """The rows of one size; `rows` is 0 where it cannot be tied, and `why_not` says why."""
+    """The rows of one size; `rows` is 0 where it cannot be tied, and `why_not` says why.
+
+    `beside_picture` are the rows beyond those of the pattern: the background of a centred picture.
+    """
 
     name: str
     length_mm: int
@@ -57,6 +60,7 @@ class SizeRows:
     rows_over: int
     working: str
     why_not: str = ""
+    beside_picture: int = 0
 
 
 @dataclass(frozen=True)
@@ -265,7 +269,11 @@ def _size_rows(pattern: Pattern, name: str, length_mm: int, gauge: Gauge) -> Siz
         return SizeRows(name, length_mm, 0, 0, 0, working, str(error))
     repeats, rows_over = divmod(rows, len(pattern.rows))
     ends = _ENDS[pattern.finish].format(repeat=len(pattern.rows))
-    return SizeRows(name, length_mm, rows, repeats, rows_over, f"{working}, {ends} = {rows}")
+    working = f"{working}, {ends} = {rows}"
+    beside = rows - len(pattern.rows)
+    return SizeRows(
+        name, length_mm, rows, repeats, rows_over, working, beside_picture=max(0, beside)
+    )
 
 
 def _back(pattern: Pattern, gauge: Gauge, *, colours: bool) -> Return | None:

@@ -310,3 +310,11 @@ def test_rows_in_the_table_are_the_rows_of_the_size():
     pattern = all_same(5, rows=6)
     found = analysed(pattern, 150, sizes=[("This", 150)])
     assert found.sizes[0].rows == strand_table(pattern, 150, GAUGE).rows == ceil(150 / sqrt(2))
+
+
+def test_rows_beside_a_centred_picture_by_hand():
+    # 4 rows of 2 mm in a band of 20 mm: ten rows, six of them beside the picture.
+    rows = ("ABABA", "BBBBB", "ABBBA", "AABAA")
+    pattern = GridPattern("Heart", "A", tuple(map(tuple, rows)), Finish.CENTRED)
+    (size,) = analysed(pattern, 20, sizes=(("Ring", 20),)).sizes
+    assert (size.rows, size.beside_picture) == (10, 6)
