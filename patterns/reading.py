@@ -176,7 +176,6 @@ def repeat_words(pattern: Pattern, rows: int) -> tuple[str, ...]:
         f"Tie {_rows(1, turn)}, then begin again with row 1: {times} in full{then}. "
         f"Row {rows} of the band, its last, is row {over or turn} of the repeat.",
         *_side_words(pattern, rows),
-        *_colour_words(pattern, rows),
     )
 
 
@@ -212,18 +211,19 @@ def _capital(words: str) -> str:
     return words[0].upper() + words[1:]
 
 
-def _colour_words(pattern: Pattern, rows: int) -> tuple[str, ...]:
-    if not isinstance(pattern, DiagonalPattern):
-        return ()
+def colour_words(pattern: Pattern, rows: int) -> str:
+    """Say when the colours stand in their first places again; "" where each repeat does it."""
+    if not isinstance(pattern, DiagonalPattern) or rows <= len(pattern.rows):
+        return ""
     repeats = colour_order(pattern)
-    if repeats == 1:
-        return ()
     back = repeats * len(pattern.rows)
+    if repeats == 1:
+        return ""
     if back > rows:
-        return ("The knots stay the same; the colours move on with each repeat.",)
+        return "The knots stay the same; the colours move on with each repeat."
     return (
         f"The knots stay the same; the colours move on, and are back after {repeats} repeats, "
-        f"{back} rows.",
+        f"{back} rows."
     )
 
 

@@ -15,12 +15,12 @@ from patterns.forms import PatternEditForm, StrandChoiceForm
 from patterns.knots import DiagonalPattern, colour_order, order_of_repeat
 from patterns.models import KnottedLength, Pattern
 from patterns.pictures import MOST_PICTURE_ROWS, band_picture
-from patterns.reading import written_rows
 from patterns.strand_answer import NoAnswer, answer_for
 from patterns.techniques import Pattern as PatternCore
 from patterns.views._shared import note_refusal, posted, removed, render_either, why_not_removed
 from patterns.views.analysis import what_it_does
 from patterns.views.comparison import others_to_compare
+from patterns.views.reading import how_to_read
 
 
 @require_safe
@@ -32,7 +32,6 @@ def pattern_detail(request: HttpRequest, pk: int) -> HttpResponse:
     context = {
         "pattern": pattern,
         "choice": choice,
-        "written_rows": written_rows(definition),
         "slots": definition.used_slots,
         "others": others_to_compare(pattern),
         "colourways": colourways,
@@ -40,7 +39,10 @@ def pattern_detail(request: HttpRequest, pk: int) -> HttpResponse:
         "has_shades": Shade.objects.exists(),
     }
     context |= _orders(definition) | _strands(pattern, definition, choice)
-    return render_either(request, "patterns/pattern_detail.html", "patterns/_strands.html", context)
+    context |= how_to_read(definition, context)
+    return render_either(
+        request, "patterns/pattern_detail.html", "patterns/_strands_and_reading.html", context
+    )
 
 
 def _orders(definition: PatternCore) -> dict[str, int]:

@@ -4,7 +4,7 @@ from dataclasses import replace
 from itertools import groupby
 
 from patterns.drawing import draw_band
-from patterns.reading import again_words, read_rows, repeat_words, written_range
+from patterns.reading import again_words, colour_words, read_rows, repeat_words, written_range
 from planner.sheets.bracelet import draw_on_canvas, fitted_size
 from planner.sheets.card_chart import ChartFit, ChartPart
 from planner.sheets.card_contents import CardRun, KnottingCard
@@ -107,6 +107,7 @@ def _add_opening(pages: CardPages, card: KnottingCard) -> None:
     pages.skip(1)
     for sentence in repeat_words(card.pattern, card.rows):
         pages.text(sentence, 9.3)
+    pages.text(colour_words(card.pattern, card.rows), 9.3)
 
 
 def _draw_letterhead(pen: Pen, head: SheetHead, top: float, width: float) -> None:

@@ -1,3 +1,6 @@
+import re
+from html import unescape
+
 import pytest
 from django.urls import reverse
 
@@ -5,6 +8,7 @@ from patterns.models import Colourway, Ending, Gauge, KnottedLength, Pattern, Si
 from tests.factories import (
     make_batch,
     make_colourway,
+    make_grid_pattern,
     make_order,
     make_pattern,
     make_shade,
@@ -292,3 +296,66 @@ def test_pattern_remove_in_use_is_refused_with_the_reason(maker, pattern):
     assert "Remove it for good" not in read(maker.get(url))
     assert "Ferry stripe is used by 1 order line." in read(maker.post(url))
     assert Pattern.objects.exists()
+
+
+# --- how it is read -----------------------------------------------------------------------------
+
+
+def test_pattern_page_shows_how_it_is_read(maker):
+    pattern = make_pattern()
+    response = maker.get(page_of(pattern))
+    page = read(response)
+    rows = response.context["answer"].rows
+    assert "How do I read it?" in page
+    assert f"Row {rows} of the band, its last" in page
+    # All forward on AABBCC: the colours are back after 6 repeats of two rows.
+    assert "Working chart of Ferry stripe, rows 1 to 12" in page
+    assert "Rows 3 to 12 of the chart are the repeat again" in page
+
+
+def test_pattern_page_links_to_the_card_of_its_choice(maker):
+    pattern = make_pattern()
+    size = Size.objects.get(name="Large")
+    page = maker.get(page_of(pattern), {"size": size.pk}).content.decode()
+    links = re.findall(r'href="([^"]+/card\.pdf\?[^"]+)"', page)
+    assert len(links) == 2
+    for link, paper in zip(links, ("a5", "half-letter"), strict=True):
+        address = unescape(link)
+        assert f"size={size.pk}&" in address
+        assert address.endswith(f"paper={paper}")
+        assert maker.get(address)["Content-Type"] == "application/pdf"
+
+
+def test_pattern_page_fragment_brings_the_reading_along(maker):
+    pattern = make_pattern()
+    fragment = maker.get(page_of(pattern), headers=HTMX).content.decode()
+    assert '<section id="strands"' in fragment
+    assert '<section id="reading" hx-swap-oob="true"' in fragment
+    assert "hx-swap-oob" not in maker.get(page_of(pattern)).content.decode()
+
+
+def test_pattern_page_reads_a_centred_picture_by_the_rows_of_the_band(maker):
+    pattern = make_grid_pattern(finish="centred")
+    response = maker.get(page_of(pattern))
+    # Five rows of picture in the middle of the band.
+    before = (response.context["answer"].rows - 5) // 2
+    assert f"Tie rows 1 to {before} in A throughout, then the picture" in read(response)
+    assert f"Row {before + 1}, from the " in read(response)
+
+
+def test_pattern_page_without_an_answer_still_shows_the_rows(maker):
+    KnottedLength.objects.all().delete()
+    page = read(maker.get(page_of(make_pattern())))
+    assert "Row 2: f f" in page
+    assert "Working chart of" in page
+    assert "of the band, its last" not in page
+
+
+def test_pattern_page_charts_no_more_rows_than_it_can_show(maker):
+    # 60 strands have 30 knots a row, and 1500 knots are the most: 50 rows.
+    strands = " ".join("ABCDEF"[number % 6] for number in range(60))
+    rows = (" ".join(["fb"] * 30), " ".join(["fb"] * 29)) * 50
+    pattern = make_pattern(strands=strands, rows=rows)
+    page = read(maker.get(page_of(pattern)))
+    assert "The chart goes to row 50" in page
+    assert "Row 100: fb fb" in page

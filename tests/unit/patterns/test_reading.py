@@ -13,6 +13,7 @@ from patterns.knots import Finish
 from patterns.reading import (
     again_words,
     chart_range,
+    colour_words,
     counted_words,
     read_rows,
     repeat_words,
@@ -125,16 +126,18 @@ def test_repeat_words(rows, sentence):
     assert repeat_words(pattern, rows) == (sentence,)
 
 
-def test_repeat_words_say_when_the_colours_are_back():
+def test_colour_words_say_when_the_colours_are_back():
     # All forward, 6 strands AABBCC: colours are back after 6 repeats of two rows (outside the
     # project: sympy's permutation orders, as in test_knots).
     slant = make_pattern(["f f f", "f f"], slots="AABBCC")
-    assert repeat_words(slant, 118)[1] == (
+    assert colour_words(slant, 118) == (
         "The knots stay the same; the colours move on, and are back after 6 repeats, 12 rows."
     )
-    assert repeat_words(slant, 6)[1] == (
+    assert colour_words(slant, 6) == (
         "The knots stay the same; the colours move on with each repeat."
     )
+    assert colour_words(slant, 2) == ""
+    assert colour_words(make_pattern(["fb fb fb", "fb fb"]), 118) == colour_words(grid(), 40) == ""
 
 
 def test_repeat_words_of_an_odd_grid():
