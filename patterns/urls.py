@@ -36,6 +36,11 @@ urlpatterns = [
     path(
         "<key:pk>/versions/<key:number>/restore/", versions.pattern_restore, name="pattern_restore"
     ),
+    path(
+        "<key:pk>/versions/<key:number>.toml",
+        versions.pattern_version_file,
+        name="pattern_version_file",
+    ),
     path("<key:pk>/archive/", versions.pattern_archive, name="pattern_archive"),
     path("<key:pk>/bring-back/", versions.pattern_bring_back, name="pattern_bring_back"),
     path("<key:pk>/remove/", pattern.pattern_remove, name="pattern_remove"),

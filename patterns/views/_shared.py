@@ -8,9 +8,11 @@ from django.db import models
 from django.http import HttpRequest, HttpResponse, QueryDict
 from django.shortcuts import render
 from django.utils.cache import patch_vary_headers
+from django.utils.http import content_disposition_header
 
 from inventory.page_helpers import wants_fragment
 from patterns.actions import LibraryError, check_removable, remove
+from patterns.pattern_zip import file_names
 
 
 def posted(request: HttpRequest) -> QueryDict | None:
@@ -24,6 +26,15 @@ def render_either(
     template = fragment if wants_fragment(request) else page
     response = render(request, template, {"section": "patterns", **context})
     patch_vary_headers(response, ["HX-Request"])
+    return response
+
+
+def file_answer(text: str, name: str) -> HttpResponse:
+    """A pattern's text to save, under a name that every system takes."""
+    response = HttpResponse(text, content_type="application/toml; charset=utf-8")
+    (file_name,) = file_names([name])
+    response["Content-Disposition"] = content_disposition_header(True, file_name)
+    response["X-Content-Type-Options"] = "nosniff"
     return response
 
 

@@ -1,7 +1,11 @@
 """Earlier versions of a pattern, and patterns put away and brought back."""
 
+from itertools import pairwise
+
 from django.contrib import messages
-from django.http import HttpRequest, HttpResponse
+from django.core.paginator import Page, Paginator
+from django.db.models import QuerySet
+from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
 from django.urls import reverse
 from django.utils import timezone
@@ -20,22 +24,52 @@ from patterns.models import Pattern, PatternVersion
 from patterns.pattern_file import read_pattern
 from patterns.pictures import band_picture
 from patterns.reading import written_rows
+from patterns.version_words import change_words
+from patterns.views._shared import file_answer
 
+VERSIONS_A_PAGE = 50
 PICTURE_ROWS = 120
 
 
 @require_safe
 def pattern_versions(request: HttpRequest, pk: int) -> HttpResponse:
     pattern = get_object_or_404(Pattern, pk=pk)
-    versions = pattern.versions.select_related("created_by").defer("text")
-    context = {"section": "patterns", "pattern": pattern, "versions": versions}
+    versions = pattern.versions.select_related("created_by")
+    page = Paginator(versions, VERSIONS_A_PAGE).get_page(request.GET.get("page"))
+    context = {
+        "section": "patterns",
+        "pattern": pattern,
+        "page": page,
+        "versions": _with_changes(versions, page),
+    }
     return render(request, "patterns/pattern_versions.html", context)
+
+
+def _with_changes(
+    versions: QuerySet[PatternVersion], page: Page[PatternVersion]
+) -> list[tuple[PatternVersion, str]]:
+    """Each with what changed since the one before it, which may stand on the next page."""
+    last = page.end_index()
+    shown = [*page, *versions[last : last + 1]]
+    words = [_changes(old.text, new.text) for new, old in pairwise(shown)]
+    return list(zip(page, [*words, "the first"], strict=False))
+
+
+def _changes(before: str, after: str) -> str:
+    """Texts of earlier releases may not be readable any more."""
+    try:
+        return change_words(read_pattern(before), read_pattern(after))
+    except PatternError:
+        return ""
 
 
 @require_safe
 def pattern_version(request: HttpRequest, pk: int, number: int) -> HttpResponse:
     version = _version(pk, number)
-    definition = read_pattern(version.text)
+    try:
+        definition = read_pattern(version.text)
+    except PatternError as error:
+        raise Http404(str(error)) from None
     title = f"{definition.name}, version {number}, the start at the left"
     context = {
         "section": "patterns",
@@ -52,6 +86,12 @@ def pattern_version(request: HttpRequest, pk: int, number: int) -> HttpResponse:
 def _version(pk: int, number: int) -> PatternVersion:
     versions = PatternVersion.objects.select_related("pattern", "created_by")
     return get_object_or_404(versions, pattern=pk, number=number)
+
+
+@require_safe
+def pattern_version_file(request: HttpRequest, pk: int, number: int) -> HttpResponse:
+    version = _version(pk, number)
+    return file_answer(version.text, f"{version.pattern.name} version {number}")
 
 
 @require_POST

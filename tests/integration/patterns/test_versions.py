@@ -1,8 +1,11 @@
+import re
+
 import pytest
 from django.urls import reverse
 
 from patterns.actions import change_pattern
 from patterns.models import Pattern
+from patterns.views import versions
 from tests.factories import grid_text, make_grid_pattern, make_pattern, pattern_text
 
 OLD = pattern_text("Quay")
@@ -19,6 +22,45 @@ def test_versions_are_listed_with_who_saved_them(maker, pattern, owner):
     assert "Version 2</a> (now)" in page
     assert "Version 1</a>" in page
     assert str(owner) in page
+
+
+def test_versions_say_what_changed(maker, pattern):
+    change_pattern(pattern=pattern, text="# by hand\n" + NEW)
+    change_pattern(pattern=pattern, text=pattern_text("Pier", rows=("b b b", "b f")))
+    page = maker.get(reverse("pattern_versions", args=[pattern.pk])).content.decode()
+    found = re.findall(r'"What changed"><bdi>(.*?)</bdi>', page)
+    assert found == [
+        "Called Pier instead of Quay, 1 knot changed",
+        "Only the way its text is written",
+        "5 knots changed",
+        "The first",
+    ]
+
+
+def test_versions_over_a_page_still_say_what_changed(maker, pattern, monkeypatch):
+    monkeypatch.setattr(versions, "VERSIONS_A_PAGE", 1)
+    url = reverse("pattern_versions", args=[pattern.pk])
+    assert "5 knots changed" in maker.get(url).content.decode()
+    second = maker.get(url, {"page": 2}).content.decode()
+    assert "The first" in second
+    assert "Version 1</a></th>" in second
+
+
+def test_version_has_its_file(maker, pattern):
+    url = reverse("pattern_version_file", args=[pattern.pk, 1])
+    assert url in maker.get(reverse("pattern_version", args=[pattern.pk, 1])).content.decode()
+    answer = maker.get(url)
+    assert answer.content.decode() == OLD
+    assert answer["Content-Disposition"] == 'attachment; filename="Quay-version-1.toml"'
+    assert maker.get(reverse("pattern_version_file", args=[pattern.pk, 9])).status_code == 404
+
+
+def test_version_that_cannot_be_read_is_no_failure(maker, pattern):
+    pattern.versions.filter(number=1).update(text="damaged")
+    assert maker.get(reverse("pattern_versions", args=[pattern.pk])).status_code == 200
+    assert maker.get(reverse("pattern_version", args=[pattern.pk, 1])).status_code == 404
+    assert maker.post(reverse("pattern_restore", args=[pattern.pk, 1])).status_code == 302
+    assert Pattern.objects.get().version == 2
 
 
 def test_old_version_is_drawn_as_it_was(maker, pattern):
