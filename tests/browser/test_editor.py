@@ -230,9 +230,9 @@ def test_tapping_on_a_phone(
     assert round(2 * unit) >= 44  # a knot is two units from tip to tip
     page.locator("[data-chart]").scroll_into_view_if_needed()
     box = chart(page).bounding_box()
-    # The second knot of row 1: three strands and one row into the band, which begins 3 units from
+    # The second knot of row 1: three strands and one row into the band, which begins 2.2 units from
     # the left (numbers) and 3.6 from the top (letters).
-    x, y = box["x"] + (3 + 3) * unit, box["y"] + (3.6 + 1) * unit
+    x, y = box["x"] + (2.2 + 3) * unit, box["y"] + (3.6 + 1) * unit
     page.touchscreen.tap(x, y)
     assert words_of_rows(page)[0] == "f b f"
     page.locator("[name=knot-brush][value=bf]").check()

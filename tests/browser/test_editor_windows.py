@@ -104,6 +104,20 @@ def test_new_pattern_in_a_second_window_does_not_take_the_first_ones(
     assert first_row(one) == "b f f"
 
 
+def test_name_that_is_being_typed_is_saved(signed_in_page: Page, pattern: Pattern) -> None:
+    page = open_editor(signed_in_page, editor_of(pattern))
+    page.get_by_label("Name").focus()
+    page.keyboard.press("End")
+    page.keyboard.type(" again")
+    page.keyboard.press("Control+s")
+    expect(page.locator("[data-saved]")).to_have_text("Quay again is saved.")
+    expect(page.locator("h1")).to_have_text("How is Quay again tied?")
+    assert page.title().startswith("Draw Quay again · ")
+    page.keyboard.type("!")
+    page.reload()
+    expect(page.get_by_label("Name")).to_have_value("Quay again!")
+
+
 def test_connection_that_is_gone_loses_nothing_and_catches_up(
     unwatched: BrowserContext, pattern: Pattern
 ) -> None:
@@ -148,7 +162,7 @@ def test_pattern_that_was_removed_is_saved_as_a_new_one(
     pattern.delete()
     press(page, "Control+s")
     expect(page.locator("[data-saved]")).to_contain_text("not in your library any more")
-    page.locator(".editor-bar [data-as-new]").click()
+    page.locator("[data-beside] [data-as-new]").click()
     expect(page.locator("[data-saved]")).to_have_text("Quay is in your library.")
     assert saved_first_row(Pattern.objects.get()) == "b f f"
 

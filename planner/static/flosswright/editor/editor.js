@@ -27,6 +27,7 @@ const preview = new Preview({
   stateOf: () => session.state,
   onProblem: (problem) => showProblem(problem),
 });
+const fields = [...page.querySelectorAll("[data-field]")];
 let isSaving = false;
 
 function show() {
@@ -37,8 +38,13 @@ function show() {
   showNotices();
 }
 
+function takeIn(field) {
+  const name = field.dataset.field;
+  session.do({ ...session.state, [name]: field.value }, `Changed the ${field.dataset.words}`);
+}
+
 function showFields() {
-  for (const field of page.querySelectorAll("[data-field]")) {
+  for (const field of fields) {
     const value = session.state[field.dataset.field];
     if (field.value !== value && document.activeElement !== field) field.value = value;
   }
@@ -51,6 +57,7 @@ function showButtons() {
   undo.title = session.undoLabel && `Takes back: ${session.undoLabel}`;
   redo.title = session.redoLabel && `Does again: ${session.redoLabel}`;
   find("[data-steps]").textContent = session.at;
+  find("[data-steps-word]").textContent = session.at === 1 ? "step" : "steps";
   find("[data-unsaved]").hidden = !session.isDirty;
 }
 
@@ -86,6 +93,7 @@ function again() {
 async function save({ asNew = false } = {}) {
   if (isSaving) return;
   isSaving = true;
+  fields.forEach(takeIn); // what is being typed counts
   const state = session.state;
   tell("Saving …");
   try {
@@ -117,7 +125,7 @@ function moved(data) {
   session.moveTo(data.key);
   window.history.replaceState(null, "", data.edit_url);
   given.save_url = data.edit_url;
-  find(".editor-bar [data-as-new]").hidden = false;
+  find("[data-beside]").hidden = false;
 }
 
 function showName(name) {
@@ -172,12 +180,7 @@ function pressed(event) {
   event.preventDefault();
 }
 
-for (const field of page.querySelectorAll("[data-field]")) {
-  field.addEventListener("change", () => {
-    const name = field.dataset.field;
-    session.do({ ...session.state, [name]: field.value }, `Changed the ${field.dataset.words}`);
-  });
-}
+for (const field of fields) field.addEventListener("change", () => takeIn(field));
 // A colourway that is chosen colours the board too.
 find("[data-choice]").addEventListener("change", ({ target }) => {
   if (target.name !== "colourway") return;
@@ -187,6 +190,7 @@ find("[data-choice]").addEventListener("change", ({ target }) => {
 page.addEventListener("click", clicked);
 document.addEventListener("keydown", pressed);
 window.addEventListener("beforeunload", (event) => {
+  fields.forEach(takeIn);
   if (session.isDirty) event.preventDefault();
 });
 show();

@@ -5,7 +5,7 @@ import { inkOn } from "./grid_chart.js";
 import { leftOf, walk } from "./walk.js";
 
 const SVG = "http://www.w3.org/2000/svg";
-const EDGE_UNITS = 2.4; // room for the row numbers
+const EDGE_UNITS = 1.6; // room for the row numbers
 const HEAD_UNITS = 3; // room for the strands' letters
 const WORD_UNITS = 0.72; // a letter of the written row
 const MARGIN_UNITS = 0.6;
