@@ -2,6 +2,8 @@ import json
 import re
 
 import pytest
+from django.db import connection
+from django.test.utils import CaptureQueriesContext
 from django.urls import reverse
 
 from patterns.actions import change_pattern
@@ -168,6 +170,18 @@ def test_refusal_names_row_and_knot(maker):
     answer = post(maker, DRAW, {"state": broken}).json()
     assert (answer["row"], answer["knot"]) == (2, 2)
     assert "Row 2, knot 2: 'x' is not a knot" in answer["message"]
+
+
+def test_editor_asks_as_often_for_many_colourways_as_for_one(maker):
+    pattern = make_pattern("Quay")
+    url = reverse("pattern_edit", args=[pattern.pk])
+    counts = []
+    for name in ("One", "Two", "Three", "Four"):
+        make_colourway(pattern, name=name)
+        with CaptureQueriesContext(connection) as queries:
+            maker.get(url)
+        counts.append(len(queries))
+    assert len(set(counts)) == 1
 
 
 # --- the preview -----------------------------------------------------------------------------
