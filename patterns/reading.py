@@ -180,7 +180,9 @@ def repeat_words(pattern: Pattern, rows: int) -> tuple[str, ...]:
 
 
 def _rows(first: int, last: int) -> str:
-    return f"row {first}" if first == last else f"rows {first} to {last}"
+    if first == last:
+        return f"row {first}"
+    return f"rows {first} {'and' if last == first + 1 else 'to'} {last}"
 
 
 def _picture_words(pattern: GridPattern, rows: int) -> tuple[str, ...]:

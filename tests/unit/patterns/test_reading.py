@@ -143,7 +143,7 @@ def test_colour_words_say_when_the_colours_are_back():
 def test_repeat_words_of_an_odd_grid():
     # Three rows are read as six; 20 = 3 x 6 + 2.
     assert repeat_words(grid(), 20) == (
-        "Tie rows 1 to 6, then begin again with row 1: 3 times in full, then rows 1 to 2. "
+        "Tie rows 1 to 6, then begin again with row 1: 3 times in full, then rows 1 and 2. "
         "Row 20 of the band, its last, is row 2 of the repeat.",
         "Rows 4 to 6 show rows 1 to 3 again, tied from the other side.",
     )
@@ -168,14 +168,16 @@ def test_reading_the_written_rows_ties_the_whole_band(pattern, rows):
     first = repeat_words(pattern, rows)[0]
     tied = []
     if " times in full" in first or "once in full" in first:
-        turn = int(re.search(r"Tie rows 1 to (\d+)", first)[1])
+        turn = int(re.search(r"Tie rows 1 (?:to|and) (\d+)", first)[1])
         times = 1 if "once in full" in first else int(re.search(r"(\d+) times", first)[1])
-        over = re.search(r"then rows? 1(?: to (\d+))?\.", first)
+        over = re.search(r"then rows? 1(?: (?:to|and) (\d+))?\.", first)
         tied = list(range(1, turn + 1)) * times + list(
             range(1, int(over[1] or 1) + 1) if over else []
         )
     else:
-        for start, end, blank in re.findall(r"rows? (\d+)(?: to (\d+))?( in . through)?", first):
+        for start, end, blank in re.findall(
+            r"rows? (\d+)(?: (?:to|and) (\d+))?( in . through)?", first
+        ):
             tied += [None if blank else row for row in range(int(start), int(end or start) + 1)]
     background = f"{len(pattern.rows[0])}{getattr(pattern, 'background', '')}"
     words = [background if row is None else written[row] for row in tied]
@@ -194,7 +196,7 @@ def test_chart_range_follows_short_repeats_until_the_colours_are_back():
 def test_again_words_tell_the_rows_that_come_again():
     slant = make_pattern(["f f f", "f f"], slots="AABBCC")
     assert again_words(slant, 118) == (
-        "Rows 3 to 12 of the chart are the repeat again, rows 1 to 2, "
+        "Rows 3 to 12 of the chart are the repeat again, rows 1 and 2, "
         "after the strands have changed places."
     )
     assert again_words(slant, 3).startswith("Row 3 of the chart is the repeat again")
