@@ -1,33 +1,30 @@
 """The shades of a colourway, one for every slot."""
 
-from collections.abc import Iterable
 from typing import Any
 
 from django import forms
 
 from inventory.fields import LineField
 from inventory.models import Shade
+from patterns.colourway_advice import Shelf
 from patterns.techniques import Pattern as PatternCore
 from patterns.techniques import slot_words
 
 
 class ColourwayForm(forms.Form):
-    """A shade for every slot; the shades are fetched once for all the choices."""
+    """A shade for every slot; each choice says what lies on the shelf, so no script is needed."""
 
     name = LineField(label="Name of the colourway", max_length=60)
 
     def __init__(
-        self,
-        data: Any = None,
-        *,
-        definition: PatternCore,
-        shades: Iterable[Shade],
-        **kwargs: Any,
+        self, data: Any = None, *, definition: PatternCore, shelf: Shelf, **kwargs: Any
     ) -> None:
         super().__init__(data, **kwargs)
-        self.shades = {str(shade.pk): shade for shade in shades}
+        self.shades = shelf.shades
         self.slots = definition.used_slots
-        choices = [("", "Choose a shade")] + [(pk, str(shade)) for pk, shade in self.shades.items()]
+        choices = [("", "Choose a shade")] + [
+            (pk, f"{shade}: {shelf.words(shade)}") for pk, shade in self.shades.items()
+        ]
         for slot in self.slots:
             self.fields[f"slot_{slot}"] = forms.ChoiceField(
                 choices=choices,
@@ -37,10 +34,6 @@ class ColourwayForm(forms.Form):
                     "invalid_choice": "That shade is not on your list. Choose another.",
                 },
             )
-
-    @property
-    def slot_fields(self) -> list[forms.BoundField]:
-        return [self[f"slot_{slot}"] for slot in self.slots]
 
     @property
     def chosen(self) -> dict[str, Shade]:

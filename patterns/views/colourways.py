@@ -1,20 +1,32 @@
 """Colourways: which shade goes in each slot of a pattern."""
 
 from django.contrib import messages
-from django.http import HttpRequest, HttpResponse
+from django.http import HttpRequest, HttpResponse, QueryDict
 from django.shortcuts import get_object_or_404, redirect
 from django.urls import reverse
-from django.utils.safestring import mark_safe
+from django.utils.safestring import SafeString, mark_safe
 from django.views.decorators.http import require_http_methods, require_POST
 
-from inventory.models import Shade
-from inventory.page_helpers import say_with_undo
+from inventory.models import Shade, ShelfPiece, Workshop
+from inventory.page_helpers import habits, say_with_undo
 from patterns.actions import LibraryError, set_colourway
+from patterns.colour_difference import Sight, as_seen
+from patterns.colourway_advice import Shelf, advise
 from patterns.forms_colourway import ColourwayForm
+from patterns.look_alikes import look_alikes, sights_to_show
 from patterns.models import Colourway, Pattern
 from patterns.pictures import thumbnail
 from patterns.techniques import Pattern as PatternCore
+from patterns.usual_bracelet import UsualBracelet, usual_bracelet
 from patterns.views._shared import note_refusal, posted, removed, render_either
+
+# These buttons show what would be; the others save.
+LOOKS = {"preview", "take"}
+SEEN_BY = {
+    Sight.PROTAN: "without red cones (protan)",
+    Sight.DEUTAN: "without green cones (deutan)",
+    Sight.TRITAN: "without blue cones (tritan)",
+}
 
 
 @require_http_methods(["GET", "HEAD", "POST"])
@@ -34,27 +46,68 @@ def _colourway_form(
     request: HttpRequest, pattern: Pattern, colourway: Colourway | None
 ) -> HttpResponse:
     definition = pattern.definition
-    only_look = "preview" in request.POST
+    only_look = not LOOKS.isdisjoint(request.POST)
+    workshop = habits()
+    shelf = _shelf(workshop)
     form = ColourwayForm(
         None if only_look else posted(request),
         definition=definition,
-        shades=Shade.objects.all(),
-        initial=request.POST.dict() if only_look else _initial(colourway),
+        shelf=shelf,
+        initial=_looked_at(request.POST) if only_look else _initial(colourway),
     )
     if form.is_valid():
         saved = _saved(form, pattern, colourway)
         if saved:
             messages.success(request, f"{saved.name} is saved. You can put it in an order now.")
             return redirect(f"{reverse('pattern_detail', args=[pattern.pk])}?colourway={saved.pk}")
-    context = {
-        "pattern": pattern,
-        "colourway": colourway,
-        "form": form,
-        "picture": _picture(definition, form),
-    }
+    bracelet = usual_bracelet(pattern, workshop)
+    context: dict[str, object] = {"pattern": pattern, "form": form, "address": request.path}
+    context |= _advice(definition, form, shelf, bracelet)
     return render_either(
-        request, "patterns/colourway_form.html", "patterns/_colourway_band.html", context
+        request, "patterns/colourway_form.html", "patterns/_colourway_answer.html", context
     )
+
+
+def _shelf(workshop: Workshop) -> Shelf:
+    return Shelf(
+        shades={str(shade.pk): shade for shade in Shade.objects.all()},
+        thread=ShelfPiece.objects.by_shade(workshop.short_measure_share),
+        unit=workshop.length_unit,
+    )
+
+
+def _looked_at(typed: QueryDict) -> dict[str, object]:
+    """What was typed, with the shade that a button takes for a slot; nothing is saved."""
+    slot, _, key = typed.get("take", "").partition(":")
+    shown: dict[str, object] = dict(typed.items())
+    return shown | ({f"slot_{slot}": key} if key else {})
+
+
+def _advice(
+    definition: PatternCore, form: ColourwayForm, shelf: Shelf, bracelet: UsualBracelet
+) -> dict[str, object]:
+    """Everything that changes with the shades."""
+    chosen = form.chosen
+    colours = {slot: shade.colour for slot, shade in chosen.items()}
+    advice = advise(form.slots, chosen, shelf, bracelet)
+    alike = look_alikes(definition, bracelet.rows, colours)
+    return {
+        "bracelet": bracelet,
+        "slots": [(form[f"slot_{slot}"], advice[slot]) for slot in form.slots],
+        "alike": alike,
+        "picture": _picture(definition, chosen),
+        "seen": [_as_seen_by(definition, colours, sight) for sight in sights_to_show(alike)],
+    }
+
+
+def _as_seen_by(
+    definition: PatternCore, colours: dict[str, str], sight: Sight
+) -> tuple[str, SafeString]:
+    seen = {slot: as_seen(colour, sight) for slot, colour in colours.items()}
+    words = SEEN_BY[sight]
+    title = f"{definition.name}, as seen by eyes {words}"
+    # The drawing escapes its title; everything else in it is numbers and colours.
+    return words, mark_safe(thumbnail(definition, seen, title=title))
 
 
 def _initial(colourway: Colourway | None) -> dict[str, object]:
@@ -64,8 +117,7 @@ def _initial(colourway: Colourway | None) -> dict[str, object]:
     return {"name": colourway.name} | {f"slot_{slot}": shade.pk for slot, shade in shades.items()}
 
 
-def _picture(definition: PatternCore, form: ColourwayForm) -> str:
-    chosen = form.chosen
+def _picture(definition: PatternCore, chosen: dict[str, Shade]) -> SafeString:
     colours = {slot: shade.colour for slot, shade in chosen.items()}
     words = ", ".join(f"{slot} {shade}" for slot, shade in chosen.items())
     title = f"{definition.name} in {words}" if words else f"{definition.name}, no shade chosen yet"

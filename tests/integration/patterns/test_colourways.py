@@ -1,11 +1,27 @@
+import re
+from html import unescape
+
 import pytest
 from django.urls import reverse
 
-from inventory.models import Shade
-from patterns.models import Colourway, Pattern
-from tests.factories import make_batch, make_colourway, make_order, make_pattern, make_shade
+from inventory.measures import format_length
+from inventory.models import Shade, ShelfPiece, Workshop
+from patterns.colour_difference import Sight, as_seen, difference, difference_words
+from patterns.models import Colourway, Pattern, Size
+from patterns.neighbours import neighbouring_slots
+from tests.factories import (
+    make_batch,
+    make_colourway,
+    make_grid_pattern,
+    make_order,
+    make_pattern,
+    make_shade,
+    put_thread,
+)
 
 HTMX = {"HX-Request": "true"}
+# Session, sign-in and habits; then pattern, shades, shelf, sizes, ending, gauge, knotted length.
+MOST_QUERIES = 20
 
 
 @pytest.fixture
@@ -87,6 +103,8 @@ def test_colourway_preview_draws_and_saves_nothing(maker, pattern, shades):
     assert "Choose a shade for C." not in whole
     assert f'<option value="{red.pk}" selected>' in whole
     assert fragment.lstrip().startswith('<div id="colourway-band"')
+    assert '<div class="advice" id="advice-A" hx-swap-oob="true">' in fragment
+    assert "hx-swap-oob" not in whole
 
 
 @pytest.mark.parametrize("value", ["abc", "-1", "9" * 5_000, "\0"])
@@ -152,10 +170,164 @@ def test_colourway_that_is_not_there_is_not_found(maker):
     assert maker.post(reverse("colourway_remove", args=[99])).status_code == 404
 
 
+def looked_at(maker, pattern: Pattern, **chosen: Shade) -> str:
+    data = {f"slot_{slot}": shade.pk for slot, shade in chosen.items()}
+    return words(maker.post(new(pattern), {"preview": "yes", **data}).content.decode())
+
+
+def words(page: str) -> str:
+    """The page without its tags, blanks put together."""
+    return " ".join(unescape(re.sub(r"<[^>]*>", " ", page)).split()).replace(" .", ".")
+
+
+def test_each_shade_says_what_lies_on_the_shelf(maker, pattern, shades):
+    put_thread(shades[0], 8_000, 8_000, kind=ShelfPiece.Kind.WHOLE)
+    put_thread(shades[0], 7_040)
+    page = maker.get(new(pattern)).content.decode()
+    assert ">M1 Madder: 23 m on the shelf, 2 whole skeins</option>" in page
+    assert ">I1 Indigo: none on the shelf</option>" in page
+
+
+def test_each_slot_says_what_one_usual_bracelet_takes(maker, pattern, shades):
+    # The numbers of the pattern's page: the middle size with the default ending and gauge.
+    answer = maker.get(reverse("pattern_detail", args=[pattern.pk])).context["answer"]
+    page = maker.get(new(pattern)).content.decode()
+    [line] = [line for line in answer.slots if line.slot == "B"]
+    assert f"B takes {format_length(line.total_mm)} in 2 pieces." in words(page)
+
+
+def test_lengths_are_those_of_the_workshop(maker, pattern, shades):
+    Workshop.objects.update(length_unit="in")
+    put_thread(shades[0], 9_144)
+    assert "10 yd on the shelf" in looked_at(maker, pattern, A=shades[0])
+
+
+def test_shade_without_enough_names_the_nearest_that_has_it(maker, pattern):
+    wanted = make_shade("R1", "Rose", "#aa1122")
+    near = make_shade("R2", "Rust", "#b01a22")
+    nearer_but_short = make_shade("R3", "Ruby", "#aa1123")
+    far = make_shade("B1", "Blue", "#1122aa")
+    put_thread(nearer_but_short, 300)
+    put_thread(far, 8_000)
+    put_thread(near, 8_000)
+    page = looked_at(maker, pattern, A=wanted)
+    assert "No lot on the shelf holds enough. Near it, and on the shelf:" in page
+    # Sharma, Wu & Dalal (2005) as in tests/unit/patterns/test_colour_difference.py.
+    amount = difference(wanted.colour, near.colour)
+    assert f"Take R2 Rust for A {difference_words(amount)} ({amount:.1f}), 8 m on the shelf" in page
+    assert page.index("Take R2") < page.index("Take B1")
+    assert "Take R3" not in page
+    assert "Take R1" not in page
+
+
+def test_shade_with_enough_names_no_other(maker, pattern, shades):
+    for shade in shades:
+        put_thread(shade, 8_000)
+    page = looked_at(maker, pattern, A=shades[0], B=shades[1])
+    assert "Near it" not in page
+    assert "Take" not in page
+
+
+def test_one_shade_in_two_slots_needs_thread_for_both(maker, pattern, shades):
+    # Two pieces of about 1 m each: enough for one slot, not for two.
+    put_thread(shades[0], 3_000)
+    assert "No lot" not in looked_at(maker, pattern, A=shades[0])
+    page = looked_at(maker, pattern, A=shades[0], B=shades[0])
+    assert "No lot on the shelf holds enough for A and B together." in page
+    assert "A and B lie beside each other" in page
+    assert "in the same colour." in page
+
+
+def test_shade_of_another_slot_is_not_offered(maker, pattern, shades):
+    put_thread(shades[1], 20_000)
+    page = looked_at(maker, pattern, A=shades[0], B=shades[1])
+    assert "No other shade on the shelf holds enough." in page
+
+
+def test_taking_a_shade_shows_it_and_saves_nothing(maker, pattern, shades):
+    put_thread(shades[1], 20_000)
+    data = typed(shades, slot_B=shades[2].pk, name="Dusk")
+    offered = maker.post(new(pattern), data | {"preview": "yes"}).content.decode()
+    take = f"A:{shades[1].pk}"
+    assert f'<button name="take" value="{take}"' in offered
+    taken = maker.post(new(pattern), data | {"take": take})
+    assert taken.context["form"].chosen["A"] == shades[1]
+    assert taken.context["form"].chosen["B"] == shades[2]
+    assert 'value="Dusk"' in taken.content.decode()
+    assert not Colourway.objects.exists()
+
+
+@pytest.mark.parametrize(
+    "take", ["", ":", "A", "A:", "Q:1", "A:999999", "A:\0", "<script>:<script>", "9" * 5_000]
+)
+def test_taking_anything_else_is_answered(maker, pattern, shades, take):
+    response = maker.post(new(pattern), typed(shades) | {"take": take})
+    assert response.status_code == 200
+    assert "<script>:" not in response.content.decode()
+    assert not Colourway.objects.exists()
+
+
+def test_look_alikes_warn_draw_and_never_block(maker, pattern):
+    red, green, white = (
+        make_shade("R1", "Madder", "#aa1122"),
+        make_shade("G1", "Moss", "#2e7d32"),
+        make_shade("W1", "Chalk", "#f4f1e8"),
+    )
+    data = typed([red, green, white])
+    page = maker.post(new(pattern), data | {"preview": "yes"}).content.decode()
+    sides = neighbouring_slots(pattern.definition, page_rows(page))["A", "B"]
+    assert (
+        f"A and B lie beside each other {sides} times and look alike to people with red-green "
+        "colour blindness."
+    ) in words(page)
+    assert "As eyes without green cones (deutan) see it" in page
+    assert f'fill="{as_seen(red.colour, Sight.DEUTAN)}"' in page
+    maker.post(new(pattern), data)
+    assert Colourway.objects.get().shades_by_slot()["B"] == green
+
+
+def page_rows(page: str) -> int:
+    return int(re.search(r"(\d+) rows", words(page))[1])
+
+
+def test_shades_well_apart_give_no_warning(maker, pattern):
+    shades = [make_shade(colour=colour) for colour in ("#101010", "#f4f1e8", "#3050c0")]
+    page = looked_at(maker, pattern, **dict(zip("ABC", shades, strict=True)))
+    assert "look alike" not in page
+    assert "As eyes" not in page
+
+
+def test_grid_pattern_is_chosen_for_in_the_same_way(maker):
+    grid = make_grid_pattern()
+    one, other = make_shade(colour="#aa1122"), make_shade(colour="#aa1122")
+    put_thread(other, 300)
+    page = looked_at(maker, grid, A=one, B=other)
+    assert "A: base and leading strands, 14 cells of one repeat" in page
+    assert re.search(r"A takes [\d.]+ m in 6 pieces", page)
+    assert "A and B lie beside each other" in page
+
+
+def test_without_a_size_the_page_still_chooses(maker, pattern, shades):
+    Size.objects.all().delete()
+    page = looked_at(maker, pattern, A=shades[0], B=shades[0])
+    assert "Set a usual size, ending and gauge" in page
+    assert "You have to buy it." in page
+    assert "A and B lie beside each other" in page
+    assert maker.post(new(pattern), typed(shades)).status_code == 302
+
+
+def test_enter_in_the_name_saves(maker, pattern, shades):
+    # The first button of a form is the one that Enter presses (HTML, implicit submission).
+    page = maker.post(new(pattern), {"preview": "yes", "slot_A": shades[0].pk}).content.decode()
+    form = page[page.index('<form method="post" class="leaf colourway"') :]
+    assert "name=" not in re.search(r"<button[^>]*>", form)[0]
+
+
 def test_colourway_form_makes_as_many_queries_for_twice_the_shades(maker, pattern, query_count):
     for _ in range(3):
-        make_shade()
+        put_thread(make_shade(), 500, 900)
     few = query_count(new(pattern))
     for _ in range(3):
-        make_shade()
+        put_thread(make_shade(), 500, 900)
     assert query_count(new(pattern)) == few
+    assert few <= MOST_QUERIES
