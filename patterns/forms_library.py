@@ -6,14 +6,25 @@ from typing import Any
 
 from django import forms
 from django.core.exceptions import ValidationError
+from django.core.files.uploadedfile import UploadedFile
 
 from inventory.measures import UNITS
+from patterns.fields import BlockField
 from patterns.knots import MAX_STRANDS
 from patterns.models import Pattern
+from patterns.pattern_file import MAX_FILE_BYTES
+from patterns.pattern_zip import (
+    MAX_FILES,
+    MAX_ZIP_BYTES,
+    FoundFiles,
+    PatternZipError,
+    read_files,
+)
 
 LONGEST_SEARCH = 80
 NOT_ON_LIST = {"invalid_choice": "Choose one from the list."}
 THREAD_EDGES = (4, 8, 16)
+PASTED = "pasted.toml"
 
 
 @dataclass(frozen=True)
@@ -126,5 +137,69 @@ class LibraryForm(forms.Form):
         return bool(self.errors) or bool(self.chosen.keys() - {"q"})
 
     @property
+    def kept_values(self) -> list[tuple[str, str]]:
+        """The filters as they were sent, for an address that shows the same."""
+        return [(name, self.data[name]) for name in self.fields if self.data.get(name)]
+
+    @property
     def filters(self) -> list[forms.BoundField]:
         return [self[name] for name in self.fields if name != "q"]
+
+
+class ManyFilesInput(forms.FileInput):
+    allow_multiple_selected = True
+
+
+class ManyFilesField(forms.FileField):
+    """All the files that were chosen, as they were sent."""
+
+    widget = ManyFilesInput
+
+    def clean(self, data: Any, initial: Any = None) -> list[UploadedFile]:
+        return [super(ManyFilesField, self).clean(file, initial) for file in data or []]
+
+
+class ImportForm(forms.Form):
+    """Pattern files and ZIPs of them, or the text of one file."""
+
+    sent = ManyFilesField(
+        required=False,
+        allow_empty_file=True,
+        label="Choose pattern files, or a ZIP of them",
+        help_text=(
+            f"Files that end in .toml, each at most {MAX_FILE_BYTES // 1024} KB; a ZIP, folders in it"
+            f" or not, at most {MAX_ZIP_BYTES // 2**20} MB. Up to {MAX_FILES} at once."
+        ),
+        widget=ManyFilesInput(attrs={"accept": ".toml,.zip,text/plain,application/zip"}),
+    )
+    text = BlockField(
+        required=False,
+        label="Or paste the text of a pattern file",
+        widget=forms.Textarea(attrs={"class": "code", "rows": 10, "spellcheck": "false"}),
+    )
+
+    def clean(self) -> dict[str, Any]:
+        cleaned = super().clean() or self.cleaned_data
+        if self.errors:
+            return cleaned
+        # One byte more than the most is enough to see that it is too large.
+        uploads = [(file.name or "", file.read(MAX_ZIP_BYTES + 1)) for file in cleaned["sent"]]
+        if cleaned["text"].strip():
+            uploads.append((PASTED, cleaned["text"].encode(errors="replace")))
+        if not uploads:
+            raise ValidationError("Choose pattern files, or paste the text of one.")
+        try:
+            cleaned["found"] = read_files(uploads)
+        except PatternZipError as error:
+            self.add_error("sent", str(error))
+        return cleaned
+
+    @property
+    def found(self) -> FoundFiles:
+        found: FoundFiles = self.cleaned_data["found"]
+        return found
+
+    @property
+    def source_name(self) -> str:
+        names = [file.name or "" for file in self.cleaned_data["sent"]]
+        return ", ".join(names[:3]) or PASTED

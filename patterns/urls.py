@@ -8,7 +8,9 @@ from patterns.views import (
     comparison,
     editor,
     endings,
+    exporting,
     gauges,
+    importing,
     library,
     new,
     pattern,
@@ -28,6 +30,17 @@ urlpatterns = [
     path("<key:pk>/picture.svg", library.pattern_picture, name="pattern_picture"),
     path("<key:pk>/edit/text/", pattern.pattern_edit_text, name="pattern_edit_text"),
     path("<key:pk>/pattern.toml", pattern.pattern_file, name="pattern_file"),
+    path("export.zip", exporting.pattern_export, name="pattern_export"),
+    path("import/", importing.pattern_import, name="pattern_import"),
+    path("import/<key:pk>/", importing.pattern_import_check, name="pattern_import_check"),
+    path(
+        "import/<key:pk>/<key:number>.svg",
+        importing.pattern_import_picture,
+        name="pattern_import_picture",
+    ),
+    path(
+        "import/<key:pk>/discard/", importing.pattern_import_discard, name="pattern_import_discard"
+    ),
     path("compare/", comparison.pattern_compare, name="pattern_compare"),
     path("<key:pk>/variants/", analysis.pattern_variants, name="pattern_variants"),
     path("<key:pk>/variants/keep/", analysis.pattern_variant_keep, name="pattern_variant_keep"),

@@ -41,7 +41,6 @@ def pattern_list(request: HttpRequest) -> HttpResponse:
         "page": page,
         "entries": entries,
         "is_archive": form.chosen.get("kept") == "archived",
-        "filters": request.GET.urlencode(),
         "usual_length_mm": USUAL_LENGTH_MM,
         # Only an empty list needs to know why it is empty.
         "is_empty": not entries and not Pattern.objects.exists(),

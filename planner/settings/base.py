@@ -134,7 +134,7 @@ CSRF_FAILURE_VIEW = "planner.error_pages.csrf_failure"
 # How much a page may send: fields and pasted text, files, and the whole request
 DATA_UPLOAD_MAX_MEMORY_SIZE = 5_000_000
 DATA_UPLOAD_MAX_NUMBER_FIELDS = 20_000
-DATA_UPLOAD_MAX_NUMBER_FILES = 20
+DATA_UPLOAD_MAX_NUMBER_FILES = 500
 FILE_UPLOAD_MAX_MEMORY_SIZE = 2_500_000
 LARGEST_REQUEST_BYTES = 12_000_000
 

@@ -4,7 +4,15 @@ from html import unescape
 import pytest
 from django.urls import reverse
 
-from patterns.models import Colourway, Ending, Gauge, KnottedLength, Pattern, Size
+from patterns.models import (
+    Colourway,
+    Ending,
+    Gauge,
+    KnottedLength,
+    Pattern,
+    PatternImport,
+    Size,
+)
 from tests.factories import (
     make_batch,
     make_colourway,
@@ -274,7 +282,10 @@ def test_pattern_file_can_be_added_again(maker, pattern):
     text = maker.get(reverse("pattern_file", args=[pattern.pk])).content.decode()
     maker.post(reverse("pattern_remove", args=[pattern.pk]))
     assert not Pattern.objects.exists()
-    maker.post(reverse("pattern_new"), {"way": "file", "text": text})
+    maker.post(reverse("pattern_import"), {"text": text})
+    maker.post(
+        reverse("pattern_import_check", args=[PatternImport.objects.get().pk]), {"do-1": "add"}
+    )
     assert Pattern.objects.get().text == pattern.text
 
 
