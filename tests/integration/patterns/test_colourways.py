@@ -318,8 +318,10 @@ def test_without_a_size_the_page_still_chooses(maker, pattern, shades):
 
 def test_enter_in_the_name_saves(maker, pattern, shades):
     # The first button of a form is the one that Enter presses (HTML, implicit submission).
+    put_thread(shades[1], 20_000)
     page = maker.post(new(pattern), {"preview": "yes", "slot_A": shades[0].pk}).content.decode()
     form = page[page.index('<form method="post" class="leaf colourway"') :]
+    assert 'name="take"' in form
     assert "name=" not in re.search(r"<button[^>]*>", form)[0]
 
 
