@@ -128,24 +128,27 @@ class _DiagonalChart:
         self, knot: TiedKnot, y: float, order: list[int], runs: list[list[tuple[float, float]]]
     ) -> None:
         x = self.left + knot.left
+        self._draw_knot(knot, x, y)
+        for place, side in ((knot.left - 1, x - _EDGE), (knot.left, x + _EDGE)):
+            hanging = self.left + place + 0.5
+            run = runs[place]
+            # Between neighbouring rows a run goes straight from edge to edge.
+            bends = run[:1] if run[-1] == (hanging, y - 0.5) else [*run, (hanging, y - 0.5)]
+            self._add_thread([*bends, (side, y - _EDGE)], order[place])
+            runs[place] = [(side, y + _EDGE), (hanging, y + 0.5)]
+        _trade_places(knot, order)
+
+    def _draw_knot(self, knot: TiedKnot, x: float, y: float) -> None:
         slot, ink = self.slots[knot.tying], self.inks[knot.tying]
         self.knots.append(Square(x, y, HALF, self.colours[knot.tying], slot))
-        way = tuple((x + across, y + down) for across, down in _WAYS[knot.knot])
+        way = tuple([(x + across, y + down) for across, down in _WAYS[knot.knot]])
         self.ways.append(Stroke(way, _WAY_WIDTH, ink))
         across, down = _LETTER_PLACES[knot.knot]
         base = y + down + _MIDDLE * _LETTER_SIZE
         self.labels.append(Label(x + across, base, slot, _LETTER_SIZE, "middle", ink))
-        for place, side in ((knot.left - 1, -_EDGE), (knot.left, _EDGE)):
-            hanging = self.left + place + 0.5
-            runs[place] += [(hanging, y - 0.5), (x + side, y - _EDGE)]
-            self._add_thread(runs[place], order[place])
-            runs[place] = [(x + side, y + _EDGE), (hanging, y + 0.5)]
-        _trade_places(knot, order)
 
     def _add_thread(self, points: list[tuple[float, float]], strand: int) -> None:
-        # Between neighbouring rows a run ends where it begins to hang.
-        bends = tuple(dict.fromkeys(points))
-        self.threads.append(Stroke(bends, _THREAD_WIDTH, self.colours[strand]))
+        self.threads.append(Stroke(tuple(points), _THREAD_WIDTH, self.colours[strand]))
 
     def _label_ends(self, order: list[int], letter_y: float, number_y: float) -> None:
         for place, strand in enumerate(order):

@@ -2,6 +2,7 @@
 
 import re
 from collections.abc import Iterable
+from functools import lru_cache
 from xml.sax.saxutils import escape, quoteattr
 
 from patterns.colours import working_colours
@@ -81,7 +82,7 @@ def chart_to_svg(chart: Chart, *, title: str, unit_px: float) -> str:
     for colour, knots in _by_colour(chart.knots).items():
         parts.append(_knotted_path(colour, knots))
     for way in _alike(chart.ways):
-        parts.append(_stroke_path(way, way[0].colour, way[0].width))
+        parts.append(_stroke_path(_points(way), way[0].colour, way[0].width))
     parts.extend(_text(label) for label in chart.labels)
     return "".join([*parts, "</svg>"])
 
@@ -104,17 +105,20 @@ def _alike(strokes: Iterable[Stroke]) -> Iterable[list[Stroke]]:
 
 
 def _thread_paths(colour: str, threads: list[Stroke]) -> list[str]:
-    width = threads[0].width
+    path, width = _points(threads), threads[0].width
     return [
-        _stroke_path(threads, working_colours(colour), width + OUTLINE_WIDTH),
-        _stroke_path(threads, colour, width - OUTLINE_WIDTH),
+        _stroke_path(path, working_colours(colour), width + OUTLINE_WIDTH),
+        _stroke_path(path, colour, width - OUTLINE_WIDTH),
     ]
 
 
-def _stroke_path(strokes: list[Stroke], colour: str, width: float) -> str:
-    path = "".join(
-        "M" + "L".join(f"{_short(x)} {_short(y)}" for x, y in stroke.points) for stroke in strokes
+def _points(strokes: list[Stroke]) -> str:
+    return "".join(
+        ["M" + "L".join([f"{_short(x)} {_short(y)}" for x, y in s.points]) for s in strokes]
     )
+
+
+def _stroke_path(path: str, colour: str, width: float) -> str:
     return (
         f'<path d="{path}" fill="none" stroke="{colour}" stroke-width="{_short(width)}"'
         ' stroke-linejoin="round" stroke-linecap="round"/>'
@@ -180,6 +184,7 @@ def _outline(knot: Knotted) -> str:
     return f"{top}l{half} {half}-{half} {half}-{half}-{half}z"
 
 
+@lru_cache(maxsize=8192)
 def _short(number: float) -> str:
     """Write a coordinate with at most two places and no trailing zeros."""
     return f"{number:.2f}".rstrip("0").rstrip(".")
