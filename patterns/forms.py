@@ -4,7 +4,6 @@ from typing import Any
 
 from django import forms
 from django.core.exceptions import ValidationError
-from django.core.files.uploadedfile import UploadedFile
 from django.http import QueryDict
 
 from inventory.fields import LengthField, LineField
@@ -12,7 +11,7 @@ from inventory.page_helpers import habits
 from patterns.fields import BlockField, NumberField
 from patterns.knots import Finish, PatternError
 from patterns.models import Colourway, Ending, Gauge, Pattern, Size
-from patterns.pattern_file import MAX_FILE_BYTES, read_pattern
+from patterns.pattern_file import read_pattern
 
 NOT_ON_LIST = "Choose one from the list."
 FINISH_CHOICES = [
@@ -28,66 +27,6 @@ LENGTHS_CHOICES = [
     ("1", "one length"),
     *((str(count), f"{count} lengths") for count in range(2, 13)),
 ]
-
-
-class PatternFileForm(forms.Form):
-    """A pattern file: its text pasted, or the file itself."""
-
-    text = BlockField(
-        required=False,
-        label="Paste the text of a pattern file",
-        widget=forms.Textarea(attrs={"class": "code", "rows": 12, "spellcheck": "false"}),
-    )
-    file = forms.FileField(
-        required=False,
-        label="Or choose the file",
-        help_text=f"A text file that ends in .toml, at most {MAX_FILE_BYTES // 1024} KB.",
-        widget=forms.FileInput(attrs={"accept": ".toml,text/plain"}),
-        allow_empty_file=True,
-    )
-
-    def clean(self) -> dict[str, Any]:
-        cleaned = super().clean() or self.cleaned_data
-        if self.errors:
-            return cleaned
-        upload = cleaned.get("file")
-        pasted = cleaned.get("text", "")
-        if upload and pasted.strip():
-            raise ValidationError("Paste the text or choose a file, not both.")
-        if not upload and not pasted.strip():
-            raise ValidationError("Paste the text of a pattern file, or choose one.")
-        text = self._uploaded_text(upload) if upload else pasted
-        if text is not None:
-            _read_into(self, "text", text)
-        return cleaned
-
-    def _uploaded_text(self, upload: UploadedFile) -> str | None:
-        try:
-            text = BlockField().clean(_decoded(upload))
-        except ValidationError as error:
-            self.add_error("file", "The file is empty." if error.code == "required" else error)
-            return None
-        self._show_in_box(text)
-        return text
-
-    def _show_in_box(self, text: str) -> None:
-        """A file that holds a mistake stands in the box, to be put right there."""
-        if isinstance(self.data, QueryDict):
-            self.data = self.data.copy()
-            self.data["text"] = text
-
-
-def _decoded(upload: UploadedFile) -> str:
-    if (upload.size or 0) > MAX_FILE_BYTES:
-        raise ValidationError(
-            f"The file is larger than {MAX_FILE_BYTES // 1024} KB; no pattern is. Choose another."
-        )
-    try:
-        return upload.read().decode("utf-8-sig")
-    except UnicodeDecodeError:
-        raise ValidationError(
-            "This is not a text file in UTF-8. Save it so, or paste its text."
-        ) from None
 
 
 def _read_into(form: forms.Form, field: str, text: str) -> None:

@@ -60,6 +60,11 @@ class Family:
     order_words: str
     fewest_colours: int = 1
 
+    @property
+    def example_order(self) -> str:
+        """Colours that show it well."""
+        return "AB" if self.fewest_colours == 2 else "ABC"
+
 
 def _of_lines(
     key: str,

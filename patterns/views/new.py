@@ -5,59 +5,61 @@ from django.contrib import messages
 from django.http import HttpRequest, HttpResponse
 from django.shortcuts import redirect, render
 from django.utils.safestring import SafeString, mark_safe
-from django.views.decorators.http import require_http_methods
+from django.views.decorators.http import require_http_methods, require_safe
 
 from patterns.actions import LibraryError, add_pattern
-from patterns.families import FAMILIES, make_family
-from patterns.forms import PatternFileForm
-from patterns.forms_new import FamilyForm, PatternRowsForm
-from patterns.knots import SLOT_LETTERS
+from patterns.families import FAMILIES, Family, make_family
+from patterns.forms_new import FamilyForm, RowsForm
+from patterns.knots import colour_order
 from patterns.models import Pattern
 from patterns.pattern_file import write_pattern
 from patterns.pictures import band_picture, thumbnail
-from patterns.reading import written_rows
 from patterns.techniques import Pattern as PatternCore
 from patterns.views._shared import note_refusal, posted, render_either
+from patterns.written_look import rows_before_notes
 
 PICTURE_ROWS = 120
 EXAMPLE_STRANDS = 12
 
 
-@require_http_methods(["GET", "HEAD", "POST"])
+@require_safe
 def pattern_new(request: HttpRequest) -> HttpResponse:
-    """The ways to add one; a file is added right here."""
-    form = PatternFileForm(posted(request), request.FILES or None, auto_id="file_%s")
-    if request.method == "POST" and form.is_valid():
-        pattern = _added(request, form, form.cleaned_data["pattern_text"])
-        if pattern:
-            return redirect("pattern_detail", pk=pattern.pk)
-    context = {"section": "patterns", "form": form, "families": _family_pictures()}
+    """The ways to add one."""
+    context = {"section": "patterns", "families": _family_pictures()}
     return render(request, "patterns/pattern_new.html", context)
 
 
-def _family_pictures() -> list[tuple[str, str, SafeString]]:
+def _family_pictures() -> list[tuple[Family, SafeString]]:
     pictures = []
-    for key, family in FAMILIES.items():
-        colours = tuple(SLOT_LETTERS[: max(family.fewest_colours, 2)])
-        example = make_family(key, EXAMPLE_STRANDS, colours)
+    for family in FAMILIES.values():
+        example = make_family(family.key, EXAMPLE_STRANDS, family.example_order)
         # The drawing escapes its title; everything else in it is numbers and colours.
-        pictures.append((key, family.name, mark_safe(thumbnail(example, {}, title=family.name))))
+        pictures.append((family, mark_safe(thumbnail(example, {}, title=family.name))))
     return pictures
 
 
 @require_http_methods(["GET", "HEAD", "POST"])
 def pattern_rows(request: HttpRequest) -> HttpResponse:
-    form = PatternRowsForm(posted(request))
+    form = RowsForm(posted(request))
     only_look = "look" in request.POST
     if request.method == "POST" and form.is_valid() and not only_look:
         pattern = _added(request, form, write_pattern(form.cleaned_data["definition"]))
         if pattern:
             return redirect("pattern_detail", pk=pattern.pk)
-    definition = form.cleaned_data.get("definition") if form.is_bound else None
-    context: dict[str, object] = {"form": form, "definition": definition}
-    if definition:
-        context |= {"picture": _picture(definition), "rows": written_rows(definition)}
+    context = {"form": form, "definition": None, "picture": _rows_picture(form)}
+    if form.is_bound:
+        context["definition"] = form.cleaned_data.get("definition")
     return render_either(request, "patterns/pattern_rows.html", "patterns/_rows_look.html", context)
+
+
+def _rows_picture(form: RowsForm) -> SafeString | None:
+    """The whole band, or what can be drawn before the first row with something wrong."""
+    whole = form.cleaned_data.get("definition") if form.is_bound else None
+    if whole:
+        return _picture(whole, PICTURE_ROWS)
+    if form.beginning:
+        return _picture(form.beginning, rows_before_notes(form.looked))
+    return None
 
 
 @require_http_methods(["GET", "HEAD", "POST"])
@@ -75,16 +77,21 @@ def pattern_family(request: HttpRequest) -> HttpResponse:
     context: dict[str, object] = {"form": form, "definition": definition}
     if definition:
         family = FAMILIES[form.cleaned_data["family"]]
-        context |= {"picture": _picture(definition), "sentence": family.sentence}
+        context |= {
+            "picture": _picture(definition, PICTURE_ROWS),
+            "family": family,
+            "places": family.places(definition.strands),
+            "repeats": colour_order(definition),
+        }
     return render_either(
         request, "patterns/pattern_family.html", "patterns/_family_look.html", context
     )
 
 
-def _picture(definition: PatternCore) -> SafeString:
+def _picture(definition: PatternCore, rows: int) -> SafeString:
     title = f"{definition.name}, the start at the left"
     # The drawing escapes its title; everything else in it is numbers and colours.
-    return mark_safe(band_picture(definition, PICTURE_ROWS, {}, title=title))
+    return mark_safe(band_picture(definition, rows, {}, title=title))
 
 
 def _added(request: HttpRequest, form: forms.Form, text: str) -> Pattern | None:

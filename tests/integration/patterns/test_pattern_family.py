@@ -6,13 +6,13 @@ from patterns.models import Pattern
 from tests.factories import make_pattern
 
 FAMILY = "/patterns/new/family/"
-GOOD = {"family": "zigzag", "strands": "9", "colours": "3", "name": "Tacking"}
+GOOD = {"family": "zigzag", "strands": "9", "colours": "A A B C", "name": "Tacking"}
 
 
 def test_family_becomes_an_ordinary_pattern(maker):
     response = maker.post(FAMILY, GOOD, follow=True)
     pattern = Pattern.objects.get()
-    assert pattern.definition == make_family("zigzag", 9, ("A", "B", "C"), name="Tacking")
+    assert pattern.definition == make_family("zigzag", 9, "AABC", name="Tacking")
     assert response.redirect_chain[-1][0] == reverse("pattern_detail", args=[pattern.pk])
     assert reverse("pattern_edit", args=[pattern.pk]) in response.content.decode()
 
@@ -38,13 +38,20 @@ def test_fragment_and_page_show_the_same(maker):
     [
         ({"family": "spiral"}, "Choose one from the list."),
         ({"family": ""}, "Choose one from the list."),
-        ({"strands": "3"}, "Zigzag takes 4 to 60 strands, not 3."),
-        ({"strands": "61"}, "60"),
-        ({"strands": "-1"}, "2"),
+        ({"strands": "2"}, "Zigzag takes 3 to 60 strands, not 2."),
+        ({"strands": ""}, "Type how many strands."),
+        ({"strands": "61"}, "2 to 60"),
+        ({"strands": "-1"}, "2 to 60"),
         ({"strands": "many"}, "whole number"),
-        ({"strands": "9" * 400}, "60"),
-        ({"colours": "0"}, "1"),
-        ({"colours": "12"}, "takes 2 to 9 colours, not 12"),
+        ({"strands": "9" * 400}, "2 to 60"),
+        ({"colours": ""}, "Type the colours as letters, or how many."),
+        ({"colours": "0"}, "Take 1 to 26 colours."),
+        ({"colours": "9" * 5000}, "Take 1 to 26 colours."),
+        ({"colours": "12"}, "has room for 9 colours; these are 12. Take 3 out"),
+        ({"colours": "A ! B"}, "Colour 2: &#x27;!&#x27; is not a letter"),
+        ({"colours": "A 3"}, "does not say which letter"),
+        ({"colours": "A\0"}, "hidden character"),
+        ({"family": "hearts", "colours": "A"}, "Hearts takes 2 colours or more."),
         ({"name": "x" * 81}, "80"),
         ({"name": "a\u202eb"}, "hidden character"),
     ],
@@ -54,6 +61,33 @@ def test_what_cannot_be_made_is_said_and_kept(maker, change, words):
         assert answer.status_code == 200
         assert words in answer.content.decode()
     assert not Pattern.objects.exists()
+
+
+@pytest.mark.parametrize(
+    ("change", "field"),
+    [
+        ({"strands": "2"}, "strands"),
+        ({"colours": "12"}, "colours"),
+        ({"family": "hearts", "colours": "A"}, "colours"),
+        ({"name": "\u200b"}, "name"),
+    ],
+)
+def test_what_cannot_be_made_is_marked_where_it_stands(maker, change, field):
+    assert list(maker.post(FAMILY, GOOD | change).context["form"].errors) == [field]
+
+
+@pytest.mark.parametrize("typed", ["3", "ABC", "a, b, c", " A B C "])
+def test_colours_as_a_number_or_as_letters(maker, typed):
+    maker.post(FAMILY, GOOD | {"colours": typed})
+    assert Pattern.objects.get().definition.slots == make_family("zigzag", 9, "ABC").slots
+
+
+def test_page_says_the_room_for_colours_and_when_the_picture_is_back(maker):
+    page = maker.get(
+        FAMILY, {"family": "stripe", "strands": "8", "colours": "A B"}
+    ).content.decode()
+    assert "There is room for 8 colours." in page
+    assert "2 rows a repeat; after 8 repeats the picture begins again." in page
 
 
 def test_name_that_is_taken_is_said(maker):

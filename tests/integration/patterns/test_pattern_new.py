@@ -1,19 +1,14 @@
 import pytest
-from django.core.files.uploadedfile import SimpleUploadedFile
 from django.urls import reverse
 
 from patterns.models import Pattern
 from patterns.pattern_file import read_pattern
 from tests.data_builders.hostile_pastes import hostile_pastes as hostile
-from tests.factories import make_pattern, make_shade, pattern_text
+from tests.factories import make_pattern, make_shade
 
 NEW = "/patterns/new/"
 BY_ROWS = "/patterns/new/rows/"
 ROWS = {"name": "Quay", "strands": "A A B B", "rows": "f b\nfb", "finish": "exact"}
-
-
-def upload(content: bytes, name: str = "quay.toml") -> dict:
-    return {"text": "", "file": SimpleUploadedFile(name, content)}
 
 
 def errors(response) -> str:
@@ -24,27 +19,10 @@ def errors(response) -> str:
     return " ".join(error for list_ in form.errors.values() for error in list_)
 
 
-def test_pattern_new_says_the_limit_and_both_ways(maker):
+def test_pattern_new_offers_every_way(maker):
     page = maker.get(NEW).content.decode()
-    assert "at most 64 KB" in page
-    for way in ("pattern_draw", "pattern_rows", "pattern_family"):
+    for way in ("pattern_draw", "pattern_rows", "pattern_family", "pattern_import"):
         assert reverse(way) in page
-    assert page.count("<form") == 2  # a file, and signing out
-
-
-def test_pattern_new_pasted_is_kept_as_typed(maker):
-    text = "# my own\n" + pattern_text("Quay")
-    response = maker.post(NEW, {"text": text.replace("\n", "\r\n")}, follow=True)
-    pattern = Pattern.objects.get()
-    assert (pattern.name, pattern.text) == ("Quay", text)
-    assert response.redirect_chain[-1][0] == reverse("pattern_detail", args=[pattern.pk])
-    assert "Quay is in your library." in response.content.decode()
-
-
-@pytest.mark.parametrize("mark", [b"", b"\xef\xbb\xbf"])
-def test_pattern_new_uploaded(maker, mark):
-    maker.post(NEW, upload(mark + pattern_text("Quay").encode()))
-    assert Pattern.objects.get().text == pattern_text("Quay")
 
 
 def test_pattern_new_typed_becomes_the_same_text_as_a_file(maker):
@@ -79,6 +57,14 @@ def test_pattern_new_next_step_is_a_shade_then_a_colourway(maker):
         ({"rows": "f b\nf q"}, "Row 2, knot 2: 'q' is not a knot"),
         ({"rows": "f b"}, "2 to 400 rows"),
         ({"rows": "f b\nf b"}, "Row 2 has 2 knots; 4 strands need 1"),
+        ({"rows": "f b\nffb"}, "Row 2, knot 1: 'ffb' may be f f b or f fb"),
+        ({"rows": "f b\nf\nf b"}, "even number of rows"),
+        ({"strands": "A 5"}, "Strand 2: '5' does not say which letter"),
+        ({"technique": "knitted"}, "Choose one from the list."),
+        ({"finish": "centred"}, "Only grid patterns can be centred."),
+        ({"technique": "grid", "rows": "AB\nABA", "strands": ""}, "Row 2, column 3: the row has"),
+        ({"technique": "grid", "rows": "A", "strands": ""}, "2 to 60 columns"),
+        ({"technique": "grid", "rows": "AB"}, "Cells have one background"),
         ({"rows": 'f b\n"""\nfinish = "exact"'}, "is not a knot"),
         ({"rows": "f b\n\x07"}, "Line 2 holds a hidden character"),
         ({"rows": "f " * 40_000}, "more than 64 KB"),
@@ -108,54 +94,6 @@ def test_pattern_new_typed_wrong_loses_nothing(maker):
     assert "f b\nf q" in page
 
 
-@pytest.mark.parametrize(
-    ("text", "words"),
-    [
-        ("", "Paste the text of a pattern file, or choose one."),
-        ("   \n ", "Paste the text of a pattern file, or choose one."),
-        ("name =", "not valid TOML"),
-        ("a\0b", "Line 1 holds a hidden character"),
-        ('name = "x"\n' * 2, "not valid TOML"),
-        ("a" + ".a" * 30_000 + " = 1", "too many dots"),
-        ("x = " + "[" * 20_000, "not valid TOML"),
-        ("x" * 65_537, "more than 64 KB"),
-        (pattern_text(strands="A A B B C C", rows=("f f f", "f f f")), "Row 2 has 3 knots"),
-        (pattern_text("<script>", rows=("f f <script>", "f f")), "Row 1, knot 3: '<script>'"),
-    ],
-)
-def test_pattern_new_pasted_wrong_says_what(maker, text, words):
-    response = maker.post(NEW, {"text": text})
-    assert words in errors(response)
-    assert b"<script>'" not in response.content
-
-
-@pytest.mark.parametrize(
-    ("content", "words"),
-    [
-        (b"", "The file is empty."),
-        (b"\x89PNG\r\n\x1a\n\0\0", "not a text file in UTF-8"),
-        (pattern_text().encode("utf-16"), "not a text file in UTF-8"),
-        (b"\0" * 100, "hidden character"),
-        (b"#" * 65_537, "larger than 64 KB"),
-        (b"#" * 3_000_000, "larger than 64 KB"),
-    ],
-)
-def test_pattern_new_uploaded_wrong_says_what(maker, content, words):
-    assert words in errors(maker.post(NEW, upload(content)))
-
-
-def test_pattern_new_uploaded_wrong_stands_in_the_box(maker):
-    text = pattern_text(rows=("f f q", "f f"))
-    page = maker.post(NEW, upload(text.encode())).content.decode()
-    assert "f f q" in page
-    assert "Row 1, knot 3" in page
-
-
-def test_pattern_new_pasted_and_uploaded_asks_for_one(maker):
-    data = upload(pattern_text().encode()) | {"text": pattern_text()}
-    assert "not both" in errors(maker.post(NEW, data))
-
-
 def test_pattern_new_with_a_name_that_is_taken_says_so(maker):
     make_pattern("Quay")
     response = maker.post(BY_ROWS, ROWS)
@@ -164,13 +102,12 @@ def test_pattern_new_with_a_name_that_is_taken_says_so(maker):
 
 
 @pytest.mark.parametrize("data", [{}, {"way": "none"}])
-@pytest.mark.parametrize("url", [NEW, BY_ROWS])
-def test_pattern_new_with_nothing_typed_says_what_it_lacks(maker, url, data):
-    assert errors(maker.post(url, data))
+def test_pattern_new_with_nothing_typed_says_what_it_lacks(maker, data):
+    assert errors(maker.post(BY_ROWS, data))
 
 
 def test_pattern_new_refuses_other_methods(maker):
-    assert maker.put(NEW).status_code == 405
+    assert maker.post(NEW).status_code == 405
 
 
 # --- by its rows, as makers type them --------------------------------------------------------
@@ -225,4 +162,57 @@ def test_hostile_pastes_are_refused_in_words(maker):
             continue
         response = maker.post(BY_ROWS, ROWS | {"rows": text, "look": "yes"})
         assert response.status_code == 200
+    assert not Pattern.objects.exists()
+
+
+def test_rows_of_cells_become_a_grid_pattern(maker):
+    typed = {"technique": "grid", "strands": "", "rows": "3A 2B\nAABBA\nx2", "finish": "centred"}
+    maker.post(BY_ROWS, ROWS | typed)
+    definition = Pattern.objects.get().definition
+    assert definition.technique == "grid"
+    assert ["".join(row) for row in definition.rows] == ["AAABB", "AABBA"] * 2
+    assert (definition.background, definition.finish) == ("A", "centred")
+
+
+@pytest.mark.parametrize(("typed", "background"), [("b", "B"), ("", "C")])
+def test_background_of_cells_is_typed_or_the_letter_used_most(maker, typed, background):
+    maker.post(BY_ROWS, ROWS | {"technique": "grid", "strands": typed, "rows": "CCB\nACC"})
+    assert Pattern.objects.get().definition.background == background
+
+
+def test_look_shows_every_row_and_draws_what_is_right(maker):
+    typed = ROWS | {"rows": "f b\nfb\nf huh\nf f f", "look": "yes"}
+    page = maker.post(BY_ROWS, typed, headers={"HX-Request": "true"}).content.decode()
+    assert page.startswith("<section")
+    assert "Row 1: f b<" in page
+    assert "Row 3: f<" in page
+    assert "knot 2: &#x27;huh&#x27; is not a knot" in page
+    assert "3 knots; 4 strands need 1 here" in page
+    assert "<svg" in page
+    assert "Drawn as far as the rows are right." in page
+    assert not Pattern.objects.exists()
+
+
+def test_look_needs_no_name(maker):
+    page = maker.post(BY_ROWS, ROWS | {"name": "", "look": "yes"}).content.decode()
+    assert "<svg" in page
+    assert "Row 2: fb" in page
+
+
+def test_look_and_page_show_the_same(maker):
+    typed = ROWS | {"rows": "f b\nffb", "look": "yes"}
+    fragment = maker.post(BY_ROWS, typed, headers={"HX-Request": "true"}).content.decode()
+    whole = maker.post(BY_ROWS, typed).content.decode()
+    assert fragment.strip() in whole
+    assert "f b\nffb</textarea>" in whole
+
+
+@pytest.mark.parametrize("technique", ["diagonal", "grid"])
+def test_hostile_pastes_are_answered(maker, technique):
+    """Every eighth of the hostile pastes, through the whole page, with and without strands."""
+    for number, text in enumerate(list(hostile())[::8]):
+        typed = {"technique": technique, "rows": text, "strands": "" if number % 2 else "AABB"}
+        for headers in ({}, {"HX-Request": "true"}):
+            response = maker.post(BY_ROWS, ROWS | typed | {"look": "yes"}, headers=headers)
+            assert response.status_code == 200
     assert not Pattern.objects.exists()
