@@ -1,5 +1,7 @@
 """Colourways: which shade goes in each slot of a pattern."""
 
+from dataclasses import dataclass
+
 from django.contrib import messages
 from django.http import HttpRequest, HttpResponse, QueryDict
 from django.shortcuts import get_object_or_404, redirect
@@ -9,11 +11,11 @@ from django.views.decorators.http import require_http_methods, require_POST
 
 from inventory.models import Shade, ShelfPiece, Workshop
 from inventory.page_helpers import habits, say_with_undo
-from patterns.actions import LibraryError, set_colourway
-from patterns.colour_difference import Sight, as_seen
+from patterns.actions import LibraryError, missing_slots, set_colourway
+from patterns.colour_difference import HARD_TO_TELL_BELOW, Sight, as_seen
 from patterns.colourway_advice import Shelf, advise
 from patterns.forms_colourway import ColourwayForm
-from patterns.look_alikes import look_alikes, sights_to_show
+from patterns.look_alikes import LookAlike, look_alikes, sights_to_show
 from patterns.models import Colourway, Pattern
 from patterns.pictures import thumbnail
 from patterns.techniques import Pattern as PatternCore
@@ -27,6 +29,31 @@ SEEN_BY = {
     Sight.DEUTAN: "without green cones (deutan)",
     Sight.TRITAN: "without blue cones (tritan)",
 }
+
+
+@dataclass(frozen=True)
+class ColourwayLine:
+    """A colourway on its pattern's page; what looks alike is worked out where the page asks."""
+
+    colourway: Colourway
+    definition: PatternCore
+    rows: int
+
+    @property
+    def missing(self) -> list[str]:
+        return missing_slots(self.colourway, self.definition)
+
+    @property
+    def alike(self) -> tuple[LookAlike, ...]:
+        shades = self.colourway.shades_by_slot()
+        colours = {slot: shade.colour for slot, shade in shades.items()}
+        return look_alikes(self.definition, self.rows, colours)
+
+
+def colourway_lines(pattern: Pattern, rows: int) -> list[ColourwayLine]:
+    """Uses prefetched colourways where `for_library_page` fetched them."""
+    definition = pattern.definition
+    return [ColourwayLine(way, definition, rows) for way in pattern.colourways.all()]
 
 
 @require_http_methods(["GET", "HEAD", "POST"])
@@ -95,6 +122,7 @@ def _advice(
         "bracelet": bracelet,
         "slots": [(form[f"slot_{slot}"], advice[slot]) for slot in form.slots],
         "alike": alike,
+        "alike_below": HARD_TO_TELL_BELOW,
         "picture": _picture(definition, chosen),
         "seen": [_as_seen_by(definition, colours, sight) for sight in sights_to_show(alike)],
     }

@@ -10,15 +10,17 @@ from django.views.decorators.http import require_http_methods, require_safe
 
 from inventory.models import Shade
 from inventory.page_helpers import habits
-from patterns.actions import LibraryError, change_pattern, cut_rule, missing_slots
+from patterns.actions import LibraryError, change_pattern, cut_rule
 from patterns.forms import PatternEditForm, StrandChoiceForm
-from patterns.knots import DiagonalPattern, colour_order, order_of_repeat
+from patterns.knots import DiagonalPattern
 from patterns.models import KnottedLength, Pattern
 from patterns.pictures import MOST_PICTURE_ROWS, band_picture
-from patterns.strand_answer import NoAnswer, answer_for
+from patterns.strand_answer import NoAnswer, StrandAnswer, answer_for
 from patterns.techniques import Pattern as PatternCore
+from patterns.tying import colour_order, order_of_repeat
 from patterns.views._shared import note_refusal, posted, removed, render_either, why_not_removed
 from patterns.views.analysis import what_it_does
+from patterns.views.colourways import colourway_lines
 from patterns.views.comparison import others_to_compare
 from patterns.views.reading import how_to_read
 
@@ -28,17 +30,20 @@ def pattern_detail(request: HttpRequest, pk: int) -> HttpResponse:
     pattern = get_object_or_404(Pattern.objects.for_library_page(), pk=pk)
     definition = pattern.definition
     choice = StrandChoiceForm(request.GET, pattern=pattern)
-    colourways = [(way, missing_slots(way, definition)) for way in pattern.colourways.all()]
+    strands = _strands(pattern, definition, choice)
+    answer = strands.get("answer")
+    rows = answer.rows if isinstance(answer, StrandAnswer) else len(definition.rows)
+    colourways = colourway_lines(pattern, rows)
     context = {
         "pattern": pattern,
         "choice": choice,
         "slots": definition.used_slots,
         "others": others_to_compare(pattern),
         "colourways": colourways,
-        "can_order": any(not missing for _, missing in colourways),
+        "can_order": any(not line.missing for line in colourways),
         "has_shades": Shade.objects.exists(),
     }
-    context |= _orders(definition) | _strands(pattern, definition, choice)
+    context |= _orders(definition) | strands
     context |= how_to_read(definition, context)
     return render_either(
         request, "patterns/pattern_detail.html", "patterns/_strands_and_reading.html", context

@@ -214,7 +214,10 @@ def test_shade_without_enough_names_the_nearest_that_has_it(maker, pattern):
     assert "No lot on the shelf holds enough. Near it, and on the shelf:" in page
     # Sharma, Wu & Dalal (2005) as in tests/unit/patterns/test_colour_difference.py.
     amount = difference(wanted.colour, near.colour)
-    assert f"Take R2 Rust for A {difference_words(amount)} ({amount:.1f}), 8 m on the shelf" in page
+    assert (
+        f"Take R2 Rust for A {difference_words(amount)} (difference {amount:.1f}), 8 m on the shelf"
+        in page
+    )
     assert page.index("Take R2") < page.index("Take B1")
     assert "Take R3" not in page
     assert "Take R1" not in page
@@ -288,6 +291,25 @@ def test_look_alikes_warn_draw_and_never_block(maker, pattern):
 
 def page_rows(page: str) -> int:
     return int(re.search(r"(\d+) rows", words(page))[1])
+
+
+def test_pattern_page_warns_in_short_beside_the_colourway(maker, pattern):
+    red, green = make_shade(colour="#aa1122"), make_shade(colour="#2e7d32")
+    make_colourway(pattern, "Hedge", A=red, B=green, C=make_shade(colour="#f4f1e8"))
+    make_colourway(pattern, "Twin", A=red, B=make_shade(colour="#aa1122"), C=green)
+    page = words(maker.get(reverse("pattern_detail", args=[pattern.pk])).content.decode())
+    hedge, twin = page[page.index("Its colourways") :].split("Remove Hedge")[:2]
+    assert "A and B look alike to people with red-green colour blindness." in hedge
+    assert "A and C look alike" not in hedge
+    assert "A and B have the same colour." in twin
+
+
+def test_pattern_page_makes_as_many_queries_for_twice_the_colourways(maker, pattern, query_count):
+    page = reverse("pattern_detail", args=[pattern.pk])
+    make_colourway(pattern, "One")
+    few = query_count(page)
+    make_colourway(pattern, "Other")
+    assert query_count(page) == few
 
 
 def test_shades_well_apart_give_no_warning(maker, pattern):
