@@ -70,7 +70,9 @@ def _strands(label: str) -> forms.IntegerField:
         min_value=2,
         max_value=most,
         error_messages={"invalid": words, "min_value": words, "max_value": words},
-        widget=forms.NumberInput(attrs={"inputmode": "numeric"}),
+        widget=forms.TextInput(
+            attrs={"inputmode": "numeric", "maxlength": 3, "autocomplete": "off"}
+        ),
     )
 
 
@@ -202,4 +204,6 @@ class ImportForm(forms.Form):
     @property
     def source_name(self) -> str:
         names = [file.name or "" for file in self.cleaned_data["sent"]]
-        return ", ".join(names[:3]) or PASTED
+        if self.cleaned_data["text"].strip():
+            names.append(PASTED)
+        return names[0] if len(names) == 1 else f"{names[0]} and {len(names) - 1} more"

@@ -1,6 +1,7 @@
 """Pattern files in: sent, looked through, then added."""
 
 import re
+from collections import Counter
 from collections.abc import Mapping
 from typing import cast, get_args
 
@@ -23,13 +24,20 @@ from patterns.actions_import import (
     take_import,
 )
 from patterns.forms_library import ImportForm
-from patterns.incoming import Doing, IncomingFile, Waiting, beside_library, key_of
+from patterns.incoming import Doing, IncomingFile, Standing, Waiting, beside_library, key_of
 from patterns.models import PatternImport
 from patterns.thumbnails import picture_name
 from patterns.views._shared import posted
 from patterns.views.library import svg_answer
 
 CHOICE_NAME = re.compile(r"(do|name|version|text)-([0-9]{1,4})\Z")
+STANDINGS: dict[Standing, str] = {
+    "new": "new",
+    "same": "same as yours",
+    "changes": "that would change yours",
+    "twice": "of a name that comes twice",
+    "unreadable": "that cannot be read",
+}
 MOST_TEXTS = 20
 MOST_NOTICES = 25
 
@@ -128,7 +136,7 @@ def _check_page(
         "section": "patterns",
         "waiting": waiting,
         "rows": rows,
-        "counts": _counts(beside),
+        "summary": _summary(beside),
         "shown_texts": set(unread[:MOST_TEXTS]),
     }
     status = 422 if problems else 200
@@ -157,11 +165,10 @@ def _row(
     }
 
 
-def _counts(beside: list[Waiting]) -> dict[str, int]:
-    counts: dict[str, int] = {}
-    for file in beside:
-        counts[file.standing] = counts.get(file.standing, 0) + 1
-    return counts
+def _summary(beside: list[Waiting]) -> str:
+    counts = Counter(file.standing for file in beside)
+    words = [f"{counts[name]} {words}" for name, words in STANDINGS.items() if counts[name]]
+    return f"{len(beside)} file{'' if len(beside) == 1 else 's'}: {', '.join(words)}."
 
 
 def _words(taken: Taken) -> str:

@@ -74,7 +74,7 @@ def test_files_wait_and_nothing_is_added_yet(maker):
     assert names() == []
     for _ in range(2):  # a reload loses nothing
         page = maker.get(check(waiting)).content.decode()
-        assert "2 files, 2 new." in page
+        assert "2 files: 2 new." in page
         assert "quay.toml</bdi> · diagonal · 6 strands · 2 rows a repeat" in page
         assert "h.toml</bdi> · grid · 6 strands · 5 rows a repeat" in page
     assert check(waiting) in maker.get(IMPORT).content.decode()
@@ -125,6 +125,12 @@ def test_what_is_left_out_is_listed(maker):
     assert "p/quay.toml" in page
 
 
+def test_what_was_sent_is_named(maker):
+    waiting = send(maker, ("a.toml", pattern_text("A")), ("b.toml", "x"), text="x")
+    assert waiting.source_name == "a.toml and 2 more"
+    assert send(maker, text="x").source_name == "pasted.toml"
+
+
 # --- looking through -------------------------------------------------------------------------
 
 
@@ -142,7 +148,7 @@ def test_each_file_says_how_it_stands_to_the_library(maker):
     )
     page = maker.get(check(waiting)).content.decode()
     assert (
-        "6 files, 1 new, 1 same as yours, 1 that would change yours, 1 of a name that comes"
+        "6 files: 1 new, 1 same as yours, 1 that would change yours, 1 of a name that comes"
         " twice, 2 that cannot be read." in page
     )
     assert "New in your library." in page
@@ -191,7 +197,7 @@ def test_usual_choices_add_what_is_new_and_leave_the_rest_as_it_is(maker, owner)
     assert Pattern.objects.get(pk=changed.pk).version == 1
     assert Pattern.objects.get(name="New").versions.get().created_by == owner
     assert set(PatternImport.objects.get().files) == {"f3", "f4"}
-    assert "2 files, 1 that would change yours, 1 that cannot be read." in (
+    assert "2 files: 1 that would change yours, 1 that cannot be read." in (
         response.content.decode()
     )
 

@@ -39,7 +39,7 @@ def test_library_shows_picture_counts_and_colourways(maker):
     make_colourway(pattern, "Dusk", A=madder)
     page = maker.get(LIBRARY).content.decode()
     # Handbook: 61.83 cm a strand on average with six strands; 118 whole rows are 150.2 mm.
-    assert "6 strands · 2 rows a repeat · 3.71 m" in page
+    assert "6 strands · 2 rows a repeat · 3.71&nbsp;m" in page
     assert 'alt="The band of Ferry stripe in Dusk" loading="lazy"' in page
     assert 'fill="#a3262f"' in maker.get(picture_address(page)).content.decode()
 
@@ -231,7 +231,12 @@ def test_library_archive_says_what_goes_there(maker):
     Pattern.objects.update(archived_at=timezone.now())
     assert names(maker) == []
     assert names(maker, kept="archived") == ["Ferry stripe"]
-    assert "1 archived pattern found" in maker.get(LIBRARY, {"kept": "archived"}).content.decode()
+    page = maker.get(LIBRARY, {"kept": "archived"}).content.decode()
+    assert "1 archived pattern found" in page
+    back = reverse("pattern_bring_back", args=[Pattern.objects.get().pk])
+    assert f'action="{back}"' in page
+    maker.post(back)
+    assert names(maker) == ["Ferry stripe"]
 
 
 # --- pictures --------------------------------------------------------------------------------
