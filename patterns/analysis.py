@@ -13,8 +13,9 @@ from patterns.flat_rule import (
 )
 from patterns.geometry import Gauge, LengthError, StrandLength, StrandTable, rows_for
 from patterns.grid import GridPattern
-from patterns.knots import DiagonalPattern, Finish, colour_order, order_of_repeat
+from patterns.knots import DiagonalPattern, Finish
 from patterns.techniques import Pattern
+from patterns.tying import colour_order, order_of_repeat
 from patterns.working import counted, in_mm, number
 
 # Where a strand "hardly ties" and where it "ties all the time": its knots tied, as a share of the

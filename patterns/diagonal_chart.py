@@ -9,9 +9,10 @@ from itertools import islice
 from math import cos, radians, sin
 
 from patterns.colours import ink_on
-from patterns.knots import DiagonalPattern, Knot, TiedKnot, tie_rows
+from patterns.knots import DiagonalPattern, Knot
 from patterns.reading import WrittenRow
 from patterns.shapes import Chart, Label, Square, Stroke
+from patterns.tying import TiedKnot, tie_rows
 
 HALF = 0.8
 _EDGE = HALF / 2

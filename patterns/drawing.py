@@ -5,7 +5,7 @@ from typing import Literal
 
 from patterns.colours import channels
 from patterns.grid import GridPattern, band_rows
-from patterns.knots import DiagonalPattern, TiedKnot, tie_rows
+from patterns.knots import DiagonalPattern
 from patterns.shapes import (
     LOOSE_END,
     MARGIN,
@@ -18,6 +18,7 @@ from patterns.shapes import (
     turned,
 )
 from patterns.techniques import Pattern
+from patterns.tying import TiedKnot, tie_rows
 
 Layout = Literal["vertical", "horizontal"]
 MAX_DRAWN_ROWS = 2000

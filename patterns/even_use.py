@@ -7,7 +7,8 @@ from math import ceil
 from random import Random
 
 from patterns.geometry import MAX_ROWS, Gauge
-from patterns.knots import MAX_REPEAT_ROWS, DiagonalPattern, Knot, colour_order, count_strands
+from patterns.knots import MAX_REPEAT_ROWS, DiagonalPattern, Knot
+from patterns.tying import colour_order, count_strands
 
 MOST_EVALUATIONS = 8_000
 # Up to so many choices all of them are tried: 4 knots for each of 6 places.

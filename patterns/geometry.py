@@ -5,7 +5,8 @@ from math import ceil, pi, sqrt
 from typing import Literal
 
 from patterns.grid import GridPattern
-from patterns.knots import DiagonalPattern, Finish, StrandCount, count_strands
+from patterns.knots import DiagonalPattern, Finish
+from patterns.tying import StrandCount, count_strands
 
 Role = Literal["strand", "base", "leading", "run"]
 

@@ -5,14 +5,7 @@ from dataclasses import dataclass
 from enum import StrEnum
 from typing import Literal, NamedTuple
 
-from patterns.knots import (
-    MAX_REPEAT_ROWS,
-    SLOT_LETTERS,
-    Finish,
-    PatternError,
-    clean_name,
-    shown,
-)
+from patterns.knots import MAX_REPEAT_ROWS, SLOT_LETTERS, Finish, PatternError, clean_name, shown
 
 MIN_COLUMNS = 2
 MAX_COLUMNS = 60

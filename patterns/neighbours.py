@@ -8,8 +8,9 @@ from types import MappingProxyType
 from typing import TypeAlias
 
 from patterns.grid import GridPattern, band_rows
-from patterns.knots import DiagonalPattern, tie_rows
+from patterns.knots import DiagonalPattern
 from patterns.techniques import Pattern
+from patterns.tying import tie_rows
 
 SlotPair: TypeAlias = tuple[str, str]
 

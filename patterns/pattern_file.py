@@ -5,14 +5,7 @@ from collections.abc import Callable, Mapping
 from difflib import get_close_matches
 
 from patterns.grid import Carry, CellRow, GridPattern
-from patterns.knots import (
-    DiagonalPattern,
-    Finish,
-    Knot,
-    PatternError,
-    clean_name,
-    shown,
-)
+from patterns.knots import DiagonalPattern, Finish, Knot, PatternError, clean_name, shown
 from patterns.techniques import Pattern
 
 MAX_FILE_BYTES = 64 * 1024

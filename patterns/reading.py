@@ -6,8 +6,9 @@ from itertools import groupby, islice
 
 from patterns.grid import GridPattern, band_rows, first_picture_row, is_from_left
 from patterns.grid_lengths import Run
-from patterns.knots import DiagonalPattern, Finish, colour_order
+from patterns.knots import DiagonalPattern, Finish
 from patterns.techniques import Pattern
+from patterns.tying import colour_order
 
 NO_KNOTS = "no knots"
 # A repeat of few rows is charted until its colours come back, so that the chart shows the band.

@@ -13,13 +13,8 @@ from patterns.even_use import (
     unrolled,
 )
 from patterns.geometry import Gauge, LengthError, StrandLength, StrandTable, diagonal_table
-from patterns.knots import (
-    MAX_REPEAT_ROWS,
-    DiagonalPattern,
-    mirrored,
-    order_after,
-    tie_rows,
-)
+from patterns.knots import MAX_REPEAT_ROWS, DiagonalPattern
+from patterns.tying import mirrored, order_after, tie_rows
 from patterns.working import counted, in_mm, number
 
 # Less than this is not worth another pattern: this project's own choice.

@@ -23,14 +23,7 @@ from patterns.alphabet import alphabet_data
 from patterns.editor_state import read_state, write_state
 from patterns.forms import FINISH_CHOICES, StrandChoiceForm
 from patterns.grid import Carry, GridPattern
-from patterns.knots import (
-    SLOT_LETTERS,
-    DiagonalPattern,
-    Finish,
-    Knot,
-    PatternError,
-    knots_in_row,
-)
+from patterns.knots import SLOT_LETTERS, DiagonalPattern, Finish, Knot, PatternError, knots_in_row
 from patterns.models import KnottedLength, Pattern
 from patterns.pattern_file import write_pattern
 from patterns.pictures import MOST_PICTURE_ROWS, band_picture

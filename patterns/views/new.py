@@ -10,11 +10,11 @@ from django.views.decorators.http import require_http_methods, require_safe
 from patterns.actions import LibraryError, add_pattern
 from patterns.families import FAMILIES, Family, make_family
 from patterns.forms_new import FamilyForm, RowsForm
-from patterns.knots import colour_order
 from patterns.models import Pattern
 from patterns.pattern_file import write_pattern
 from patterns.pictures import band_picture, thumbnail
 from patterns.techniques import Pattern as PatternCore
+from patterns.tying import colour_order
 from patterns.views._shared import note_refusal, posted, render_either
 from patterns.written_look import rows_before_notes
 

@@ -20,10 +20,8 @@ from patterns.knots import (
     DiagonalPattern,
     Knot,
     knots_in_row,
-    mirrored,
-    order_after,
-    tie_rows,
 )
+from patterns.tying import mirrored, order_after, tie_rows
 
 pytestmark = pytest.mark.django_db(transaction=True)
 

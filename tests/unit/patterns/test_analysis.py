@@ -24,9 +24,10 @@ from patterns.flat_rule import (
 )
 from patterns.geometry import Gauge
 from patterns.grid import Carry, GridPattern
-from patterns.knots import Finish, colour_order, order_of_repeat
+from patterns.knots import Finish
 from patterns.shared_lengths import with_distinct_lengths
 from patterns.techniques import strand_table
+from patterns.tying import colour_order, order_of_repeat
 
 RULE = CutRule(0.1, 10)
 TIES = Ending("Ties", "straight", 60, 60, 1.25, 30, 90, 0, 0, 0)

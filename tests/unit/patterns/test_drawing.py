@@ -7,9 +7,9 @@ from pattern_factories import all_same, make_pattern, patterns
 
 from patterns.colours import ColourError, working_colours
 from patterns.drawing import draw_band
-from patterns.knots import mirrored, order_after, tie_rows
 from patterns.shapes import LOOSE_END, MARGIN, DrawingError, Line, Square
 from patterns.svg import to_svg
+from patterns.tying import mirrored, order_after, tie_rows
 
 SVG = "{http://www.w3.org/2000/svg}"
 COLOURS = {

@@ -7,20 +7,16 @@ import pytest
 
 from patterns.families import FAMILIES, FamilyError, make_family
 from patterns.geometry import Gauge, diagonal_table
-from patterns.knots import (
-    MAX_STRANDS,
-    SLOT_LETTERS,
-    Knot,
-    PatternError,
+from patterns.knots import MAX_STRANDS, SLOT_LETTERS, Knot, PatternError, knots_in_row
+from patterns.pattern_file import read_pattern, write_pattern
+from patterns.tying import (
     colour_order,
     count_strands,
-    knots_in_row,
     mirrored,
     order_of_repeat,
     permutation,
     tie_rows,
 )
-from patterns.pattern_file import read_pattern, write_pattern
 
 KEYS = list(FAMILIES)
 ON_LINES = ("zigzag", "wave", "diamond", "double-diamond")

@@ -6,14 +6,10 @@ from hypothesis import strategies as st
 from pattern_factories import all_same, make_pattern, patterns
 from sympy.combinatorics import Permutation
 
-from patterns.knots import (
-    DiagonalPattern,
-    Finish,
-    Knot,
-    PatternError,
+from patterns.knots import DiagonalPattern, Finish, Knot, PatternError, knots_in_row
+from patterns.tying import (
     colour_order,
     count_strands,
-    knots_in_row,
     mirrored,
     order_after,
     order_of_repeat,
