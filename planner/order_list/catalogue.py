@@ -22,7 +22,8 @@ class Choice:
 class PatternChoice:
     """A pattern with its colourways; a default key takes the place of a blank colourway.
 
-    An archived one is known by name, so that a list that asks for it can be told, but not ordered.
+    An archived one is known by name, so that a list that asks for it can be told, but not ordered;
+    one that is not suggested can be ordered, but only by those who know it.
     """
 
     key: int
@@ -30,6 +31,7 @@ class PatternChoice:
     colourways: tuple[Choice, ...]
     default_colourway_key: int | None = None
     is_archived: bool = False
+    is_suggested: bool = True
 
     def __post_init__(self) -> None:
         _check_keys(f"colourways of {self.name}", self.colourways)

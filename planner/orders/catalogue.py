@@ -29,11 +29,11 @@ def how_to_read(market_date: date | None) -> HowToRead:
     }
 
 
-def load_catalogue(batch: Batch | None = None) -> Catalogue:
+def load_catalogue(batch: Batch | None = None, *, archived_too: bool = False) -> Catalogue:
     """Four queries, however much there is.
 
     Archived patterns cannot be ordered, except where the batch has ordered them already: its rows
-    are read again with every saving of the grid.
+    are read again with every saving of the grid. `archived_too` is for rows that come back.
     """
     patterns = Pattern.objects.prefetch_related("colourways").order_by("name")
     ordered = Exists(OrderLine.objects.filter(batch=batch, pattern=OuterRef("pk")))
@@ -48,7 +48,9 @@ def load_catalogue(batch: Batch | None = None) -> Catalogue:
                 tuple(
                     Choice(colourway.pk, colourway.name) for colourway in pattern.colourways.all()
                 ),
-                is_archived=pattern.archived_at is not None and not pattern.is_ordered,
+                is_archived=pattern.archived_at is not None
+                and not (pattern.is_ordered or archived_too),
+                is_suggested=pattern.archived_at is None,
             )
             for pattern in patterns
         ),

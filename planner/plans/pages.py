@@ -13,7 +13,7 @@ from patterns.models import Pattern
 from patterns.pattern_file import read_pattern
 from patterns.pictures import band_picture
 from patterns.working import knotted_working
-from planner.models import Plan, PlanBracelet, PlanShade, PlanStock
+from planner.models import Plan, PlanBracelet, PlanKind, PlanShade, PlanStock
 from planner.planning.snapshot import SnapshotPiece
 from planner.planning.wording import bought_words, proof_of_plan, proof_of_shade
 from planner.plans.bars import stock_bar
@@ -65,7 +65,10 @@ def plan_page(plan: Plan) -> dict[str, Any]:
 
 
 def changed_patterns(plan: Plan) -> list[dict[str, Any]]:
-    """Patterns of the plan that were saved again since; plans of the first release know none."""
+    """Patterns of the plan that were changed since, and not changed back.
+
+    Plans of the first release know none.
+    """
     then = {
         kind.pattern_id_then: kind
         for kind in plan.kinds.order_by("-pk")
@@ -79,8 +82,12 @@ def changed_patterns(plan: Plan) -> list[dict[str, Any]]:
             "pattern": pattern,
         }
         for pattern in patterns
-        if pattern.version != then[pattern.pk].pattern_version
+        if has_changed(then[pattern.pk], pattern)
     ]
+
+
+def has_changed(kind: PlanKind, pattern: Pattern) -> bool:
+    return pattern.version != kind.pattern_version and pattern.text != kind.pattern_text
 
 
 def plan_context(plan: Plan) -> dict[str, Any]:
@@ -200,10 +207,12 @@ def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
         }
         for row in bracelet.pieces.all()
     ]
+    pattern_now = Pattern.objects.filter(pk=bracelet.kind.pattern_id_then or 0).first()
     return {
         **plan_context(bracelet.plan),
         "newer_plan": bracelet.plan.newer(),
-        "pattern_now": Pattern.objects.filter(pk=bracelet.kind.pattern_id_then or 0).first(),
+        "pattern_now": pattern_now,
+        "has_changed": pattern_now is not None and has_changed(bracelet.kind, pattern_now),
         "bracelet": bracelet,
         "kind": kind,
         "pieces": pieces,

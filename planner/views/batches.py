@@ -112,7 +112,8 @@ def _say_saved(
 def lines_put_back(request: HttpRequest, pk: int) -> HttpResponse:
     """Undo of a removal: the rows come back at the end, as they were written."""
     batch = get_object_or_404(Batch, pk=pk)
-    grid = read_grid(request.POST.dict(), load_catalogue(batch), how_to_read(batch.market_date))
+    catalogue = load_catalogue(batch, archived_too=True)
+    grid = read_grid(request.POST.dict(), catalogue, how_to_read(batch.market_date))
     if grid.bad:
         return _grid_page(request, batch, rows=grid.as_rows(), wrong=len(grid.bad))
     put_back_lines(batch=batch, good=grid.added)

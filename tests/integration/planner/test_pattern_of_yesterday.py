@@ -44,6 +44,21 @@ def test_plan_of_yesterday_shows_the_pattern_of_yesterday(
     )
 
 
+def test_pattern_that_was_changed_back_is_as_the_plan_has_it(
+    page: Client, batch: Batch, colourway: Colourway, pattern: Pattern
+) -> None:
+    make_order(batch, colourway)
+    plan = make_plan(batch=batch, user=None)
+    text = pattern.text
+    change_pattern(pattern=pattern, text=pattern_text("Wave", rows=("b fb f", "bf b")))
+    change_pattern(pattern=pattern, text=text)
+    shown = page.get(reverse("plan_detail", args=[plan.pk])).content.decode()
+    assert "This plan has version" not in shown
+    tag = page.get(reverse("bracelet", args=[plan.bracelets.get().pk])).content.decode()
+    assert "version 1" in tag
+    assert "changed since" not in tag
+
+
 def test_plan_notes_what_was_made(batch: Batch, colourway: Colourway, pattern: Pattern) -> None:
     assert pattern.last_planned_on is None
     make_order(batch, colourway)
@@ -84,6 +99,30 @@ def test_orders_that_have_an_archived_pattern_keep_it(
     line.refresh_from_db()
     assert line.quantity == 5
     assert len(read_snapshot(make_plan(batch=batch, user=None)).bracelets) == 5
+
+
+def test_removed_order_of_an_archived_pattern_can_be_put_back(
+    page: Client, batch: Batch, colourway: Colourway, pattern: Pattern
+) -> None:
+    line = make_order(batch, colourway, quantity=3)
+    archive_pattern(pattern=pattern, at=timezone.now())
+    url = reverse("batch_detail", args=[batch.pk])
+    row = {"revision": "0", "row-1-line": str(line.pk), "row-1-gone": "yes"}
+    assert page.post(url, row).status_code == 302
+    assert not OrderLine.objects.exists()
+    back = {"row-1-pattern": "Wave", "row-1-size": "Medium", "row-1-quantity": "3"}
+    assert page.post(reverse("lines_put_back", args=[batch.pk]), back).status_code == 302
+    assert OrderLine.objects.get().quantity == 3
+
+
+def test_archived_pattern_is_not_suggested_where_it_is_ordered(
+    page: Client, batch: Batch, colourway: Colourway, pattern: Pattern
+) -> None:
+    make_order(batch, colourway)
+    archive_pattern(pattern=pattern, at=timezone.now())
+    shown = page.get(reverse("batch_detail", args=[batch.pk])).content.decode()
+    assert '<option value="Wave"' not in shown
+    assert f'<datalist id="colourways-{pattern.pk}">' in shown
 
 
 def test_archived_pattern_is_not_suggested(page: Client, batch: Batch, pattern: Pattern) -> None:
