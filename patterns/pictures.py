@@ -13,6 +13,7 @@ DARKEST_TONE = (0x5C, 0x54, 0x48)
 MOST_PICTURE_ROWS = 300
 _FEWEST_THUMBNAIL_ROWS = 22
 _THUMBNAIL_KNOTS = 600
+_SHORT_UNIT_PX = 14
 
 
 def neutral_colours(definition: Pattern) -> dict[str, str]:
@@ -62,3 +63,9 @@ def _picture(
     definition: Pattern, rows: int, colours: tuple[tuple[str, str], ...], title: str
 ) -> str:
     return to_svg(draw_band(definition, rows, dict(colours), layout="horizontal"), title=title)
+
+
+def short_picture(definition: Pattern, rows: int, *, title: str) -> str:
+    """Return a few rows of the band as SVG, knots of one size however few they are."""
+    drawing = draw_band(definition, rows, neutral_colours(definition), layout="horizontal")
+    return to_svg(drawing, title=title, height_px=_SHORT_UNIT_PX * drawing.height)

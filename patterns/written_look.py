@@ -10,6 +10,8 @@ from patterns.reading import NO_KNOTS, counted_words
 from patterns.techniques import Pattern
 from patterns.written_lines import Written, WrittenProblem
 
+NOTHING_YET = "nothing understood yet"
+
 
 @dataclass(frozen=True)
 class LookedRow:
@@ -60,7 +62,8 @@ def _look(
         notes = [f"{one.place_word} {one.place}: {one.sentence}" for one in problems.get(row, ())]
         if not notes and (misfit := note(row, len(words))):
             notes = [misfit]
-        looked.append(LookedRow(row, in_words(words), tuple(notes)))
+        in_short = NOTHING_YET if row in problems and not words else in_words(words)
+        looked.append(LookedRow(row, in_short, tuple(notes)))
     return tuple(looked)
 
 

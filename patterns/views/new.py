@@ -12,7 +12,7 @@ from patterns.families import FAMILIES, Family, make_family
 from patterns.forms_new import FamilyForm, RowsForm
 from patterns.models import Pattern
 from patterns.pattern_file import write_pattern
-from patterns.pictures import band_picture, thumbnail
+from patterns.pictures import band_picture, short_picture, thumbnail
 from patterns.techniques import Pattern as PatternCore
 from patterns.tying import colour_order
 from patterns.views._shared import note_refusal, posted, render_either
@@ -56,10 +56,12 @@ def _rows_picture(form: RowsForm) -> SafeString | None:
     """The whole band, or what can be drawn before the first row with something wrong."""
     whole = form.cleaned_data.get("definition") if form.is_bound else None
     if whole:
-        return _picture(whole, PICTURE_ROWS)
-    if form.beginning:
-        return _picture(form.beginning, rows_before_notes(form.looked))
-    return None
+        return _picture(whole)
+    if not form.beginning:
+        return None
+    rows = rows_before_notes(form.looked)
+    title = f"The first {rows} rows, the start at the left"
+    return mark_safe(short_picture(form.beginning, min(rows, PICTURE_ROWS), title=title))
 
 
 @require_http_methods(["GET", "HEAD", "POST"])
@@ -78,7 +80,7 @@ def pattern_family(request: HttpRequest) -> HttpResponse:
     if definition:
         family = FAMILIES[form.cleaned_data["family"]]
         context |= {
-            "picture": _picture(definition, PICTURE_ROWS),
+            "picture": _picture(definition),
             "family": family,
             "places": family.places(definition.strands),
             "repeats": colour_order(definition),
@@ -88,10 +90,10 @@ def pattern_family(request: HttpRequest) -> HttpResponse:
     )
 
 
-def _picture(definition: PatternCore, rows: int) -> SafeString:
+def _picture(definition: PatternCore) -> SafeString:
     title = f"{definition.name}, the start at the left"
     # The drawing escapes its title; everything else in it is numbers and colours.
-    return mark_safe(band_picture(definition, rows, {}, title=title))
+    return mark_safe(band_picture(definition, PICTURE_ROWS, {}, title=title))
 
 
 def _added(request: HttpRequest, form: forms.Form, text: str) -> Pattern | None:

@@ -8,6 +8,7 @@ from patterns.pictures import (
     MOST_PICTURE_ROWS,
     band_picture,
     neutral_colours,
+    short_picture,
     thumbnail,
 )
 from tests.factories import pattern_text
@@ -59,3 +60,15 @@ def test_thumbnail_stays_small(strands):
     rows = tuple(" ".join("f" * ((strands - row) // 2)) or "-" for row in (0, 1))
     text = pattern_text(strands=" ".join("AB"[n % 2] for n in range(strands)), rows=rows)
     assert len(thumbnail(read_pattern(text), {}, title="Band")) < 40_000
+
+
+@pytest.mark.parametrize("rows", [1, 2, 9])
+def test_short_picture_has_knots_of_one_size_however_few(rows):
+    """A knot is a unit of the drawing from its middle to its corner, 14 px."""
+    svg = ElementTree.fromstring(
+        short_picture(read_pattern(pattern_text()), rows, title="A beginning")
+    )
+    _, _, width, height = (float(number) for number in svg.attrib["viewBox"].split())
+    assert float(svg.attrib["height"]) == pytest.approx(14 * height, rel=0.01)
+    assert float(svg.attrib["width"]) == pytest.approx(14 * width, rel=0.01)
+    assert width > rows
