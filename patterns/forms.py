@@ -42,6 +42,7 @@ class PatternEditForm(forms.Form):
         label="The text of the pattern",
         widget=forms.Textarea(attrs={"class": "code", "rows": 20, "spellcheck": "false"}),
     )
+    version = forms.IntegerField(required=False, min_value=1, max_value=10**9)
 
     def clean(self) -> dict[str, Any]:
         cleaned = super().clean() or self.cleaned_data

@@ -42,6 +42,7 @@ def pattern_detail(request: HttpRequest, pk: int) -> HttpResponse:
         "colourways": colourways,
         "can_order": any(not line.missing for line in colourways),
         "has_shades": Shade.objects.exists(),
+        "can_remove": not why_not_removed(pattern),
     }
     context |= _orders(definition) | strands
     context |= how_to_read(definition, context)
@@ -111,18 +112,24 @@ def _shades(pattern: Pattern, colourway: object) -> dict[str, Shade]:
 def pattern_edit_text(request: HttpRequest, pk: int) -> HttpResponse:
     pattern = get_object_or_404(Pattern, pk=pk)
     form = PatternEditForm(posted(request), initial={"text": pattern.text})
-    if request.method == "POST" and _changed(form, pattern):
+    if request.method == "POST" and _changed(form, pattern, request):
         messages.success(request, f"{pattern} is saved. Plans that you made keep the old one.")
         return redirect("pattern_detail", pk=pk)
     context = {"section": "patterns", "pattern": Pattern.objects.get(pk=pk), "form": form}
     return render(request, "patterns/pattern_edit.html", context)
 
 
-def _changed(form: PatternEditForm, pattern: Pattern) -> bool:
+def _changed(form: PatternEditForm, pattern: Pattern, request: HttpRequest) -> bool:
+    """Where another window saved first, that is told once; the page then stands on its version."""
     if not form.is_valid():
         return False
     try:
-        change_pattern(pattern=pattern, text=form.cleaned_data["pattern_text"])
+        change_pattern(
+            pattern=pattern,
+            text=form.cleaned_data["pattern_text"],
+            by=request.user,
+            expected_version=form.cleaned_data["version"],
+        )
     except LibraryError as error:
         note_refusal(form, error)
         return False

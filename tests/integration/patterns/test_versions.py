@@ -6,7 +6,15 @@ from django.urls import reverse
 from patterns.actions import change_pattern
 from patterns.models import Pattern
 from patterns.views import versions
-from tests.factories import grid_text, make_grid_pattern, make_pattern, pattern_text
+from tests.factories import (
+    grid_text,
+    make_batch,
+    make_colourway,
+    make_grid_pattern,
+    make_order,
+    make_pattern,
+    pattern_text,
+)
 
 OLD = pattern_text("Quay")
 NEW = pattern_text("Quay", rows=("b b b", "b b"))
@@ -142,3 +150,34 @@ def test_query_count_of_versions(query_count, pattern):
     for number in range(6):
         change_pattern(pattern=pattern, text=pattern_text(f"Quay {number}"))
     assert query_count(url) == few
+
+
+def test_text_saved_over_another_windows_is_told_once(maker, pattern, owner):
+    url = reverse("pattern_edit_text", args=[pattern.pk])
+    assert '<input type="hidden" name="version" value="2">' in maker.get(url).content.decode()
+    theirs = change_pattern(pattern=pattern, text=pattern_text("Quay", finish="nearest"))
+    mine = pattern_text("Quay", finish="at_most")
+    page = maker.post(url, {"text": mine, "version": "2"}).content.decode()
+    assert "at version 3 now, and yours began at version 2" in page
+    assert "at_most" in page
+    assert Pattern.objects.get().text == theirs.text
+    assert '<input type="hidden" name="version" value="3">' in page
+    maker.post(url, {"text": mine, "version": "3"})
+    assert Pattern.objects.get().text == mine
+    assert pattern.versions.get(number=4).created_by == owner
+
+
+@pytest.mark.parametrize("version", ["x", "0", "-1", "9" * 400, "\0"])
+def test_version_that_is_none_is_no_failure(maker, pattern, version):
+    url = reverse("pattern_edit_text", args=[pattern.pk])
+    assert maker.post(url, {"text": OLD, "version": version}).status_code == 200
+    assert Pattern.objects.get().version == 2
+
+
+def test_removing_is_offered_only_where_nothing_uses_it(maker, pattern):
+    page, remove = (reverse(f"pattern_{name}", args=[pattern.pk]) for name in ("detail", "remove"))
+    assert remove in maker.get(page).content.decode()
+    order = make_order(make_batch(), make_colourway(pattern))
+    assert remove not in maker.get(page).content.decode()
+    order.delete()
+    assert remove in maker.get(page).content.decode()
