@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from inventory.models import Shade
 from inventory.on_shelf import OnShelf
 from patterns.colour_difference import difference_words, nearest_shades
+from patterns.proposals import propose
 from patterns.usual_bracelet import UsualBracelet
 
 MOST_INSTEAD = 3
@@ -65,6 +66,20 @@ def advise(
 ) -> dict[str, SlotAdvice]:
     """What to say to each slot, by slot."""
     return {slot: _slot_advice(slot, chosen, shelf, bracelet) for slot in slots}
+
+
+def propose_from_shelf(
+    slots: Sequence[str], shelf: Shelf, bracelet: UsualBracelet
+) -> dict[str, Shade]:
+    """A shade with enough thread for every slot; what takes most, and what has most, come first."""
+    by_need = sorted(slots, key=lambda slot: -sum(bracelet.pieces_mm.get(slot, ())))
+    by_length = sorted(shelf.shades.values(), key=lambda shade: -shelf.of(shade).length_mm)
+    colours = {shade: shade.colour for shade in by_length if shelf.of(shade).length_mm}
+    return propose(
+        by_need,
+        colours,
+        lambda slot, shade: shelf.of(shade).holds(bracelet.pieces_mm.get(slot, ())),
+    )
 
 
 def _slot_advice(

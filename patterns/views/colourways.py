@@ -13,7 +13,7 @@ from inventory.models import Shade, ShelfPiece, Workshop
 from inventory.page_helpers import habits, say_with_undo
 from patterns.actions import LibraryError, missing_slots, set_colourway
 from patterns.colour_difference import HARD_TO_TELL_BELOW, Sight, as_seen
-from patterns.colourway_advice import Shelf, advise
+from patterns.colourway_advice import Shelf, advise, propose_from_shelf
 from patterns.forms_colourway import ColourwayForm
 from patterns.look_alikes import LookAlike, look_alikes, sights_to_show
 from patterns.models import Colourway, Pattern
@@ -23,7 +23,7 @@ from patterns.usual_bracelet import UsualBracelet, usual_bracelet
 from patterns.views._shared import note_refusal, posted, removed, render_either
 
 # These buttons show what would be; the others save.
-LOOKS = {"preview", "take"}
+LOOKS = {"preview", "take", "propose"}
 SEEN_BY = {
     Sight.PROTAN: "without red cones (protan)",
     Sight.DEUTAN: "without green cones (deutan)",
@@ -58,36 +58,49 @@ def colourway_lines(pattern: Pattern, rows: int) -> list[ColourwayLine]:
 
 @require_http_methods(["GET", "HEAD", "POST"])
 def colourway_new(request: HttpRequest, pattern_pk: int) -> HttpResponse:
+    """A new one, or a copy of one of the pattern's own to change."""
     pattern = get_object_or_404(Pattern, pk=pattern_pk)
-    return _colourway_form(request, pattern, None)
+    return _colourway_form(request, pattern, None, _copied(pattern, request.GET.get("copy", "")))
+
+
+def _copied(pattern: Pattern, key: str) -> dict[str, object]:
+    if not key:
+        return {}
+    ways = pattern.colourways.prefetch_related("shades__shade")
+    values = next((_initial(way) for way in ways if str(way.pk) == key), {})
+    return values and values | {"name": f"{str(values['name'])[:54].rstrip()}, copy"}
 
 
 @require_http_methods(["GET", "HEAD", "POST"])
 def colourway_edit(request: HttpRequest, pk: int) -> HttpResponse:
     colourways = Colourway.objects.select_related("pattern").prefetch_related("shades__shade")
     colourway = get_object_or_404(colourways, pk=pk)
-    return _colourway_form(request, colourway.pattern, colourway)
+    return _colourway_form(request, colourway.pattern, colourway, _initial(colourway))
 
 
 def _colourway_form(
-    request: HttpRequest, pattern: Pattern, colourway: Colourway | None
+    request: HttpRequest,
+    pattern: Pattern,
+    colourway: Colourway | None,
+    initial: dict[str, object],
 ) -> HttpResponse:
     definition = pattern.definition
     only_look = not LOOKS.isdisjoint(request.POST)
     workshop = habits()
-    shelf = _shelf(workshop)
+    shelf, bracelet = _shelf(workshop), usual_bracelet(pattern, workshop)
     form = ColourwayForm(
         None if only_look else posted(request),
         definition=definition,
         shelf=shelf,
-        initial=_looked_at(request.POST) if only_look else _initial(colourway),
+        initial=_looked_at(request.POST) if only_look else initial,
     )
+    if "propose" in request.POST:
+        _fill_from_shelf(request, form, shelf, bracelet)
     if form.is_valid():
         saved = _saved(form, pattern, colourway)
         if saved:
             messages.success(request, f"{saved.name} is saved. You can put it in an order now.")
             return redirect(f"{reverse('pattern_detail', args=[pattern.pk])}?colourway={saved.pk}")
-    bracelet = usual_bracelet(pattern, workshop)
     context: dict[str, object] = {"pattern": pattern, "form": form, "address": request.path}
     context |= _advice(definition, form, shelf, bracelet)
     return render_either(
@@ -108,6 +121,21 @@ def _looked_at(typed: QueryDict) -> dict[str, object]:
     slot, _, key = typed.get("take", "").partition(":")
     shown: dict[str, object] = dict(typed.items())
     return shown | ({f"slot_{slot}": key} if key else {})
+
+
+def _fill_from_shelf(
+    request: HttpRequest, form: ColourwayForm, shelf: Shelf, bracelet: UsualBracelet
+) -> None:
+    """Put the proposal into the form, for the maker to look at."""
+    proposed = propose_from_shelf(form.slots, shelf, bracelet)
+    for slot in form.slots:
+        form.initial[f"slot_{slot}"] = proposed[slot].pk if slot in proposed else ""
+    if left_open := [slot for slot in form.slots if slot not in proposed]:
+        messages.warning(
+            request,
+            f"The shelf has no further shade with enough thread for {', '.join(left_open)}. "
+            "Choose one to buy.",
+        )
 
 
 def _advice(
@@ -138,9 +166,7 @@ def _as_seen_by(
     return words, mark_safe(thumbnail(definition, seen, title=title))
 
 
-def _initial(colourway: Colourway | None) -> dict[str, object]:
-    if colourway is None:
-        return {}
+def _initial(colourway: Colourway) -> dict[str, object]:
     shades = colourway.shades_by_slot()
     return {"name": colourway.name} | {f"slot_{slot}": shade.pk for slot, shade in shades.items()}
 

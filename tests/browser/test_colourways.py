@@ -128,7 +128,7 @@ def test_pages_are_accessible(
     page = new_page(viewport, user=maker, color_scheme=theme)
     for way in ways:
         page.goto(reverse("colourway_edit", args=[way.pk]))
-        expect(page.get_by_text("Near it, and on the shelf:").first).to_be_visible()
+        expect(page.get_by_text("Nearest on the shelf:").first).to_be_visible()
         expect(page.get_by_text(ALIKE)).to_be_visible()
         axe(page)
         for target in (

@@ -211,7 +211,7 @@ def test_shade_without_enough_names_the_nearest_that_has_it(maker, pattern):
     put_thread(far, 8_000)
     put_thread(near, 8_000)
     page = looked_at(maker, pattern, A=wanted)
-    assert "No lot on the shelf holds enough. Near it, and on the shelf:" in page
+    assert "No lot on the shelf holds enough. Nearest on the shelf:" in page
     # Sharma, Wu & Dalal (2005) as in tests/unit/patterns/test_colour_difference.py.
     amount = difference(wanted.colour, near.colour)
     assert (
@@ -227,7 +227,7 @@ def test_shade_with_enough_names_no_other(maker, pattern, shades):
     for shade in shades:
         put_thread(shade, 8_000)
     page = looked_at(maker, pattern, A=shades[0], B=shades[1])
-    assert "Near it" not in page
+    assert "Nearest on" not in page
     assert "Take" not in page
 
 
@@ -317,6 +317,55 @@ def test_shades_well_apart_give_no_warning(maker, pattern):
     page = looked_at(maker, pattern, **dict(zip("ABC", shades, strict=True)))
     assert "look alike" not in page
     assert "As eyes" not in page
+
+
+def test_propose_fills_the_slots_from_the_shelf(maker, pattern, shades):
+    on_shelf = [make_shade(colour=colour) for colour in ("#f4f1e8", "#101010", "#3050c0")]
+    for shade in on_shelf:
+        put_thread(shade, 8_000)
+    put_thread(shades[0], 500)
+    response = maker.post(new(pattern), typed(shades) | {"propose": "yes"})
+    chosen = response.context["form"].chosen
+    assert set(chosen.values()) == set(on_shelf)
+    page = response.content.decode()
+    assert 'value="Dusk"' in page
+    assert "No lot on the shelf" not in page
+    assert "look alike" not in page
+    assert not Colourway.objects.exists()
+
+
+def test_propose_says_which_slots_the_shelf_leaves_open(maker, pattern, shades):
+    put_thread(shades[1], 8_000)
+    response = maker.post(new(pattern), typed(shades) | {"propose": "yes"})
+    assert list(response.context["form"].chosen.values()) == [shades[1]]
+    [left_open] = re.findall(
+        r"no further shade with enough thread for (\w, \w)\. Choose one to buy\.",
+        words(response.content.decode()),
+    )
+    assert left_open.split(", ") == sorted(set("ABC") - set(response.context["form"].chosen))
+
+
+def test_copy_starts_from_a_colourway_and_changes_nothing_of_it(maker, pattern, shades):
+    maker.post(new(pattern), typed(shades, name="d" * 60))
+    dusk = Colourway.objects.get()
+    link = f"{new(pattern)}?copy={dusk.pk}"
+    assert link in maker.get(reverse("pattern_detail", args=[pattern.pk])).content.decode()
+    response = maker.get(link)
+    assert response.context["form"].chosen == dusk.shades_by_slot()
+    name = response.context["form"]["name"].value()
+    assert name == "d" * 54 + ", copy"
+    maker.post(link, typed(shades[::-1], name=name))
+    assert Colourway.objects.count() == 2
+    assert dusk.shades_by_slot()["A"] == shades[0]
+
+
+@pytest.mark.parametrize("key", ["", "0", "-1", "abc", "9" * 400, "\0", "1.0"])
+def test_copy_of_what_is_not_there_starts_empty(maker, pattern, shades, key):
+    make_colourway(make_pattern("Other"))
+    for of_other in (key, str(Colourway.objects.get().pk)):
+        response = maker.get(new(pattern), {"copy": of_other})
+        assert response.status_code == 200
+        assert response.context["form"].chosen == {}
 
 
 def test_grid_pattern_is_chosen_for_in_the_same_way(maker):
