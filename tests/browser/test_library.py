@@ -55,7 +55,7 @@ def test_filters_follow_and_stay_in_the_address(signed_in_page: Page, library: N
     page.get_by_text("By technique, strands").click()
     page.get_by_label("In order of").select_option("newest first")
     expect(page.locator(".library-entry h2").first).to_have_text("Quay 41")
-    assert "q=quay+1" in page.url
+    assert "q=quay%201" in page.url
     assert "sort=newest" in page.url
     page.reload()
     assert len(shown(page)) == 14
