@@ -27,12 +27,13 @@ class Decision:
 
 @dataclass
 class Taken:
-    """How many files became what."""
+    """How many files became what; `newest` is the pattern that was added or changed last."""
 
     added: int = 0
     replaced: int = 0
     left_out: int = 0
     waiting: int = 0
+    newest: Pattern | None = None
 
 
 class ImportRefused(LibraryError):
@@ -103,18 +104,19 @@ def _take(file: IncomingFile, decision: Decision, yours: int | None, taken: Take
     if file.problem:
         raise LibraryError("It holds no pattern that could be added. Put its text right first.")
     if decision.doing == "replace":
-        _replace(file, decision, yours, by)
+        taken.newest = _replace(file, decision, yours, by)
         taken.replaced += 1
     else:
         renamed = decision.doing == "rename"
-        add_pattern(text=_renamed(file.text, decision.name) if renamed else file.text, by=by)
+        text = _renamed(file.text, decision.name) if renamed else file.text
+        taken.newest = add_pattern(text=text, by=by)
         taken.added += 1
 
 
-def _replace(file: IncomingFile, decision: Decision, yours: int | None, by: Any) -> None:
+def _replace(file: IncomingFile, decision: Decision, yours: int | None, by: Any) -> Pattern:
     if yours is None:
         raise LibraryError(f"You have no pattern called {file.name} any more. Add this one.")
-    change_pattern(
+    return change_pattern(
         pattern=Pattern.objects.get(pk=yours),
         text=file.text,
         by=by,

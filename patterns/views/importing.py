@@ -83,6 +83,8 @@ def pattern_import_check(request: HttpRequest, pk: int) -> HttpResponse:
     messages.success(request, _words(taken))
     if taken.waiting:
         return redirect("pattern_import_check", pk=pk)
+    if taken.newest and taken.added + taken.replaced == 1:
+        return redirect("pattern_detail", pk=taken.newest.pk)
     return redirect("pattern_list")
 
 

@@ -134,8 +134,10 @@ def test_empty_workshop_to_a_plan_with_one_order_by_hand(
     page.get_by_role("link", name="Choose its shades").first.click()
     axe(page)
     page.get_by_label("Name of the colourway").fill("Shore")
-    page.get_by_label("A: strand").select_option(label="SP1 Sand")
-    page.get_by_label("B: strand").select_option(label="SP2 Slate")
+    for slot, shade in (("A", "SP1 Sand"), ("B", "SP2 Slate")):
+        choice = page.get_by_label(f"{slot}: strand")
+        value = choice.locator("option", has_text=shade).get_attribute("value")
+        choice.select_option(value)
     page.get_by_role("button", name="Save the colourway").click()
     axe(page)
     page.get_by_role("link", name="Put it in an order").click()
@@ -166,5 +168,7 @@ def test_empty_workshop_to_a_plan_with_one_order_by_hand(
 
 
 def add_pattern_file(page: Page, file: Path) -> None:
-    page.get_by_label("Or choose the file").set_input_files(file)
-    page.get_by_role("button", name="Add from the file").click()
+    page.get_by_role("link", name="Choose files").click()
+    page.get_by_label("Choose pattern files, or a ZIP of them").set_input_files(file)
+    page.get_by_role("button", name="Look at them").click()
+    page.get_by_role("button", name="Do so").click()
