@@ -27,7 +27,9 @@ def hostile_pastes(count: int = 800, seed: int = 2026) -> Iterator[str]:
         if kind == 0:
             yield "".join(chr(chance.randrange(1, 0xD7FF)) for _ in range(chance.randrange(400)))
         elif kind == 1:
-            yield chance.choice(("(", "9", "9 ", "x", "f", ")", "-", "\0")) * chance.randrange(1, 9_000)
+            yield chance.choice(("(", "9", "9 ", "x", "f", ")", "-", "\0")) * chance.randrange(
+                1, 9_000
+            )
         elif kind == 2:
             yield " ".join(chance.choice(words) for _ in range(chance.randrange(1, 200)))
         elif kind == 3:
