@@ -203,10 +203,10 @@ class ShelfPieceQuerySet(QuerySet["ShelfPiece"]):
 
     def by_shade(self, short_measure_share: Decimal) -> dict[int, OnShelf]:
         """The thread on the shelf by the shade's key: one query, however many shades there are."""
-        lots: dict[int, dict[int, list[int]]] = defaultdict(lambda: defaultdict(list))
+        lots: dict[int, dict[str, list[int]]] = defaultdict(lambda: defaultdict(list))
         totals: Counter[int] = Counter()
         whole: Counter[int] = Counter()
-        rows = self.on_shelf().values_list("lot__shade_id", "lot_id", "kind", "length_mm")
+        rows = self.on_shelf().values_list("lot__shade_id", "lot__name", "kind", "length_mm")
         for shade, lot, kind, length_mm in rows.order_by("pk"):
             is_whole = kind == ShelfPiece.Kind.WHOLE
             trusted = reckoned_length(length_mm, short_measure_share) if is_whole else length_mm
@@ -214,7 +214,9 @@ class ShelfPieceQuerySet(QuerySet["ShelfPiece"]):
             totals[shade] += length_mm
             whole[shade] += is_whole
         return {
-            shade: OnShelf(totals[shade], whole[shade], tuple(map(tuple, of_shade.values())))
+            shade: OnShelf(
+                totals[shade], whole[shade], tuple(map(tuple, of_shade.values())), tuple(of_shade)
+            )
             for shade, of_shade in lots.items()
         }
 

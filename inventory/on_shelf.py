@@ -35,11 +35,14 @@ class OnShelf:
         How many whole skeins it has.
     lots
         For every lot, the lengths that its skeins and remnants are trusted to hold [mm].
+    lot_names
+        The names of the lots, in the same order.
     """
 
     length_mm: int = 0
     whole_skeins: int = 0
     lots: tuple[tuple[int, ...], ...] = ()
+    lot_names: tuple[str, ...] = ()
 
     def holds(self, pieces_mm: Sequence[int]) -> bool:
         """Return whether all pieces [mm] can be cut from one lot.
@@ -68,6 +71,11 @@ class OnShelf:
         plural = "" if self.whole_skeins == 1 else "s"
         skeins = f", {self.whole_skeins} whole skein{plural}" if self.whole_skeins else ""
         return f"{total} on the shelf{skeins}"
+
+    def lot_words(self) -> str:
+        """Name the dye lots: "lot L1", "lots L1, L2"; nothing where there are none."""
+        named = ", ".join(self.lot_names)
+        return named and f"lot{'' if len(self.lot_names) == 1 else 's'} {named}"
 
 
 def _tenths_of_metres(length_mm: int) -> int:

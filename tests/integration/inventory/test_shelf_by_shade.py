@@ -19,7 +19,7 @@ def test_by_shade_counts_what_is_marked_and_trusts_what_is_measured():
     put_thread(madder, 900, kind=ShelfPiece.Kind.REMNANT, lot="L2")
     # Whole skeins less 2 %, remnants as measured, lots apart.
     assert ShelfPiece.objects.by_shade(SHARE) == {
-        madder.pk: OnShelf(16_900, 2, ((7_840, 7_840), (900,)))
+        madder.pk: OnShelf(16_900, 2, ((7_840, 7_840), (900,)), ("L1", "L2"))
     }
 
 
@@ -29,7 +29,7 @@ def test_by_shade_leaves_out_what_is_gone():
     change_shelf(changes=[RemoveThread(piece.pk)])
     [gone] = put_thread(indigo, 500)
     change_shelf(changes=[RemoveThread(gone.pk)])
-    assert ShelfPiece.objects.by_shade(SHARE) == {madder.pk: OnShelf(700, 0, ((700,),))}
+    assert ShelfPiece.objects.by_shade(SHARE) == {madder.pk: OnShelf(700, 0, ((700,),), ("L1",))}
 
 
 def test_by_shade_asks_once(django_assert_num_queries):

@@ -30,7 +30,7 @@ def test_what_holds_can_be_cut(pieces, stock):
 
 
 def test_holds_needs_lengths_not_a_total():
-    # The handbook's case: 10 strands of 1.2 m do not come out of 12 m of 0.9 m remnants, and only
+    # Common practice, no source: 10 strands of 1.2 m do not come out of 12 m of 0.9 m remnants, and only
     # 6 come out of a skein of 8 m.
     remnants = OnShelf(12_600, 0, ((900,) * 14,))
     skein = OnShelf(8_000, 1, ((8_000,),))
@@ -64,6 +64,13 @@ def test_holds_of_an_empty_shelf_and_of_no_pieces():
 )
 def test_words_say_how_much_there_is(shelf, unit, words):
     assert shelf.words(unit) == words
+
+
+@pytest.mark.parametrize(
+    ("names", "words"), [((), ""), (("L1",), "lot L1"), (("L1", "L2"), "lots L1, L2")]
+)
+def test_lot_words_name_the_lots(names, words):
+    assert OnShelf(lot_names=names).lot_words() == words
 
 
 def test_reckoned_length_rounds_down() -> None:
