@@ -11,7 +11,10 @@ MOST_CONSIDERED = 60
 
 
 def propose(
-    slots: Sequence[str], shades: Mapping[Key, str], holds: Callable[[str, Key], bool]
+    slots: Sequence[str],
+    shades: Mapping[Key, str],
+    holds: Callable[[str, Key], bool],
+    number: int = 0,
 ) -> dict[str, Key]:
     """Give every slot a shade of its own that has enough thread, far from the other ones.
 
@@ -24,6 +27,9 @@ def propose(
         first `MOST_CONSIDERED` are looked at.
     holds
         Whether a shade has enough thread for a slot.
+    number
+        Which proposal, from 0: the first slot takes the shade of that number among those that
+        have enough; after the last one it begins again.
 
     Returns
     -------
@@ -37,7 +43,7 @@ def propose(
     Notes
     -----
     Greedy: each slot takes the shade whose least difference from those taken, in whatever way of
-    seeing, is greatest. The first slot takes the first shade. The same input gives the same
+    seeing, is greatest. The same input gives the same
     answer.
     """
     left = dict(list(shades.items())[:MOST_CONSIDERED])
@@ -47,7 +53,8 @@ def propose(
         fitting = [key for key in left if holds(slot, key)]
         if not fitting:
             continue
-        best = max(fitting, key=lambda key: apart[key])
+        furthest = max(fitting, key=lambda key: apart[key])
+        best = furthest if taken else fitting[number % len(fitting)]
         taken[slot] = best
         colour = left.pop(best)
         for key, other in left.items():

@@ -49,6 +49,14 @@ def test_propose_is_the_same_every_time_and_takes_the_first_of_equals():
     assert propose("AB", shades, always) == propose("AB", shades, always)
 
 
+def test_each_proposal_starts_from_another_shade_until_they_begin_again():
+    shades = {"W1": "#ffffff", "K1": "#000000", "R1": "#aa1122", "B1": "#1122aa"}
+    starts = [
+        propose("AB", shades, lambda slot, key: key != "R1", number)["A"] for number in range(4)
+    ]
+    assert starts == ["W1", "K1", "B1", "W1"]
+
+
 def test_propose_asks_for_each_slot_whether_there_is_enough():
     shades = {"W1": "#ffffff", "K1": "#000000"}
     only = {("A", "K1"), ("B", "W1")}
