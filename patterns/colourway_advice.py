@@ -27,6 +27,21 @@ class Shelf:
     def words(self, shade: Shade) -> str:
         return self.of(shade).words(self.unit)
 
+    def words_with_lots(self, shade: Shade) -> str:
+        return ", ".join(filter(None, (self.words(shade), self.of(shade).lot_words())))
+
+    def search(self, words: str) -> dict[str, Shade]:
+        """Shades with every word in the code, the name or a lot on the shelf."""
+        wanted = words.casefold().split()
+        return {
+            key: shade
+            for key, shade in self.shades.items()
+            if all(word in self._searched(shade) for word in wanted)
+        }
+
+    def _searched(self, shade: Shade) -> str:
+        return "\n".join((shade.code, shade.name, *self.of(shade).lot_names)).casefold()
+
 
 @dataclass(frozen=True)
 class Instead:
@@ -69,9 +84,12 @@ def advise(
 
 
 def propose_from_shelf(
-    slots: Sequence[str], shelf: Shelf, bracelet: UsualBracelet
+    slots: Sequence[str], shelf: Shelf, bracelet: UsualBracelet, number: int
 ) -> dict[str, Shade]:
-    """A shade with enough thread for every slot; what takes most, and what has most, come first."""
+    """A shade with enough thread for every slot; what takes most, and what has most, come first.
+
+    Proposals are numbered from 0; each starts from another shade.
+    """
     by_need = sorted(slots, key=lambda slot: -sum(bracelet.pieces_mm.get(slot, ())))
     by_length = sorted(shelf.shades.values(), key=lambda shade: -shelf.of(shade).length_mm)
     colours = {shade: shade.colour for shade in by_length if shelf.of(shade).length_mm}
@@ -79,6 +97,7 @@ def propose_from_shelf(
         by_need,
         colours,
         lambda slot, shade: shelf.of(shade).holds(bracelet.pieces_mm.get(slot, ())),
+        number,
     )
 
 
@@ -95,7 +114,7 @@ def _slot_advice(
         pieces=len(own_mm),
         need_mm=sum(own_mm),
         shade=shade,
-        on_shelf=shelf.words(shade) if shade else "",
+        on_shelf=shelf.words_with_lots(shade) if shade else "",
         is_short=is_short,
         shares_with=sharing if shade else (),
         instead=tuple(_instead(shade, own_mm, chosen, shelf)) if shade and is_short else (),
@@ -113,4 +132,4 @@ def _instead(
         if shade not in taken and shelf.of(shade).holds(pieces_mm)
     }
     for near in nearest_shades(wanted.colour, colours, MOST_INSTEAD):
-        yield Instead(near.key, near.difference, shelf.words(near.key))
+        yield Instead(near.key, near.difference, shelf.words_with_lots(near.key))

@@ -1,5 +1,6 @@
 """The shades of a colourway, one for every slot."""
 
+from collections.abc import Collection, Mapping
 from typing import Any
 
 from django import forms
@@ -20,7 +21,7 @@ class ColourwayForm(forms.Form):
         self, data: Any = None, *, definition: PatternCore, shelf: Shelf, **kwargs: Any
     ) -> None:
         super().__init__(data, **kwargs)
-        self.shades = shelf.shades
+        self.shades: Mapping[str, Shade] = shelf.shades
         self.slots = definition.used_slots
         choices = [("", "Choose a shade")] + [
             (pk, f"{shade}: {shelf.words(shade)}") for pk, shade in self.shades.items()
@@ -34,6 +35,15 @@ class ColourwayForm(forms.Form):
                     "invalid_choice": "That shade is not on your list. Choose another.",
                 },
             )
+
+    def list_only(self, keys: Collection[str]) -> None:
+        """Offer these shades alone, and in every slot its own; any other stays valid."""
+        for slot in self.slots:
+            field = self.fields[f"slot_{slot}"]
+            offered = {"", str(self[f"slot_{slot}"].value()), *keys}
+            field.widget.choices = [  # type: ignore[attr-defined]
+                choice for choice in field.choices if choice[0] in offered
+            ]
 
     @property
     def chosen(self) -> dict[str, Shade]:

@@ -23,7 +23,8 @@ from patterns.usual_bracelet import UsualBracelet, usual_bracelet
 from patterns.views._shared import note_refusal, posted, removed, render_either
 
 # These buttons show what would be; the others save.
-LOOKS = {"preview", "take", "propose"}
+LOOKS = {"preview", "take", "propose", "swap"}
+MOST_FOUND_SHOWN = 12
 SEEN_BY = {
     Sight.PROTAN: "without red cones (protan)",
     Sight.DEUTAN: "without green cones (deutan)",
@@ -85,9 +86,10 @@ def _colourway_form(
     initial: dict[str, object],
 ) -> HttpResponse:
     definition = pattern.definition
-    only_look = not LOOKS.isdisjoint(request.POST)
+    only_look = _only_looks(request.POST)
     workshop = habits()
-    shelf, bracelet = _shelf(workshop), usual_bracelet(pattern, workshop)
+    shelf = _shelf(workshop)
+    bracelet = usual_bracelet(pattern, workshop, request.POST.get("size", ""))
     form = ColourwayForm(
         None if only_look else posted(request),
         definition=definition,
@@ -102,7 +104,8 @@ def _colourway_form(
             messages.success(request, f"{saved.name} is saved. You can put it in an order now.")
             return redirect(f"{reverse('pattern_detail', args=[pattern.pk])}?colourway={saved.pk}")
     context: dict[str, object] = {"pattern": pattern, "form": form, "address": request.path}
-    context |= _advice(definition, form, shelf, bracelet)
+    context |= _advice(definition, form, shelf, bracelet) | _tools(request.POST, form, shelf)
+    context["searching"] = request.headers.get("HX-Trigger-Name") == "find"
     return render_either(
         request, "patterns/colourway_form.html", "patterns/_colourway_answer.html", context
     )
@@ -116,18 +119,52 @@ def _shelf(workshop: Workshop) -> Shelf:
     )
 
 
+def _only_looks(typed: QueryDict) -> bool:
+    """Enter presses the form's unnamed button: while somebody searches it does not save."""
+    return not LOOKS.isdisjoint(typed) or bool(typed.get("find") and "save" not in typed)
+
+
 def _looked_at(typed: QueryDict) -> dict[str, object]:
-    """What was typed, with the shade that a button takes for a slot; nothing is saved."""
-    slot, _, key = typed.get("take", "").partition(":")
+    """What was typed, with the shade that a button takes or swaps; nothing is saved."""
     shown: dict[str, object] = dict(typed.items())
-    return shown | ({f"slot_{slot}": key} if key else {})
+    slot, _, key = typed.get("take", "").partition(":")
+    if key:
+        shown[f"slot_{slot}"] = key
+    one, other = (f"slot_{typed.get(name, '')}" for name in ("swap_one", "swap_other"))
+    if "swap" in typed and one in shown and other in shown:
+        shown[one], shown[other] = shown[other], shown[one]
+    return shown
+
+
+def _tools(typed: QueryDict, form: ColourwayForm, shelf: Shelf) -> dict[str, object]:
+    """The search among the shades, the slots to swap, and the number of the next proposal."""
+    find = typed.get("find", "").strip()[:80]
+    found = shelf.search(find) if find else {}
+    if found:
+        form.list_only(found)
+    return {
+        "find": find,
+        "found_count": len(found),
+        "found": [
+            (shade, shelf.words_with_lots(shade))
+            for shade in list(found.values())[:MOST_FOUND_SHOWN]
+        ],
+        "swap_one": typed.get("swap_one", form.slots[0]),
+        "swap_other": typed.get("swap_other", form.slots[-1]),
+        "next_proposal": _proposal_number(typed) + 1 if "propose" in typed else 0,
+    }
+
+
+def _proposal_number(typed: QueryDict) -> int:
+    number = typed.get("propose", "")
+    return int(number) if number.isascii() and number.isdigit() and len(number) < 4 else 0
 
 
 def _fill_from_shelf(
     request: HttpRequest, form: ColourwayForm, shelf: Shelf, bracelet: UsualBracelet
 ) -> None:
     """Put the proposal into the form, for the maker to look at."""
-    proposed = propose_from_shelf(form.slots, shelf, bracelet)
+    proposed = propose_from_shelf(form.slots, shelf, bracelet, _proposal_number(request.POST))
     for slot in form.slots:
         form.initial[f"slot_{slot}"] = proposed[slot].pk if slot in proposed else ""
     if left_open := [slot for slot in form.slots if slot not in proposed]:

@@ -5,7 +5,7 @@ from collections.abc import Callable
 import pytest
 from django.contrib.auth.models import User
 from django.urls import reverse
-from playwright.sync_api import Page, expect
+from playwright.sync_api import Page, Route, expect
 
 from inventory.models import Shade
 from patterns.actions import load_defaults
@@ -83,7 +83,7 @@ def test_a_shade_is_chosen_by_keyboard_alone(
     page.keyboard.type("Hedge")
     for code in ("R1", "G1", "W1"):
         page.keyboard.press("Tab")
-        while page.evaluate("document.activeElement.tagName") != "SELECT":
+        while not page.evaluate("document.activeElement.id").startswith("id_slot_"):
             page.keyboard.press("Tab")
         page.keyboard.type(code)
         page.keyboard.press("Tab")
@@ -109,6 +109,81 @@ def test_a_near_shade_is_taken_without_scripts(
     expect(page.get_by_label("Name of the colourway")).to_have_value("Hedge")
 
 
+def test_searching_narrows_the_lists_and_keeps_what_is_chosen(
+    signed_in_page: Page, pattern: Pattern, shades: dict[str, Shade]
+) -> None:
+    page = signed_in_page
+    page.goto(new(pattern))
+    choose(page, "A", "G1 Moss: 8 m on the shelf")
+    expect(page.locator("#advice-A")).to_contain_text("8 m on the shelf")
+    find = page.get_by_label("Find shades by code, name or lot")
+    find.press_sequentially("rust")
+    expect(page.get_by_role("status").get_by_text("1 shade found.")).to_be_visible()
+    expect(find).to_be_focused()
+    assert page.locator("#id_slot_B option").all_text_contents() == [
+        "Choose a shade",
+        "R2 Rust: 8 m on the shelf",
+    ]
+    expect(page.locator("#id_slot_A")).to_have_value(str(shades["G1"].pk))
+    page.keyboard.press("Tab")
+    page.keyboard.press("Tab")
+    expect(page.locator("#id_slot_B")).to_be_focused()
+    page.keyboard.type("R2")
+    page.keyboard.press("Tab")
+    expect(page.locator("#advice-B")).to_contain_text("8 m on the shelf")
+    find.fill("")
+    expect(page.locator("#id_slot_C option")).to_have_count(5)
+    expect(page.locator("#id_slot_B")).to_have_value(str(shades["R2"].pk))
+
+
+def test_what_is_chosen_while_a_search_is_under_way_stays_chosen(
+    signed_in_page: Page, pattern: Pattern, shades: dict[str, Shade]
+) -> None:
+    page = signed_in_page
+    page.goto(new(pattern))
+    held: list[Route] = []
+
+    def hold_the_first(route: Route) -> None:
+        route.continue_() if held else held.append(route)
+
+    page.route(f"**{new(pattern)}", hold_the_first)
+    with page.expect_request(f"**{new(pattern)}"):
+        page.get_by_label("Find shades by code, name or lot").press_sequentially("rust")
+    choose(page, "A", "W1 Chalk: 8 m on the shelf")
+    held[0].continue_()
+    expect(page.get_by_text("1 shade found.")).to_be_visible()
+    expect(page.locator("#id_slot_A")).to_have_value(str(shades["W1"].pk))
+    expect(page.locator("#advice-A")).to_contain_text("8 m on the shelf")
+
+
+def test_another_size_changes_what_each_slot_takes(
+    signed_in_page: Page, pattern: Pattern, shades: dict[str, Shade]
+) -> None:
+    page = signed_in_page
+    page.goto(new(pattern))
+    takes = page.locator("#advice-A")
+    usual = takes.inner_text()
+    size = page.get_by_label("For a bracelet in")
+    size.select_option(index=0)
+    expect(page.locator("#colourway-size")).to_contain_text(
+        size.locator("option").first.inner_text()
+    )
+    expect(takes).not_to_have_text(usual)
+
+
+def test_two_shades_are_swapped(
+    signed_in_phone: Page, pattern: Pattern, shades: dict[str, Shade]
+) -> None:
+    page = signed_in_phone
+    page.goto(new(pattern))
+    choose(page, "A", "G1 Moss: 8 m on the shelf")
+    choose(page, "C", "W1 Chalk: 8 m on the shelf")
+    page.get_by_label("Second slot").select_option("C")
+    page.get_by_role("button", name="Swap").click()
+    expect(page.locator("#id_slot_A")).to_have_value(str(shades["W1"].pk))
+    expect(page.locator("#id_slot_C")).to_have_value(str(shades["G1"].pk))
+
+
 @pytest.mark.parametrize("theme", ["light", "dark"])
 @pytest.mark.parametrize("viewport", [DESK, PHONE], ids=["desk", "phone"])
 def test_pages_are_accessible(
@@ -130,9 +205,13 @@ def test_pages_are_accessible(
         page.goto(reverse("colourway_edit", args=[way.pk]))
         expect(page.get_by_text("Nearest on the shelf:").first).to_be_visible()
         expect(page.get_by_text(ALIKE)).to_be_visible()
+        page.get_by_label("Find shades by code, name or lot").press_sequentially("rust")
+        expect(page.get_by_text("1 shade found.")).to_be_visible()
         axe(page)
         for target in (
-            page.locator("main form").locator("select, button:not(.visually-hidden)").all()
+            page.locator("main form")
+            .locator("select, input:not([type=hidden]), button:not(.visually-hidden)")
+            .all()
         ):
             box = target.bounding_box()
             assert box, "it can be seen"

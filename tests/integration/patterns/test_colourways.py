@@ -38,6 +38,11 @@ def new(pattern: Pattern) -> str:
     return reverse("colourway_new", args=[pattern.pk])
 
 
+def selected(page: str, name: str) -> str:
+    select = page[page.index(f'<select name="{name}"') :]
+    return re.search(r'<option value="([^"]*)" selected>', select[: select.index("</select>")])[1]
+
+
 def typed(shades: list[Shade], **changes) -> dict:
     slots = {f"slot_{slot}": shade.pk for slot, shade in zip("ABC", shades, strict=True)}
     return {"name": "Dusk"} | slots | changes
@@ -117,7 +122,9 @@ def test_colourway_edit_starts_from_what_is_chosen(maker, pattern, shades):
     maker.post(new(pattern), typed(shades))
     colourway = Colourway.objects.get()
     url = reverse("colourway_edit", args=[colourway.pk])
-    assert maker.get(url).content.decode().count(" selected>") == 3
+    page = maker.get(url).content.decode()
+    for slot, shade in zip("ABC", shades, strict=True):
+        assert selected(page, f"slot_{slot}") == str(shade.pk)
     maker.post(url, typed(shades[::-1], name="Dawn"))
     colourway.refresh_from_db()
     assert colourway.name == "Dawn"
@@ -177,7 +184,7 @@ def looked_at(maker, pattern: Pattern, **chosen: Shade) -> str:
 
 def words(page: str) -> str:
     """The page without its tags, blanks put together."""
-    return " ".join(unescape(re.sub(r"<[^>]*>", " ", page)).split()).replace(" .", ".")
+    return re.sub(r" ([.:])", r"\1", " ".join(unescape(re.sub(r"<[^>]*>", " ", page)).split()))
 
 
 def test_each_shade_says_what_lies_on_the_shelf(maker, pattern, shades):
@@ -366,6 +373,118 @@ def test_copy_of_what_is_not_there_starts_empty(maker, pattern, shades, key):
         response = maker.get(new(pattern), {"copy": of_other})
         assert response.status_code == 200
         assert response.context["form"].chosen == {}
+
+
+def test_lots_stand_beside_the_thread(maker, pattern, shades):
+    put_thread(shades[0], 8_000, kind=ShelfPiece.Kind.WHOLE, lot="204")
+    put_thread(shades[0], 1_900, lot="<b>7")
+    page = looked_at(maker, pattern, A=shades[0])
+    assert "9.9 m on the shelf, 1 whole skein, lots 204, <b>7." in page
+    raw = maker.post(new(pattern), {"preview": "yes", "slot_A": shades[0].pk}).content.decode()
+    assert "<b>7" not in raw
+
+
+def test_need_is_that_of_the_size_chosen(maker, pattern, shades):
+    needs = {}
+    for size in Size.objects.all():
+        address = reverse("pattern_detail", args=[pattern.pk])
+        answer = maker.get(address, {"size": size.pk}).context["answer"]
+        needs[size] = next(line.total_mm for line in answer.slots if line.slot == "B")
+        page = maker.post(new(pattern), {"preview": "yes", "size": size.pk}).content.decode()
+        assert f"B takes {format_length(needs[size])} in 2 pieces." in words(page)
+        assert f"for one bracelet in {size} with" in words(page)
+        assert selected(page, "size") == str(size.pk)
+    assert len(set(needs.values())) > 1
+
+
+@pytest.mark.parametrize("size", ["", "0", "-1", "abc", "9" * 400, "9" * 5_000, "\0", "<script>"])
+def test_size_that_is_not_there_is_the_usual_one(maker, pattern, shades, size):
+    usual = maker.get(new(pattern)).context["bracelet"]
+    response = maker.post(new(pattern), {"preview": "yes", "size": size})
+    assert response.context["bracelet"] == usual
+    assert maker.post(new(pattern), typed(shades, size=size)).status_code == 302
+
+
+@pytest.mark.parametrize("find", ["mad", "M1", "DDE m1", "lot-9"])
+def test_search_lists_the_shades_found_and_the_one_chosen(maker, pattern, shades, find):
+    put_thread(shades[0], 500, lot="Lot-9")
+    put_thread(shades[2], 500, lot="Lot-8")
+    page = maker.post(new(pattern), typed(shades, find=find)).content.decode()
+    assert "1 shade found." in page
+    assert "M1 Madder: 50 cm on the shelf, lot Lot-9" in words(page)
+    offered = {
+        slot: re.findall(
+            r'value="(\d+)"', page.split(f'<select name="slot_{slot}"')[1].split("</s")[0]
+        )
+        for slot in "ABC"
+    }
+    found, other, third = (str(shade.pk) for shade in shades)
+    assert offered == {"A": [found], "B": [other, found], "C": [found, third]}, "by code"
+    assert not Colourway.objects.exists(), "Enter searches, it does not save"
+
+
+def test_search_that_finds_nothing_lists_them_all(maker, pattern, shades):
+    page = maker.post(new(pattern), typed(shades, find="<i>zinc")).content.decode()
+    assert "No shade has that" in page
+    assert "<i>zinc" not in page
+    assert page.count("M1 Madder: none on the shelf</option>") == 3
+
+
+def test_shade_outside_the_search_is_saved_all_the_same(maker, pattern, shades):
+    maker.post(new(pattern), typed(shades, find="mad", save="yes"))
+    assert Colourway.objects.get().shades_by_slot() == dict(zip("ABC", shades, strict=True))
+
+
+def test_search_answers_htmx_with_new_lists_and_a_choice_without(maker, pattern, shades):
+    data = typed(shades, find="mad", preview="yes")
+    search = maker.post(new(pattern), data, headers=HTMX | {"HX-Trigger-Name": "find"})
+    choice = maker.post(new(pattern), data, headers=HTMX | {"HX-Trigger-Name": "slot_A"})
+    assert search.content.decode().count("<select") == 3
+    assert choice.content.decode().count("<select") == 0
+
+
+def test_long_search_shows_some_and_counts_all(maker, pattern):
+    for number in range(20):
+        make_shade(f"Z{number}", "Zinc")
+    page = words(maker.post(new(pattern), {"preview": "yes", "find": "zinc"}).content.decode())
+    assert "20 shades found." in page
+    assert "and others" in page
+    assert page.count("Zinc: none on the shelf") == 12 + 3 * 20
+
+
+def test_swapping_two_shades_shows_it_and_saves_nothing(maker, pattern, shades):
+    data = typed(shades, swap="yes", swap_one="A", swap_other="C")
+    response = maker.post(new(pattern), data)
+    chosen = response.context["form"].chosen
+    assert [chosen[slot] for slot in "ABC"] == shades[::-1]
+    assert 'value="Dusk"' in response.content.decode()
+    assert not Colourway.objects.exists()
+
+
+@pytest.mark.parametrize("other", ["", "A", "Q", "\0", "<script>", "9" * 5_000])
+def test_swapping_with_anything_else_changes_nothing(maker, pattern, shades, other):
+    data = typed(shades, swap="yes", swap_one="A", swap_other=other)
+    response = maker.post(new(pattern), data)
+    assert list(response.context["form"].chosen.values()) == shades
+    assert "<script>" not in response.content.decode().replace("<script>\n", "")
+
+
+def test_proposals_go_on_to_others(maker, pattern):
+    for colour in ("#f4f1e8", "#101010", "#3050c0", "#aa1122"):
+        put_thread(make_shade(colour=colour), 8_000)
+    proposals = []
+    for number in range(3):
+        response = maker.post(new(pattern), {"propose": number})
+        proposals.append(response.context["form"].chosen)
+        assert f'name="propose" value="{number + 1}"' in response.content.decode()
+    assert len({str(proposal) for proposal in proposals}) == 3
+
+
+@pytest.mark.parametrize("number", ["", "-1", "abc", "9" * 5_000, "\0", "²"])
+def test_proposal_of_any_other_number_is_the_first(maker, pattern, shades, number):
+    put_thread(shades[1], 8_000)
+    first = maker.post(new(pattern), {"propose": "0"}).context["form"].chosen
+    assert maker.post(new(pattern), {"propose": number}).context["form"].chosen == first
 
 
 def test_grid_pattern_is_chosen_for_in_the_same_way(maker):
