@@ -65,6 +65,7 @@ def chosen_card(
         pattern=definition,
         shades=_shade_names(chosen["colourway"]),
         names=(str(chosen["colourway"] or ""), size.name, ending.name),
+        ends=ending.as_core(),
         rows=answer.rows,
         band_mm=(answer.band_length_mm, answer.band_width_mm),
         pieces=[line.piece for line in answer.pieces],

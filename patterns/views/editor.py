@@ -202,6 +202,8 @@ def _save(request: HttpRequest, pattern: Pattern | None) -> HttpResponse:
     except LibraryError as error:
         return _refusal(error, 422)
     words = f"{saved} is saved." if pattern else f"{saved} is in your library."
+    if saved.last_planned_on:
+        words += " Orders follow the change; plans that you made keep the version they have."
     return JsonResponse(
         {
             "words": words,

@@ -23,7 +23,7 @@ HEADINGS: tuple[tuple[str, str], ...] = (
     ("quantity", "How many"),
     ("due_date", "Due"),
     ("note", "Note"),
-    ("distinct_lengths", "Lengths"),
+    ("distinct_lengths", "How many lengths"),
 )
 
 

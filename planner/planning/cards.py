@@ -4,6 +4,7 @@ from collections.abc import Mapping, Sequence
 from itertools import groupby
 from typing import Protocol
 
+from patterns.cut_lengths import Ending
 from patterns.geometry import Gauge
 from patterns.grid import GridPattern
 from patterns.grid_lengths import DEFAULT_JOIN_TAIL_MM, Run, find_runs
@@ -41,6 +42,7 @@ def kind_card(kind: SnapshotKind, head: SheetHead, unit: str) -> KnottingCard:
         pattern=pattern,
         shades={slot: ShadeName(**shade) for slot, shade in making["shades"].items()},
         names=(kind.colourway_name, kind.size_name, kind.ending_name),
+        ends=Ending(**making["ending"]),
         rows=kind.rows,
         band_mm=(kind.band_length_mm, round(kind.band_width_mm)),
         pieces=kind.pieces,
@@ -57,6 +59,7 @@ def fill_card(
     pattern: Pattern,
     shades: Mapping[str, ShadeName],
     names: tuple[str, str, str],
+    ends: Ending,
     rows: int,
     band_mm: tuple[int, int],
     pieces: Sequence[CutPiece],
@@ -78,6 +81,8 @@ def fill_card(
         The shade of each slot; a slot without one is drawn in a tone of undyed thread.
     names
         Of colourway, size and ending.
+    ends
+        How the bracelet begins and closes.
     rows
         Rows of the whole band.
     band_mm
@@ -103,6 +108,7 @@ def fill_card(
         colourway=colourway,
         size=size,
         ending=ending,
+        ends=ends,
         rows=rows,
         band_length_mm=band_mm[0],
         band_width_mm=band_mm[1],

@@ -4,10 +4,10 @@ from collections import Counter, defaultdict
 from dataclasses import dataclass
 from typing import Any
 
-from django.db.models import Count
+from django.db.models import Count, Max
 from django.utils import timezone
 
-from inventory.models import Workshop
+from inventory.models import PutUp, Workshop
 from patterns.geometry import Gauge, StrandLength
 from patterns.models import Pattern
 from patterns.pattern_file import read_pattern
@@ -53,7 +53,7 @@ def plan_page(plan: Plan) -> dict[str, Any]:
             read_kind(row).added_mm * row.bracelet_count
             for row in plan.kinds.annotate(bracelet_count=Count("bracelets"))
         ),
-        "unplaced": [shade for shade in shades if shade.unplaced],
+        "unplaced": [(shade, too_long_mm(shade)) for shade in shades if shade.unplaced],
         "shelf_changed": shelf_changed,
         "orders_changed": orders_changed,
         "newer_plan": plan.newer(),
@@ -62,6 +62,13 @@ def plan_page(plan: Plan) -> dict[str, Any]:
         "changed_patterns": changed_patterns(plan),
         "other_plans": plan.batch.plans.exclude(pk=plan.pk)[:10],
     }
+
+
+def too_long_mm(shade: PlanShade) -> int:
+    """The longest piece without thread, where no skein that can be bought is as long; else 0 [mm]."""
+    longest = shade.pieces.filter(stock=None).aggregate(longest=Max("cut_mm"))["longest"] or 0
+    sold = PutUp.objects.aggregate(longest=Max("length_mm"))["longest"] or 0
+    return longest if longest > sold else 0
 
 
 def changed_patterns(plan: Plan) -> list[dict[str, Any]]:

@@ -3,6 +3,7 @@
 from collections.abc import Mapping
 from dataclasses import dataclass
 
+from patterns.cut_lengths import Ending
 from patterns.grid_lengths import Run
 from patterns.techniques import Pattern
 from planner.sheets.contents import SheetHead, TagPiece
@@ -33,6 +34,8 @@ class KnottingCard:
         The pattern, and "#rrggbb" for each of its slots.
     colourway, size, ending
         Their names; "" where none is chosen.
+    ends
+        How the bracelet begins and closes, for the thread to leave free.
     rows
         Rows of the whole band.
     band_length_mm, band_width_mm
@@ -52,6 +55,7 @@ class KnottingCard:
     colourway: str
     size: str
     ending: str
+    ends: Ending
     rows: int
     band_length_mm: int
     band_width_mm: int

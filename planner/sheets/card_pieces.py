@@ -3,7 +3,7 @@
 from inventory.measures import format_number
 from planner.sheets.card_contents import KnottingCard
 from planner.sheets.card_pages import SIDE_PT, CardPages, Draw
-from planner.sheets.card_words import start_words
+from planner.sheets.card_words import free_words, start_words
 from planner.sheets.contents import TagPiece
 from planner.sheets.fonts import STRONG, printable
 from planner.sheets.pen import INK, QUIET, Pen
@@ -37,6 +37,7 @@ def add_pieces(pages: CardPages, card: KnottingCard) -> None:
         slots = sorted({each.run.slot for each in card.runs})
         pages.text(f"Runs of {', '.join(slots)} come from scraps: the end of this card lists them.")
     pages.text(start_words(card))
+    pages.text(free_words(card))
 
 
 def _lists_side_by_side(card: KnottingCard, width: float) -> int:

@@ -1,5 +1,7 @@
 """The words on a knotting card: what is tied, how it is read, what each run needs."""
 
+from math import ceil
+
 from inventory.measures import format_length
 from patterns.grid import GridPattern
 from patterns.knots import DiagonalPattern, Knot
@@ -39,6 +41,28 @@ def start_words(card: KnottingCard) -> str:
         f"Hang {pattern.columns} base strands of {pattern.background} side by side, one a column; "
         f"the leading strand of {pattern.background} begins at the left."
     )
+
+
+def free_words(card: KnottingCard) -> str:
+    """Say how much of each strand is left free before the first row, and after the last."""
+    ends, unit = card.ends, card.unit
+
+    def parts(tie_mm: int) -> str:
+        each = {"tie": ceil(tie_mm * ends.take_up), "closing knot": ends.closing_knot_mm}
+        each["to hold"] = ends.grip_mm
+        return ", ".join(f"{name} {format_length(mm, unit)}" for name, mm in each.items() if mm)
+
+    end = f"After the last row {format_length(ends.end_allowance_mm, unit)} are left"
+    if ends.start == "folded":
+        loop = format_length(ends.fold_loop_mm, unit)
+        before = f"The loop of a fold takes {loop}; row 1 is tied below it."
+        if any(piece.fold_mm is None for piece in card.pieces):
+            alone = format_length(ends.single_start_mm, unit)
+            before += f" A strand that is not folded: leave {alone} free before row 1."
+    else:
+        start = format_length(ends.single_start_allowance_mm, unit)
+        before = f"Leave {start} of every strand free before row 1: {parts(ends.start_tie_mm)}."
+    return f"{before} {end}: {parts(ends.end_tie_mm)}."
 
 
 def reading_words(card: KnottingCard) -> list[str]:

@@ -16,10 +16,10 @@ const LEAST_ROWS_SHOWN = 12;
 
 // From edge to edge of a square with its centre at 0: straight through, or bent back.
 const WAYS = {
-  f: "-0.5,-0.5 0.5,0.5",
-  b: "0.5,-0.5 -0.5,0.5",
-  fb: "-0.5,-0.5 0.22,0 -0.5,0.5",
-  bf: "0.5,-0.5 -0.22,0 0.5,0.5",
+  f: "M-0.5-0.5L0.5 0.5",
+  b: "M0.5-0.5L-0.5 0.5",
+  fb: "M-0.5-0.5C0.35-0.5 0.35 0.5-0.5 0.5",
+  bf: "M0.5-0.5C-0.35-0.5-0.35 0.5 0.5 0.5",
 };
 
 function shape(parent, name, attributes = {}) {
@@ -135,7 +135,7 @@ export class KnotChart {
   buildKnot(parent, row, place) {
     const [x, y] = this.centreOf(row, place);
     const square = shape(parent, "path", { d: `M${x} ${y - 1}l1 1-1 1-1-1z` });
-    const way = shape(parent, "polyline", { fill: "none", "stroke-linejoin": "round", "stroke-linecap": "round", transform: `translate(${x} ${y})` });
+    const way = shape(parent, "path", { class: "way", fill: "none", "stroke-linejoin": "round", "stroke-linecap": "round", transform: `translate(${x} ${y})` });
     return { square, way };
   }
 
@@ -158,7 +158,7 @@ export class KnotChart {
     const { square, way } = this.knots[row][place];
     put(square, "fill", colour);
     put(way, "stroke", ink);
-    put(way, "points", WAYS[knot] ?? "");
+    put(way, "d", WAYS[knot] ?? "");
   }
 
   xOf(position) {

@@ -60,6 +60,7 @@ def card(pattern, ending=TIES, length_mm=150, unit="cm", **changes):
             "pattern": pattern,
             "shades": shades,
             "names": ("Harbour lights", "Adult M", ending.name),
+            "ends": ending,
             "rows": table.rows,
             "band_mm": (round(table.band_length_mm), round(table.band_width_mm)),
             "pieces": pieces_for(table, ending, RULE),
@@ -321,3 +322,12 @@ def test_undyed_thread_is_named_so():
     text = words_of(build_knotting_card(card(diagonal(), shades={}, names=("", "M", "Ties")), "a5"))
     assert "no shade chosen" in text
     assert "no colourway chosen" in text
+
+
+def test_card_says_what_to_leave_free():
+    # 60 x 1.25 = 75 for the tie, + 30 + 90 = 195 mm at both ends of a straight start.
+    words = words_of(build_knotting_card(card(diagonal()), CARD_PAPERS["a5"]))
+    assert "Leave 19.5 cm of every strand free before row 1: tie 7.5 cm, closing knot 3 cm" in words
+    assert "After the last row 19.5 cm are left" in words
+    folded = words_of(build_knotting_card(card(diagonal(), FOLDED), CARD_PAPERS["a5"]))
+    assert "The loop of a fold takes 5 cm; row 1 is tied below it." in folded
