@@ -1,7 +1,7 @@
 """The shades of a colourway, one for every slot."""
 
 from collections.abc import Collection, Mapping
-from typing import Any
+from typing import Any, cast
 
 from django import forms
 
@@ -23,12 +23,12 @@ class ColourwayForm(forms.Form):
         super().__init__(data, **kwargs)
         self.shades: Mapping[str, Shade] = shelf.shades
         self.slots = definition.used_slots
-        choices = [("", "Choose a shade")] + [
+        self.choices = [("", "Choose a shade")] + [
             (pk, f"{shade}: {shelf.words(shade)}") for pk, shade in self.shades.items()
         ]
         for slot in self.slots:
             self.fields[f"slot_{slot}"] = forms.ChoiceField(
-                choices=choices,
+                choices=self.choices,
                 label=f"{slot}: {slot_words(definition, slot)}",
                 error_messages={
                     "required": f"Choose a shade for {slot}.",
@@ -39,10 +39,11 @@ class ColourwayForm(forms.Form):
     def list_only(self, keys: Collection[str]) -> None:
         """Offer these shades alone, and in every slot its own; any other stays valid."""
         for slot in self.slots:
-            field = self.fields[f"slot_{slot}"]
+            field = cast(forms.ChoiceField, self.fields[f"slot_{slot}"])
             offered = {"", str(self[f"slot_{slot}"].value()), *keys}
-            field.widget.choices = [  # type: ignore[attr-defined]
-                choice for choice in field.choices if choice[0] in offered
+            # Those of the widget alone: the field goes on to take every shade.
+            cast(forms.Select, field.widget).choices = [
+                (key, words) for key, words in self.choices if key in offered
             ]
 
     @property
