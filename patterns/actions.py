@@ -63,8 +63,8 @@ def change_pattern(
 ) -> Pattern:
     """Make a new version, unless the text is the same.
 
-    Slots that are gone lose their shades; new ones wait for theirs, see `missing_slots`. Raises
-    VersionConflict where the pattern is not at the expected version any more.
+    New slots wait for their shades, see `missing_slots`; the shades of slots that are gone stay, out
+    of sight, so that going back to an earlier version finds them again. Raises VersionConflict where the pattern is not at the expected version any more.
     """
     stored = Pattern.objects.select_for_update().filter(pk=pattern.pk).first()
     if stored is None:
@@ -75,11 +75,9 @@ def change_pattern(
             f"{stored.version} now, and yours began at version {expected_version}."
         )
     pattern.version = stored.version + (text != stored.text)
-    definition = _fill(pattern, text)
+    _fill(pattern, text)
     if text != stored.text:
         _keep_version(pattern, by)
-    gone = ColourwayShade.objects.filter(colourway__pattern=pattern)
-    gone.exclude(slot__in=definition.used_slots).delete()
     return pattern
 
 

@@ -48,6 +48,8 @@ class PatternEditForm(forms.Form):
         cleaned = super().clean() or self.cleaned_data
         if "text" in cleaned:
             _read_into(self, "text", cleaned["text"])
+        if "version" in self.errors:
+            self.add_error(None, "The page did not say which version it shows. Load it again.")
         return cleaned
 
 

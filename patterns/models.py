@@ -312,7 +312,8 @@ class Colourway(models.Model):
 
     def shades_by_slot(self) -> dict[str, Shade]:
         """Uses prefetched rows where `shades__shade` was prefetched."""
-        return {choice.slot: choice.shade for choice in self.shades.all()}
+        used = self.pattern.definition.used_slots
+        return {choice.slot: choice.shade for choice in self.shades.all() if choice.slot in used}
 
 
 class ColourwayShade(models.Model):

@@ -1,14 +1,17 @@
 """Will this strand be long enough? Everything the pattern's page shows for one size and ending."""
 
 from dataclasses import dataclass
+from functools import cached_property
 
 from patterns import working
 from patterns.cut_lengths import CutRule, Ending, EndingError, Piece, pieces_for
-from patterns.geometry import Gauge, GaugeError, LengthError, StrandLength
+from patterns.geometry import Gauge, GaugeError, LengthError, StrandLength, StrandTable
 from patterns.grid import GridPattern, first_picture_row
 from patterns.knots import Finish
 from patterns.shared_lengths import costs_of_lengths, with_distinct_lengths
 from patterns.techniques import Pattern, strand_table
+
+MOST_PIECES = 1_500
 
 
 @dataclass(frozen=True)
@@ -58,27 +61,27 @@ class StrandAnswer:
     slots: tuple[SlotLine, ...]
     length_costs: tuple[tuple[int, int], ...]
 
-    @property
+    @cached_property
     def added_mm(self) -> int:
         """Thread that the pieces take more, to share lengths [mm]."""
         return sum(line.piece.added_mm for line in self.pieces)
 
-    @property
+    @cached_property
     def shortest_mm(self) -> int:
         """The shortest piece to cut [mm]."""
         return min(line.piece.cut_mm for line in self.pieces)
 
-    @property
+    @cached_property
     def longest_mm(self) -> int:
         """The longest piece to cut [mm]."""
         return max(line.piece.cut_mm for line in self.pieces)
 
-    @property
+    @cached_property
     def total_mm(self) -> int:
         """The thread of all pieces [mm]."""
         return sum(line.piece.cut_mm for line in self.pieces)
 
-    @property
+    @cached_property
     def has_folds(self) -> bool:
         """Whether any piece is folded."""
         return any(line.piece.fold_mm for line in self.pieces)
@@ -96,6 +99,15 @@ class StrandAnswer:
 
 class NoAnswer(ValueError):
     """The bracelet cannot be worked out so; the text says why and what to do."""
+
+
+def _check_pieces(table: StrandTable) -> None:
+    """Nobody lays out thousands of scraps, and a page could not show them."""
+    if len(table.strands) > MOST_PIECES:
+        raise NoAnswer(
+            f"The colours are cut into {len(table.strands):,} threads; {MOST_PIECES:,} are the most."
+            " Let colours be carried between their cells."
+        )
 
 
 def answer_for(
@@ -124,6 +136,7 @@ def answer_for(
     """
     try:
         table = strand_table(pattern, knotted_length_mm, gauge, rule.join_tail_mm)
+        _check_pieces(table)
         pieces = with_distinct_lengths(pieces_for(table, ending, rule), distinct_lengths)
     except (LengthError, GaugeError, EndingError) as error:
         raise NoAnswer(str(error)) from error

@@ -4,6 +4,7 @@ import json
 from typing import Any
 
 from django.db import transaction
+from django.db.models import QuerySet
 from django.http import HttpRequest, HttpResponse, JsonResponse, QueryDict
 from django.shortcuts import get_object_or_404, render
 from django.urls import reverse
@@ -18,13 +19,14 @@ from patterns.actions import (
     add_pattern,
     change_pattern,
     cut_rule,
+    missing_slots,
 )
 from patterns.alphabet import alphabet_data
 from patterns.editor_state import read_state, write_state
 from patterns.forms import FINISH_CHOICES, StrandChoiceForm
 from patterns.grid import Carry, GridPattern
 from patterns.knots import SLOT_LETTERS, DiagonalPattern, Finish, Knot, PatternError, knots_in_row
-from patterns.models import KnottedLength, Pattern
+from patterns.models import Colourway, KnottedLength, Pattern
 from patterns.pattern_file import write_pattern
 from patterns.pictures import MOST_PICTURE_ROWS, band_picture
 from patterns.strand_answer import NoAnswer, answer_for
@@ -202,6 +204,9 @@ def _save(request: HttpRequest, pattern: Pattern | None) -> HttpResponse:
     except LibraryError as error:
         return _refusal(error, 422)
     words = f"{saved} is saved." if pattern else f"{saved} is in your library."
+    waiting = [way for way in _ways(saved) if missing_slots(way, saved.definition)]
+    if waiting:
+        words += f" Colourways that need a shade now: {', '.join(str(way) for way in waiting[:3])}."
     if saved.last_planned_on:
         words += " Orders follow the change; plans that you made keep the version they have."
     return JsonResponse(
@@ -214,6 +219,10 @@ def _save(request: HttpRequest, pattern: Pattern | None) -> HttpResponse:
             "edit_url": reverse("pattern_edit", args=[saved.pk]),
         }
     )
+
+
+def _ways(pattern: Pattern) -> QuerySet[Colourway]:
+    return pattern.colourways.select_related("pattern").prefetch_related("shades__shade")
 
 
 @transaction.atomic

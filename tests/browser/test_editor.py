@@ -264,3 +264,41 @@ def test_refusal_shows_the_knot(signed_in_page: Page, pattern: Pattern) -> None:
     expect(page.locator("[data-problem]")).to_have_text(re.compile("Row 1, knot 1: 'x' is not"))
     page.keyboard.press("Control+s")
     expect(page.locator("[data-saved]")).to_have_text(re.compile("Row 1, knot 1"))
+
+
+SPOILT = {
+    "a row is nothing": {"start": {"rows": [None, ["f", "f"]]}},
+    "a row is a number": {"start": {"rows": [["f", "f", "f"], 5]}},
+    "rows are text": {"start": {"rows": "x"}},
+    "no rows": {"start": {"rows": []}},
+    "no slots": {"start": {"slots": None}},
+    "slots are none": {"start": {"slots": {}}},
+    "no steps": {"steps": []},
+    "added text": {"steps": [{"fields": {}, "from": 0, "removed": [["f"]], "added": "x"}]},
+    "added a number": {"steps": [{"fields": {}, "from": 0, "removed": [["f"]], "added": [7]}]},
+    "beyond the steps": {"at": 99},
+}
+
+
+def test_spoilt_kept_work_is_left_aside(signed_in_page: Page, pattern: Pattern) -> None:
+    page = signed_in_page
+    page.on("dialog", lambda dialog: dialog.accept())
+    editor = reverse("pattern_edit", args=[pattern.pk])
+    open_editor(page, editor)
+    start = words_of_rows(page)
+    chart(page).focus()
+    page.keyboard.press("b")
+    kept = state(page)
+    for name, harm in SPOILT.items():
+        page.goto("/workshop/")
+        start_then = kept["start"] | harm.get("start", {})
+        work = kept | harm | {"start": start_then}
+        page.evaluate(
+            """(work) => {
+              localStorage.clear();
+              localStorage.setItem("flosswright-editing-pattern-" + work.key, JSON.stringify(work));
+            }""",
+            work | {"key": pattern.pk},
+        )
+        open_editor(page, editor)
+        assert words_of_rows(page) == start, name

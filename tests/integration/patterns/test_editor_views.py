@@ -121,6 +121,15 @@ def test_saved_elsewhere_meanwhile_is_told_and_can_be_kept_beside(maker):
     assert set(Pattern.objects.values_list("name", flat=True)) == {"Theirs", "Quay"}
 
 
+def test_saving_names_colourways_that_need_a_shade_now(maker):
+    pattern = make_pattern("Quay")
+    make_colourway(pattern, "Harbour")
+    text = pattern_text("Quay", strands="A A B B D D")
+    url = reverse("pattern_edit", args=[pattern.pk])
+    words = post(maker, url, {"state": state(text), "version": 1}).json()["words"]
+    assert words == "Quay is saved. Colourways that need a shade now: Harbour."
+
+
 def test_name_that_is_taken_is_told(maker):
     make_pattern("Quay")
     refused = post(maker, DRAW, {"state": state()})

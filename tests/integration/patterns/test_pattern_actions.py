@@ -11,6 +11,7 @@ from patterns.actions import (
     load_defaults,
     missing_slots,
     remove,
+    restore_version,
     set_colourway,
     set_default_ending,
     set_default_gauge,
@@ -56,13 +57,19 @@ def test_add_pattern_that_is_none_saves_nothing():
     assert not Pattern.objects.exists()
 
 
-def test_change_pattern_drops_shades_of_slots_that_are_gone():
+def test_change_pattern_keeps_shades_of_slots_that_are_gone_out_of_sight():
     pattern = make_pattern(strands="A A B B C C")
     colourway = make_colourway(pattern)
     change_pattern(pattern=pattern, text=pattern_text(strands="A A B B D D"))
     colourway.refresh_from_db()
-    assert [choice.slot for choice in colourway.shades.all()] == ["A", "B"]
+    colourway = Colourway.objects.get()
+    shade = colourway.shades.get(slot="C").shade
+    assert list(colourway.shades_by_slot()) == ["A", "B"]
     assert missing_slots(colourway) == ["D"]
+    restore_version(version=pattern.versions.get(number=1))
+    colourway = Colourway.objects.get()
+    assert colourway.shades_by_slot()["C"] == shade
+    assert missing_slots(colourway) == []
 
 
 def test_change_pattern_to_a_taken_name_changes_nothing():

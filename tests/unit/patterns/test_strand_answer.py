@@ -5,7 +5,7 @@ import pytest
 from patterns.cut_lengths import CutRule, Ending
 from patterns.examples import ending_example, gauge_example
 from patterns.geometry import Gauge
-from patterns.grid import GridPattern
+from patterns.grid import Carry, GridPattern
 from patterns.knots import Finish
 from patterns.pattern_file import read_pattern
 from patterns.strand_answer import NoAnswer, answer_for
@@ -88,3 +88,12 @@ def test_ending_example_shows_a_pair_and_a_single_strand_of_a_folded_start():
 def test_ending_example_of_a_straight_start_is_one_strand():
     # 660 + 195 + 195 = 1050.
     assert [line.piece.cut_mm for line in ending_example(TIES, RULE)] == [1050]
+
+
+def test_answer_for_thousands_of_threads_says_what_to_do():
+    # Single cells that never touch, each cut by the maker's wish: 30 in every second of 84 rows.
+    dots = GridPattern("Dots", "A", (("A", "B") * 30, ("A", "A") * 30), carry=Carry.CUT)
+    with pytest.raises(NoAnswer, match=r"into \d,\d{3} threads; 1,500 are the most"):
+        answer_for(dots, 200, Gauge(), TIES, RULE)
+    carried = replace(dots, carry=Carry.LEAST)
+    assert len(answer_for(carried, 200, Gauge(), TIES, RULE).pieces) < 150

@@ -103,7 +103,11 @@ async function save({ asNew = false } = {}) {
     else refused(status, data);
   } catch (error) {
     if (!(error instanceof NotReached)) throw error;
-    tell(`Not saved. ${error.message} Nothing is lost: your work is kept in this browser. Save again when it is back.`, true);
+    session.store();
+    const kept = session.isKept
+      ? "Nothing is lost: your work is kept in this browser. Save again when it is back."
+      : "This browser keeps nothing: leave this page open, and save again when it is back.";
+    tell(`Not saved. ${error.message} ${kept}`, true);
   } finally {
     isSaving = false;
   }

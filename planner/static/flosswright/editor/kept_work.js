@@ -11,7 +11,8 @@ export function browserStorage() {
     window.localStorage.getItem(PREFIX);
     return window.localStorage;
   } catch {
-    return { length: 0, key: () => null, getItem: () => null, removeItem: () => {}, setItem: () => {} };
+    const refuse = () => { throw new Error("This browser keeps nothing."); };
+    return { length: 0, key: () => null, getItem: () => null, removeItem: () => {}, setItem: refuse };
   }
 }
 
@@ -73,7 +74,11 @@ export class KeptWork {
   // A copy of a window begins with the other's identity.
   becomeAnother() {
     this.identity = newIdentity();
-    window.sessionStorage.setItem(IDENTITY, this.identity);
+    try {
+      window.sessionStorage.setItem(IDENTITY, this.identity);
+    } catch {
+      // A browser that keeps nothing gives every page a new identity anyway.
+    }
     this.isBeside = false;
     this.tell("opened");
   }

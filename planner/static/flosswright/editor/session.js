@@ -52,6 +52,16 @@ const endOf = ({ start, steps, at }) =>
 const isEmpty = (step) =>
   step.removed.length === 0 && step.added.length === 0 && Object.keys(step.fields).length === 0;
 
+const isWords = (list) => Array.isArray(list) && list.length > 0 && list.every((word) => typeof word === "string");
+
+// Whether something that was kept has the shape of a pattern, as another of its technique has it.
+function isPattern(state, like) {
+  const rows = Array.isArray(state.rows) && state.rows.length > 0 &&
+    state.rows.every((row) => Array.isArray(row) && row.every((word) => typeof word === "string"));
+  return rows && Object.keys(like).every((name) =>
+    name === "rows" || (name === "slots" ? isWords(state.slots) : typeof state[name] === "string"));
+}
+
 export class EditingSession {
   // `start` is the pattern as the server has it, at `version` (null for one that is not saved yet).
   constructor({ key, start, version = null, storage = browserStorage(), onChange = () => {} }) {
@@ -208,7 +218,9 @@ export class EditingSession {
   _readable({ place, work }) {
     try {
       if (work.format !== FORMAT || work.start.technique !== this.start.technique) return [];
-      return [{ place, work, state: endOf(work) }];
+      const state = endOf(work);
+      const isWhole = [work.start, state].every((each) => isPattern(each, this.start));
+      return isWhole && work.at <= work.steps.length ? [{ place, work, state }] : [];
     } catch {
       return [];
     }
