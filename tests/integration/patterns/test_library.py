@@ -38,7 +38,7 @@ def test_library_shows_picture_counts_and_colourways(maker):
     pattern = make_pattern("Ferry stripe")
     make_colourway(pattern, "Dusk", A=madder)
     page = maker.get(LIBRARY).content.decode()
-    # Handbook: 61.83 cm a strand on average with six strands; 118 whole rows are 150.2 mm.
+    # Derived from the geometry: 61.83 cm a strand on average with six strands; 118 whole rows are 150.2 mm.
     assert "6 strands · 2 rows a repeat · 3.71&nbsp;m" in page
     assert 'alt="The band of Ferry stripe in Dusk" loading="lazy"' in page
     assert 'fill="#a3262f"' in maker.get(picture_address(page)).content.decode()

@@ -74,7 +74,7 @@ def test_patterns_from_before_get_their_first_version():
     PatternVersion.objects.all().delete()
     importlib.import_module("patterns.migrations.0003_first_versions").first_versions(apps, None)
     pattern.refresh_from_db()
-    # Handbook: 150 mm takes 61.83 cm a strand on average with six strands and idle runs, by the
+    # Derived from the geometry: 150 mm takes 61.83 cm a strand on average with six strands and idle runs, by the
     # length; 118 whole rows are 150.2 mm.
     assert pattern.thread_mm == pytest.approx(6 * 618.3, rel=0.005)
     assert numbers(pattern) == [1]

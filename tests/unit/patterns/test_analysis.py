@@ -122,7 +122,7 @@ def test_shares_by_definition(pattern, length_mm):
 
 
 def test_an_even_pattern_says_so():
-    # All forward over whole true repeats: every strand does the same (outside checks, section 9).
+    # All forward over whole true repeats: every strand does the same (derived).
     pattern = replace(all_same(4, rows=8), finish=Finish.NEAREST)
     assert analysed(pattern).is_even
 

@@ -19,7 +19,7 @@ from patterns.svg import chart_to_svg
 
 SVG = "{http://www.w3.org/2000/svg}"
 SLANT = make_pattern(["f f f", "f f"], slots="AABBCC")
-# The four knots by definition (the field handbook, section 1): from which side the strand that
+# The four knots by definition (common practice, no source): from which side the strand that
 # ties comes, and on which side it is afterwards.
 COMES_AND_GOES = {
     "f": ("left", "right"),

@@ -236,7 +236,7 @@ def test_looks_are_bounded_for_24_strands_of_60_rows():
 
 
 def test_repeats_to_write_out_by_hand():
-    # Six strands A B C C B A all forward: colours are back after 3 repeats (outside checks, 10).
+    # Six strands A B C C B A all forward: colours are back after 3 repeats (computed with sympy).
     assert list(repeats_to_write_out(all_same(6, slots="ABCCBA"))) == [3, 1]
     # Back after 6 repeats; 6 x 80 rows would be 480, and 400 is the most, so 3 x 80.
     long = make_pattern(["f f f", "f f"] + ["fb fb fb", "fb fb"] * 39, slots="AABBCC")
