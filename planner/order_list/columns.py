@@ -66,7 +66,7 @@ _SYNONYMS: Mapping[Field, str] = {
     "Datum, échéance, pour le, datum, uiterlijk, fecha, fecha de entrega, entrega",
     "note": "note, notes, remark, remarks, comment, comments, Notiz, Bemerkung, Anmerkung, remarque, "
     "opmerking, notitie, nota, notas, observación, observaciones",
-    "distinct_lengths": "lengths, distinct lengths, cut lengths, how many lengths, Längen, "
+    "distinct_lengths": "lengths, distinct lengths, cut lengths, lengths to cut, how many lengths, Längen, "
     "longueurs, lengtes, largos",
 }
 

@@ -23,7 +23,7 @@ HEADINGS: tuple[tuple[str, str], ...] = (
     ("quantity", "How many"),
     ("due_date", "Due"),
     ("note", "Note"),
-    ("distinct_lengths", "How many lengths"),
+    ("distinct_lengths", "Lengths to cut"),
 )
 
 
