@@ -13,6 +13,7 @@ from inventory.on_shelf import OnShelf, reckoned_length
 LONGEST_LENGTH_MM = 10_000_000
 colour_validator = RegexValidator(r"^#[0-9a-f]{6}\Z", "Choose a colour.")
 length_validators = [MinValueValidator(1), MaxValueValidator(LONGEST_LENGTH_MM)]
+pack_validators = [MinValueValidator(1), MaxValueValidator(1_000)]
 share_validators = [MinValueValidator(Decimal(0)), MaxValueValidator(Decimal("0.5"))]
 
 
@@ -152,7 +153,10 @@ class PutUpQuerySet(QuerySet["PutUp"]):
 
 
 class PutUp(models.Model):
-    """A way in which thread is sold: length and price, from one supplier."""
+    """A way in which thread is sold, from one supplier: `price` is that of a pack.
+
+    Packs are taken in multiples of `pack_step`, and no fewer than `minimum_packs` of one shade.
+    """
 
     name = models.CharField(max_length=80)
     supplier = models.ForeignKey(Supplier, on_delete=models.PROTECT, related_name="put_ups")
@@ -162,6 +166,9 @@ class PutUp(models.Model):
         decimal_places=2,
         validators=[MinValueValidator(Decimal(0)), MaxValueValidator(Decimal(100_000))],
     )
+    pack_size = models.PositiveSmallIntegerField(default=1, validators=pack_validators)
+    minimum_packs = models.PositiveSmallIntegerField(default=1, validators=pack_validators)
+    pack_step = models.PositiveSmallIntegerField(default=1, validators=pack_validators)
     for_every_shade = models.BooleanField(default=True)
     shades = models.ManyToManyField(Shade, blank=True, related_name="own_put_ups")
 
@@ -175,6 +182,10 @@ class PutUp(models.Model):
             ),
             models.CheckConstraint(condition=Q(length_mm__gte=1), name="put_up_length_positive"),
             models.CheckConstraint(condition=Q(price__gte=0), name="put_up_price_not_negative"),
+            models.CheckConstraint(
+                condition=Q(pack_size__gte=1, minimum_packs__gte=1, pack_step__gte=1),
+                name="put_up_packs_positive",
+            ),
         ]
 
     def __str__(self) -> str:

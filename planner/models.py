@@ -78,6 +78,7 @@ class OrderLine(models.Model):
     distinct_lengths = models.PositiveSmallIntegerField(
         null=True, blank=True, validators=[MinValueValidator(1), MaxValueValidator(60)]
     )
+    matched_set = models.CharField(max_length=40, blank=True)
 
     objects = OrderLineQuerySet.as_manager()
 
@@ -140,6 +141,7 @@ class Plan(models.Model):
     bracelet_count = models.PositiveIntegerField()
     piece_count = models.PositiveIntegerField()
     problems = models.JSONField(default=list)
+    choice = models.JSONField(default=dict)
     shelf_stamp = models.CharField(max_length=64)
     orders_stamp = models.CharField(max_length=64)
 
@@ -161,6 +163,34 @@ class Plan(models.Model):
         """The newest plan of the batch, where that is not this one."""
         newest = Plan.objects.filter(batch=self.batch_id).order_by("-number").first()
         return newest if newest and newest.pk != self.pk else None
+
+
+class PlanRun(models.Model):
+    """A plan being worked out, perhaps in another process: how far it is, and the wish to stop."""
+
+    class Status(models.TextChoices):
+        RUNNING = "running", "working"
+        DONE = "done", "done"
+        FAILED = "failed", "failed"
+
+    batch = models.ForeignKey(Batch, on_delete=models.CASCADE, related_name="runs")
+    created_by = models.ForeignKey(settings.AUTH_USER_MODEL, on_delete=models.SET_NULL, null=True)
+    created_at = models.DateTimeField(auto_now_add=True)
+    heard_at = models.DateTimeField(auto_now_add=True)
+    status = models.CharField(max_length=8, choices=Status.choices, default=Status.RUNNING)
+    choice = models.JSONField(default=dict)
+    shades_done = models.PositiveIntegerField(default=0)
+    shades_total = models.PositiveIntegerField(default=0)
+    doing = models.CharField(max_length=120, blank=True)
+    stop_wanted = models.BooleanField(default=False)
+    message = models.CharField(max_length=500, blank=True)
+    plan = models.ForeignKey(Plan, on_delete=models.SET_NULL, null=True, related_name="runs")
+
+    class Meta:
+        ordering = ["-pk"]
+
+    def __str__(self) -> str:
+        return f"run {self.pk} of {self.batch}"
 
 
 class PlanKind(models.Model):
@@ -201,6 +231,7 @@ class PlanBracelet(models.Model):
     for_whom = models.CharField(max_length=120, blank=True)
     due_date = models.DateField(null=True)
     note = models.CharField(max_length=500, blank=True)
+    matched_set = models.CharField(max_length=40, blank=True)
 
     objects = PlanBraceletQuerySet.as_manager()
 
@@ -215,14 +246,20 @@ class PlanBracelet(models.Model):
 
 
 class PlanShade(models.Model):
-    """What one shade needs, finds on the shelf and costs."""
+    """What one shade needs, finds on the shelf and costs; `proof` is what is known of the plan."""
+
+    class Status(models.TextChoices):
+        OPTIMAL = "optimal", "proven: nothing cheaper is possible"
+        FEASIBLE = "feasible", "not proven to be the cheapest"
+        STOPPED = "stopped", "not worked out: stopped"
+        FAILED = "failed", "not worked out: an error"
 
     plan = models.ForeignKey(Plan, on_delete=models.CASCADE, related_name="shades")
     shade_id_then = models.BigIntegerField()
     code = models.CharField(max_length=20)
     name = models.CharField(max_length=80)
     colour = models.CharField(max_length=7)
-    status = models.CharField(max_length=8, choices=Plan.Status.choices)
+    status = models.CharField(max_length=8, choices=Status.choices)
     piece_count = models.PositiveIntegerField()
     need_mm = models.PositiveBigIntegerField()
     shelf_mm = models.PositiveBigIntegerField()
@@ -234,6 +271,7 @@ class PlanShade(models.Model):
     lower_bound = models.DecimalField(max_digits=12, decimal_places=2)
     shelf = models.JSONField(default=list)
     unplaced = models.JSONField(default=list)
+    proof = models.JSONField(default=dict)
 
     class Meta:
         ordering = ["code"]
@@ -254,6 +292,7 @@ class PlanPurchase(models.Model):
     length_mm = models.PositiveIntegerField()
     reckoned_mm = models.PositiveIntegerField()
     unit_price = models.DecimalField(max_digits=9, decimal_places=2)
+    pack_size = models.PositiveSmallIntegerField(default=1)
     count = models.PositiveIntegerField()
     cost = models.DecimalField(max_digits=12, decimal_places=2)
 

@@ -2,8 +2,11 @@
 
 from dataclasses import dataclass
 from decimal import Decimal
+from typing import Literal
 
-from planner.cutting.problem import MAXIMUM_LENGTH_MM, Status, check_price, check_whole
+from planner.cutting.problem import MAXIMUM_LENGTH_MM, Status, check_packs, check_price, check_whole
+
+LotStatus = Status | Literal["stopped", "failed"]
 
 
 @dataclass(frozen=True)
@@ -70,21 +73,31 @@ class Offer:
     key
         The caller's name for it.
     supplier
-        Who sells it; all new thread of a plan comes from one supplier.
+        Who sells it; the new thread of each supplier is a lot of its own.
     length_mm
         What is trusted to be on one [mm].
     price
-        What one costs.
+        What a pack costs.
+    pack_size
+        How many come in a pack.
+    minimum_packs
+        The fewest packs taken, where any are.
+    pack_step
+        Packs are taken in multiples of it.
     """
 
     key: str
     supplier: str
     length_mm: int
     price: Decimal
+    pack_size: int = 1
+    minimum_packs: int = 1
+    pack_step: int = 1
 
     def __post_init__(self) -> None:
         check_whole(self.length_mm, "length_mm of a put-up", 0, MAXIMUM_LENGTH_MM)
         check_price(self.price)
+        check_packs(self.pack_size, self.minimum_packs, self.pack_step)
 
 
 @dataclass(frozen=True)
@@ -117,7 +130,7 @@ class Opened:
     offer_key
         The offer it is bought by, or None when it is from the shelf.
     lot_key
-        Its lot, or None when it is new: all new thread is one lot.
+        Its lot, or None when it is new: the new thread of a supplier is one lot.
     length_mm
         Its length [mm].
     pieces
@@ -141,11 +154,13 @@ class LotResult:
     Parameters
     ----------
     status
-        ``"optimal"`` when `cost` equals `lower_bound` and nothing that might fit is unplaced.
+        ``"optimal"`` when `cost` equals `lower_bound` and nothing that might fit is unplaced;
+        ``"stopped"`` or ``"failed"`` when no plan was made and every group is unplaced.
     cost
         What the new thread costs.
     bought
-        Offer keys with how many of each to buy.
+        Offer keys with how many of each to buy: single put-ups, also where they come in packs;
+        those that are not opened are spare.
     lower_bound
         No plan that keeps the lots costs less.
     bought_lower_bound
@@ -156,9 +171,18 @@ class LotResult:
         Keys of groups that found no place: nothing is sold that holds their longest piece.
     seconds
         How long it took [s].
+    cost_without_lots, bought_without_lots
+        What the plan found would cost, and how many it buys, were all thread one lot; at most
+        `cost`.
+    lower_bound_without_lots
+        No plan costs less, whatever the lots.
+    waste_mm
+        What is left of opened pieces and shorter than the keep length [mm].
+    message
+        Why there is no plan, where there is none.
     """
 
-    status: Status
+    status: LotStatus
     cost: Decimal
     bought: tuple[tuple[str, int], ...]
     lower_bound: Decimal
@@ -166,3 +190,8 @@ class LotResult:
     opened: tuple[Opened, ...]
     unplaced: tuple[str, ...]
     seconds: float
+    cost_without_lots: Decimal = Decimal(0)
+    bought_without_lots: int = 0
+    lower_bound_without_lots: Decimal = Decimal(0)
+    waste_mm: int = 0
+    message: str = ""

@@ -7,6 +7,7 @@ from typing import Literal
 MAXIMUM_LENGTH_MM = 100_000_000
 MAXIMUM_PIECES = 200_000
 MAXIMUM_PUT_UPS = 100
+MAXIMUM_PACKS = 1_000
 MAXIMUM_PRICE = Decimal(1_000_000)
 MAXIMUM_PRICE_PLACES = 4
 
@@ -78,6 +79,28 @@ class StockPiece:
     def __post_init__(self) -> None:
         check_whole(self.length_mm, "length_mm of a stock piece", 1, MAXIMUM_LENGTH_MM)
         check_whole(self.count, "count of a stock piece", 0, MAXIMUM_PIECES)
+
+
+def check_packs(pack_size: object, minimum_packs: object, pack_step: object) -> None:
+    """Refuse packs that nobody sells.
+
+    Parameters
+    ----------
+    pack_size
+        How many put-ups come in a pack.
+    minimum_packs
+        The fewest packs taken, where any are.
+    pack_step
+        Packs are taken in multiples of it.
+
+    Raises
+    ------
+    CuttingError
+        When one of them is not a whole number from 1 to 1,000.
+    """
+    check_whole(pack_size, "pack_size of a put-up", 1, MAXIMUM_PACKS)
+    check_whole(minimum_packs, "minimum_packs of a put-up", 1, MAXIMUM_PACKS)
+    check_whole(pack_step, "pack_step of a put-up", 1, MAXIMUM_PACKS)
 
 
 @dataclass(frozen=True)

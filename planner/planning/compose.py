@@ -12,6 +12,7 @@ from planner.planning.demand import Bracelet, ExplodedKind, ShadeName
 from planner.planning.netting import NettedShade, ShelfThread, ThreadOffer, pieces_by_shade
 from planner.planning.snapshot import (
     Habits,
+    ShadeProof,
     Snapshot,
     SnapshotBracelet,
     SnapshotCut,
@@ -164,6 +165,14 @@ def _shade(
         ),
         stock=tuple(stock),
         unplaced=tuple(sorted(int(key) for key in result.unplaced)),
+        proof=ShadeProof(
+            seconds=round(result.seconds, 3),
+            cost_without_lots=result.cost_without_lots,
+            bought_without_lots=result.bought_without_lots,
+            lower_bound_without_lots=result.lower_bound_without_lots,
+            waste_mm=result.waste_mm,
+            message=result.message,
+        ),
     )
 
 

@@ -1,6 +1,7 @@
 """A plan as plain data: what is stored, shown and printed, with no link to what it came from."""
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
 from datetime import date
 from decimal import Decimal
 from typing import Any
@@ -82,6 +83,7 @@ class SnapshotBracelet:
     due_date: date | None
     note: str
     key: int | None = None
+    matched_set: str = ""
 
 
 @dataclass(frozen=True)
@@ -121,7 +123,7 @@ class SnapshotThread:
 
 @dataclass(frozen=True)
 class SnapshotPurchase:
-    """So many of one put-up."""
+    """So many single put-ups of one kind; `unit_price` is that of a pack."""
 
     supplier_name: str
     put_up_name: str
@@ -130,6 +132,23 @@ class SnapshotPurchase:
     unit_price: Decimal
     count: int
     cost: Decimal
+    pack_size: int = 1
+
+
+@dataclass(frozen=True)
+class ShadeProof:
+    """How sure the plan of a shade is, and what keeping dye lots apart costs.
+
+    The figures without lots are those of a plan that throws all thread together; None where the
+    plan was made by a release that did not know them. `message` says why there is no plan.
+    """
+
+    seconds: float = 0.0
+    cost_without_lots: Decimal | None = None
+    bought_without_lots: int | None = None
+    lower_bound_without_lots: Decimal | None = None
+    waste_mm: int | None = None
+    message: str = ""
 
 
 @dataclass(frozen=True)
@@ -154,6 +173,7 @@ class SnapshotShade:
     shelf: tuple[SnapshotThread, ...]
     stock: tuple[SnapshotStock, ...]
     unplaced: tuple[int, ...]
+    proof: ShadeProof = ShadeProof()
 
 
 @dataclass(frozen=True)
@@ -171,6 +191,7 @@ class Snapshot:
     problems: tuple[str, ...]
     shelf_stamp: str
     orders_stamp: str
+    choice: Mapping[str, Any] = field(default_factory=dict)
 
     @property
     def cost(self) -> Decimal:

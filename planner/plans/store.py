@@ -18,6 +18,7 @@ from planner.models import (
 )
 from planner.planning.snapshot import (
     Habits,
+    ShadeProof,
     Snapshot,
     SnapshotBracelet,
     SnapshotCut,
@@ -50,6 +51,7 @@ def store_snapshot(snapshot: Snapshot, *, batch: Batch, user: Any) -> Plan:
         problems=list(snapshot.problems),
         shelf_stamp=snapshot.shelf_stamp,
         orders_stamp=snapshot.orders_stamp,
+        choice=dict(snapshot.choice),
     )
     kinds = PlanKind.objects.bulk_create(_kind_row(plan, kind) for kind in snapshot.kinds)
     bracelets = PlanBracelet.objects.bulk_create(
@@ -61,6 +63,7 @@ def store_snapshot(snapshot: Snapshot, *, batch: Batch, user: Any) -> Plan:
                 for_whom=bracelet.for_whom,
                 due_date=bracelet.due_date,
                 note=bracelet.note,
+                matched_set=bracelet.matched_set,
             )
             for bracelet in snapshot.bracelets
         ),
@@ -119,7 +122,24 @@ def _shade_row(plan: Plan, shade: SnapshotShade) -> PlanShade:
         lower_bound=shade.lower_bound,
         shelf=[asdict(thread) for thread in shade.shelf],
         unplaced=list(shade.unplaced),
+        proof=_proof_as_json(shade.proof),
     )
+
+
+def _proof_as_json(proof: ShadeProof) -> dict[str, Any]:
+    return {
+        name: str(value) if isinstance(value, Decimal) else value
+        for name, value in asdict(proof).items()
+    }
+
+
+def read_proof(stored: dict[str, Any]) -> ShadeProof:
+    """Plans of earlier releases know nothing of it."""
+    values = dict(stored)
+    for name in ("cost_without_lots", "lower_bound_without_lots"):
+        if values.get(name) is not None:
+            values[name] = Decimal(values[name])
+    return ShadeProof(**values)
 
 
 def _store_cuts(
@@ -203,6 +223,7 @@ def read_snapshot(plan: Plan) -> Snapshot:
                 due_date=row.due_date,
                 note=row.note,
                 key=row.pk,
+                matched_set=row.matched_set,
             )
             for row in bracelets
         ),
@@ -210,6 +231,7 @@ def read_snapshot(plan: Plan) -> Snapshot:
         problems=tuple(plan.problems),
         shelf_stamp=plan.shelf_stamp,
         orders_stamp=plan.orders_stamp,
+        choice=plan.choice,
     )
 
 
@@ -300,6 +322,7 @@ def _read_shade(row: PlanShade, cuts: dict[int, list[SnapshotCut]]) -> SnapshotS
                 unit_price=item.unit_price,
                 count=item.count,
                 cost=item.cost,
+                pack_size=item.pack_size,
             )
             for item in row.purchases.all()
         ),
@@ -319,4 +342,5 @@ def _read_shade(row: PlanShade, cuts: dict[int, list[SnapshotCut]]) -> SnapshotS
             for item in row.stock.all()
         ),
         unplaced=tuple(row.unplaced),
+        proof=read_proof(row.proof),
     )
