@@ -1,13 +1,22 @@
 """Net what is needed against the shelf, shade by shade and as pieces, and cut the rest new."""
 
+import logging
+import time
 from collections import defaultdict
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from decimal import Decimal
+from typing import Literal
 
-from planner.cutting import Group, Lot, LotResult, LotStock, Offer, solve_with_lots
+from planner.cutting import CuttingError, Group, Lot, LotResult, LotStock, Offer, solve_with_lots
 from planner.cutting.bounds import usable_lengths
 from planner.planning.demand import Bracelet, ExplodedKind
+from planner.planning.watching import Unwatched, Watcher
+
+logger = logging.getLogger(__name__)
+
+STOPPED = "It was stopped before this shade was worked out."
+FAILED = "An error in the program kept this shade from being worked out; the log says which."
 
 
 @dataclass(frozen=True)
@@ -64,6 +73,7 @@ def net(
     *,
     time_limit_s: float = 10.0,
     seed: int = 0,
+    watcher: Watcher | None = None,
 ) -> tuple[NettedShade, ...]:
     """Meet the need of every shade from the shelf first, then from new thread.
 
@@ -74,20 +84,29 @@ def net(
     offers : put-ups that can be bought.
     time_limit_s : for one shade [s].
     seed : for the solver.
+    watcher : hears which shade is begun, and may ask to stop.
 
     Returns
     -------
     One entry a shade needed, by first use. All pieces of one shade in one bracelet come
-    from one dye lot.
+    from one dye lot. A shade on which the solver raises is "failed" and one that a stop came
+    before is "stopped": both without a plan, and the other shades as if they were alone.
     """
+    watcher = watcher or Unwatched()
     groups = groups_by_shade(kinds, bracelets)
     shelf_by_shade: dict[int, list[ShelfThread]] = defaultdict(list)
     for thread in shelf:
         shelf_by_shade[thread.shade].append(thread)
-    return tuple(
-        _net_shade(shade, wanted, shelf_by_shade[shade], offers, time_limit_s, seed)
-        for shade, wanted in groups.items()
-    )
+    netted = []
+    for position, (shade, wanted) in enumerate(groups.items(), start=1):
+        thread = shelf_by_shade[shade]
+        if watcher.stop_wanted():
+            netted.append(_netted(shade, wanted, thread, _without_plan("stopped", wanted, STOPPED)))
+            continue
+        watcher.shade_begins(position, len(groups), shade)
+        result = _solved(shade, wanted, thread, offers, time_limit_s, seed)
+        netted.append(_netted(shade, wanted, thread, result))
+    return tuple(netted)
 
 
 def pieces_by_shade(kind: ExplodedKind) -> Mapping[int, tuple[int, ...]]:
@@ -117,25 +136,58 @@ def groups_by_shade(
     return groups
 
 
-def _net_shade(
+def _solved(
     shade: int,
     groups: list[Group],
     shelf: list[ShelfThread],
     offers: tuple[ThreadOffer, ...],
     time_limit_s: float,
     seed: int,
-) -> NettedShade:
-    result = solve_with_lots(
-        tuple(groups),
-        _lots(shelf),
-        tuple(
-            Offer(str(offer.key), offer.supplier_name, offer.reckoned_mm, offer.price)
-            for offer in offers
-            if offer.serves(shade)
-        ),
-        time_limit_s=time_limit_s,
-        seed=seed,
+) -> LotResult:
+    """Work out one shade; whatever goes wrong in it is told in its result."""
+    started = time.monotonic()
+    try:
+        return solve_with_lots(
+            tuple(groups),
+            _lots(shelf),
+            tuple(
+                Offer(str(offer.key), offer.supplier_name, offer.reckoned_mm, offer.price)
+                for offer in offers
+                if offer.serves(shade)
+            ),
+            time_limit_s=time_limit_s,
+            seed=seed,
+        )
+    except CuttingError as reason:
+        message = str(reason)
+    except Exception:
+        logger.exception("Shade %s could not be worked out.", shade)
+        message = FAILED
+    return _without_plan("failed", groups, message, time.monotonic() - started)
+
+
+def _without_plan(
+    status: Literal["stopped", "failed"],
+    groups: list[Group],
+    message: str,
+    seconds: float = 0.0,
+) -> LotResult:
+    return LotResult(
+        status=status,
+        cost=Decimal(0),
+        bought=(),
+        lower_bound=Decimal(0),
+        bought_lower_bound=0,
+        opened=(),
+        unplaced=tuple(group.key for group in groups),
+        seconds=seconds,
+        message=message,
     )
+
+
+def _netted(
+    shade: int, groups: list[Group], shelf: list[ShelfThread], result: LotResult
+) -> NettedShade:
     need_mm = sum(sum(group.pieces_mm) for group in groups)
     shelf_mm = sum(thread.reckoned_mm for thread in shelf)
     cut_mm = sum(piece.length_mm for opened in result.opened for piece in opened.pieces)
