@@ -99,13 +99,13 @@ def net(
         shelf_by_shade[thread.shade].append(thread)
     netted = []
     for position, (shade, wanted) in enumerate(groups.items(), start=1):
-        thread = shelf_by_shade[shade]
+        own = shelf_by_shade[shade]
         if watcher.stop_wanted():
-            netted.append(_netted(shade, wanted, thread, _without_plan("stopped", wanted, STOPPED)))
+            netted.append(_netted(shade, wanted, own, _without_plan("stopped", wanted, STOPPED)))
             continue
         watcher.shade_begins(position, len(groups), shade)
-        result = _solved(shade, wanted, thread, offers, time_limit_s, seed)
-        netted.append(_netted(shade, wanted, thread, result))
+        result = _solved(shade, wanted, own, offers, time_limit_s, seed)
+        netted.append(_netted(shade, wanted, own, result))
     return tuple(netted)
 
 

@@ -75,9 +75,12 @@ def test_net_keeps_the_other_shades_where_one_fails(
     failed = netted[nth - 1]
     assert failed.result.status == "failed"
     assert failed.result.unplaced == ("1", "2", "3", "4", "5")
-    assert failed.result.opened == () and failed.result.bought == () and not failed.result.cost
+    assert failed.result.opened == ()
+    assert failed.result.bought == ()
+    assert not failed.result.cost
     assert failed.left_mm == failed.shelf_mm == 7_000
-    assert failed.piece_count == 10 and failed.need_mm > 0
+    assert failed.piece_count == 10
+    assert failed.need_mm > 0
     assert [p for n, p in enumerate(plans(netted), 1) if n != nth] == [
         p for n, p in enumerate(whole, 1) if n != nth
     ]
@@ -91,7 +94,8 @@ def test_net_says_plainly_why_and_logs_the_rest(
         message = net_three()[1].result.message
     assert "no such column" not in message
     assert "error" in message
-    assert "no such column" in caplog.text and "Traceback" in caplog.text
+    assert "no such column" in caplog.text
+    assert "Traceback" in caplog.text
 
 
 def test_net_passes_on_what_the_solver_refuses_in_words(
