@@ -282,6 +282,11 @@ class PlanShade(models.Model):
     def __str__(self) -> str:
         return f"{self.code} {self.name}"
 
+    @property
+    def solving_seconds(self) -> float:
+        """Plans of earlier releases do not know it."""
+        return float(self.proof.get("seconds", 0))
+
 
 class PlanPurchase(models.Model):
     """So many skeins of one put-up to buy for one shade."""

@@ -175,6 +175,11 @@ class SnapshotShade:
     unplaced: tuple[int, ...]
     proof: ShadeProof = ShadeProof()
 
+    @property
+    def solving_seconds(self) -> float:
+        """How long it was worked on [s]."""
+        return self.proof.seconds
+
 
 @dataclass(frozen=True)
 class Snapshot:

@@ -4,9 +4,17 @@ from collections.abc import Iterable
 from decimal import Decimal
 from typing import Protocol
 
+WITHOUT_PLAN = {"stopped": "stopped before it was its turn", "failed": "an error came up"}
+
 
 class ShadeResult(Protocol):
     """What a sentence needs to know of one shade, saved or not."""
+
+    @property
+    def status(self) -> str: ...
+
+    @property
+    def solving_seconds(self) -> float: ...
 
     @property
     def bought(self) -> int: ...
@@ -40,8 +48,15 @@ def bought_words(count: int, put_up_names: Iterable[str]) -> str:
     return f"1 {word}" if count == 1 else f"{count} {word}s"
 
 
+def is_worked_out(shade: ShadeResult) -> bool:
+    """Tell whether there is a plan for the shade at all, good or not."""
+    return shade.status not in WITHOUT_PLAN
+
+
 def proof_of_shade(shade: ShadeResult) -> str:
     """Say what is proven of the purchase of one shade."""
+    if not is_worked_out(shade):
+        return f"not worked out: {WITHOUT_PLAN[shade.status]}"
     if shade.unplaced:
         return "not enough thread, and nothing to buy that would do"
     if shade.bought == 0:
@@ -49,20 +64,30 @@ def proof_of_shade(shade: ShadeResult) -> str:
     fewest = shade.bought == shade.bought_lower_bound
     if shade.cost > shade.lower_bound:
         return (
-            "fewer is impossible, but cheaper might be found"
+            f"fewer is impossible, but cheaper might be found; {_not_settled(shade)}"
             if fewest
-            else f"at least {shade.bought_lower_bound}; not proven to be the fewest"
+            else f"at least {shade.bought_lower_bound}; {_not_settled(shade)}"
         )
     if not fewest:
         return "cheaper is impossible"
     if shade.bought == 1:
         return "the shelf alone is not enough"
-    return f"fewer than {shade.bought} is impossible"
+    return "fewer is impossible"
+
+
+def _not_settled(shade: ShadeResult) -> str:
+    """Plans of the first release do not know how long they took."""
+    if not shade.solving_seconds:
+        return "not settled"
+    return f"not settled in {max(1, round(shade.solving_seconds))} s"
 
 
 def proof_of_plan(plan: PlanResult, shades: Iterable[ShadeResult]) -> str:
     """Say what is proven of the whole purchase."""
     results = list(shades)
+    missing = sum(not is_worked_out(shade) for shade in results)
+    if missing:
+        return f"This is not the whole purchase: {not_worked_out(missing, len(results))}"
     if any(shade.unplaced for shade in results):
         return "Some bracelets have no thread yet: see below."
     if not any(shade.bought for shade in results):
@@ -70,3 +95,10 @@ def proof_of_plan(plan: PlanResult, shades: Iterable[ShadeResult]) -> str:
     if plan.cost == plan.lower_bound:
         return "Cheaper is impossible."
     return "Not proven to be the cheapest."
+
+
+def not_worked_out(missing: int, total: int) -> str:
+    """Say how many shades have no plan."""
+    if missing == total:
+        return "no shade was worked out." if total > 1 else "its one shade was not worked out."
+    return f"{missing} of {total} shades {'was' if missing == 1 else 'were'} not worked out."

@@ -15,6 +15,8 @@ class Shade:
     cost: Decimal
     lower_bound: Decimal
     unplaced: tuple[int, ...] = ()
+    status: str = "optimal"
+    solving_seconds: float = 0.0
 
 
 @pytest.mark.parametrize(
@@ -22,10 +24,10 @@ class Shade:
     [
         (0, 0, "0", "0", "the shelf has enough"),
         (1, 1, "1", "1", "the shelf alone is not enough"),
-        (3, 3, "3", "3", "fewer than 3 is impossible"),
+        (3, 3, "3", "3", "fewer is impossible"),
         (3, 2, "3", "3", "cheaper is impossible"),
-        (3, 3, "4", "3", "fewer is impossible, but cheaper might be found"),
-        (3, 2, "3", "2", "at least 2; not proven to be the fewest"),
+        (3, 3, "4", "3", "fewer is impossible, but cheaper might be found; not settled"),
+        (3, 2, "3", "2", "at least 2; not settled"),
     ],
 )
 def test_proof_of_shade_says_what_the_bound_proves(
@@ -37,6 +39,31 @@ def test_proof_of_shade_says_what_the_bound_proves(
 def test_proof_of_shade_without_thread_says_so() -> None:
     shade = Shade(0, 0, Decimal(0), Decimal(0), unplaced=(4,))
     assert "not enough thread" in proof_of_shade(shade)
+
+
+@pytest.mark.parametrize(
+    ("seconds", "words"), [(10.02, "in 10 s"), (2.6, "in 3 s"), (0.04, "in 1 s")]
+)
+def test_proof_of_shade_says_how_long_it_was_tried(seconds: float, words: str) -> None:
+    """Rounded to whole seconds, and never "in 0 s"."""
+    shade = Shade(8, 7, Decimal(8), Decimal(7), status="feasible", solving_seconds=seconds)
+    assert proof_of_shade(shade) == f"at least 7; not settled {words}"
+
+
+@pytest.mark.parametrize("status", ["stopped", "failed"])
+def test_proof_of_shade_without_a_plan_claims_nothing(status: str) -> None:
+    shade = Shade(0, 0, Decimal(0), Decimal(0), unplaced=(1, 2), status=status)
+    assert proof_of_shade(shade).startswith("not worked out")
+
+
+def test_proof_of_plan_with_shades_missing_is_not_whole() -> None:
+    done = Shade(3, 3, Decimal(3), Decimal(3))
+    missing = Shade(0, 0, Decimal(0), Decimal(0), unplaced=(1,), status="stopped")
+    assert proof_of_plan(done, [done, missing]) == (
+        "This is not the whole purchase: 1 of 2 shades was not worked out."
+    )
+    assert "2 of 3 shades were not" in proof_of_plan(done, [done, missing, missing])
+    assert "no shade was worked out" in proof_of_plan(missing, [missing, missing])
 
 
 def test_proof_of_plan_claims_nothing_above_the_bound() -> None:
