@@ -219,7 +219,9 @@ class PlanKind(models.Model):
 
 class PlanBraceletQuerySet(QuerySet["PlanBracelet"]):
     def for_bracelet_page(self) -> "PlanBraceletQuerySet":
-        return self.select_related("plan__batch", "kind").prefetch_related("pieces__stock__shade")
+        return self.select_related("plan__batch", "kind").prefetch_related(
+            "pieces__stock", "pieces__shade"
+        )
 
 
 class PlanBracelet(models.Model):

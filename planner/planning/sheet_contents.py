@@ -15,9 +15,10 @@ from planner.planning.snapshot import (
     SnapshotShade,
     SnapshotStock,
 )
-from planner.planning.wording import proof_of_shade
+from planner.planning.wording import is_worked_out, proof_of_shade
 from planner.sheets.contents import (
     CuttingSheet,
+    MissingShade,
     PurchaseRow,
     PurchaseSheet,
     ShadeCuts,
@@ -32,6 +33,7 @@ from planner.sheets.contents import (
 
 ROWS_DRAWN_ON_A_TAG = 40
 MOST_TAGS_NAMED = 20
+MOST_SHADES_NAMED = 12
 MOST_TAG_LINES = 64  # a diagonal pattern has at most 60 strands, and a sliding piece
 
 
@@ -75,20 +77,38 @@ def purchase_sheet(snapshot: Snapshot) -> PurchaseSheet:
         ),
         cost=snapshot.cost,
         notices=left_out(snapshot),
+        missing=tuple(
+            MissingShade(shade.code, shade.name, proof_of_shade(shade))
+            for shade in snapshot.shades
+            if not is_worked_out(shade)
+        ),
     )
 
 
 def left_out(snapshot: Snapshot) -> tuple[str, ...]:
-    """Say what the sheet lacks: lines that could not be planned, tags without thread."""
+    """Say what the sheet lacks: lines and shades without a plan, tags without thread."""
+    missing = [shade for shade in snapshot.shades if not is_worked_out(shade)]
+    without_plan = (
+        f"{shade.code} {shade.name} was {proof_of_shade(shade)}. It has no cuts, and what to buy "
+        "of it is not known: make the plan again."
+        for shade in missing[:MOST_SHADES_NAMED]
+    )
+    more = len(missing) - MOST_SHADES_NAMED
+    and_more = [f"And {more} more shades were not worked out."] if more > 0 else []
     without_thread = (
         f"No thread of {shade.code} {shade.name} for "
         + ("tag " if len(shade.unplaced) == 1 else "tags ")
         + ", ".join(str(number) for number in shade.unplaced[:MOST_TAGS_NAMED])
         + (" and more." if len(shade.unplaced) > MOST_TAGS_NAMED else ".")
         for shade in snapshot.shades
-        if shade.unplaced
+        if shade.unplaced and is_worked_out(shade)
     )
-    return (*(f"Not in this plan: {problem}" for problem in snapshot.problems), *without_thread)
+    return (
+        *without_plan,
+        *and_more,
+        *(f"Not in this plan: {problem}" for problem in snapshot.problems),
+        *without_thread,
+    )
 
 
 def cutting_sheet(snapshot: Snapshot) -> CuttingSheet:

@@ -15,7 +15,12 @@ from patterns.pictures import band_picture
 from patterns.working import knotted_working
 from planner.models import Plan, PlanBracelet, PlanKind, PlanShade, PlanStock
 from planner.planning.snapshot import SnapshotPiece
-from planner.planning.wording import bought_words, proof_of_plan, proof_of_shade
+from planner.planning.wording import (
+    bought_words,
+    is_worked_out,
+    proof_of_plan,
+    proof_of_shade,
+)
 from planner.plans.bars import stock_bar
 from planner.plans.load import load_orders, load_shelf, orders_stamp
 from planner.plans.store import read_habits, read_kind
@@ -39,9 +44,15 @@ def plan_page(plan: Plan) -> dict[str, Any]:
     return {
         **plan_context(plan),
         "shades": [
-            {"row": shade, "proof": proof_of_shade(shade), "buys": list(shade.purchases.all())}
+            {
+                "row": shade,
+                "proof": proof_of_shade(shade),
+                "buys": list(shade.purchases.all()),
+                "is_worked_out": is_worked_out(shade),
+            }
             for shade in shades
         ],
+        "missing_shades": [shade for shade in shades if not is_worked_out(shade)],
         "bought_shades": [shade for shade in shades if shade.bought],
         "bought": sum(shade.bought for shade in shades),
         "bought_words": bought_words(
@@ -53,7 +64,11 @@ def plan_page(plan: Plan) -> dict[str, Any]:
             read_kind(row).added_mm * row.bracelet_count
             for row in plan.kinds.annotate(bracelet_count=Count("bracelets"))
         ),
-        "unplaced": [(shade, too_long_mm(shade)) for shade in shades if shade.unplaced],
+        "unplaced": [
+            (shade, too_long_mm(shade))
+            for shade in shades
+            if shade.unplaced and is_worked_out(shade)
+        ],
         "shelf_changed": shelf_changed,
         "orders_changed": orders_changed,
         "newer_plan": plan.newer(),
@@ -150,6 +165,7 @@ def shade_page(shade: PlanShade) -> dict[str, Any]:
         "shade": shade,
         "scale_mm": scale_mm,
         "proof": proof_of_shade(shade),
+        "is_worked_out": is_worked_out(shade),
         "lengths": _need_by_length(shade),
         "shelf": [{**thread, "opened": thread["number"] in opened} for thread in shade.shelf],
         "purchases": shade.purchases.all(),
@@ -208,6 +224,7 @@ def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:
             "piece": kind.pieces[row.index],
             "shade": row.shade,
             "stock": row.stock,
+            "is_worked_out": is_worked_out(row.shade),
             "workings": [workings[number] for number in kind.pieces[row.index].strands],
             "ends_mm": making["ends_mm"][row.index],
             "needed_mm": kind.pieces[row.index].cut_mm - kind.pieces[row.index].added_mm,

@@ -43,14 +43,27 @@ class SupplierOrder:
 
 
 @dataclass(frozen=True)
+class MissingShade:
+    """A shade that the plan has no purchase for, and why."""
+
+    shade_code: str
+    shade_name: str
+    why: str
+
+
+@dataclass(frozen=True)
 class PurchaseSheet:
-    """What to buy, by supplier; `notices` says what the plan could not provide for."""
+    """What to buy, by supplier; `notices` says what the plan could not provide for.
+
+    With `missing` shades it is not the whole purchase, and says so.
+    """
 
     head: SheetHead
     currency: str
     suppliers: tuple[SupplierOrder, ...]
     cost: Decimal
     notices: tuple[str, ...] = ()
+    missing: tuple[MissingShade, ...] = ()
 
 
 @dataclass(frozen=True)

@@ -74,7 +74,8 @@ def purchase_xlsx(sheet: PurchaseSheet) -> bytes:
     page = workbook.active
     page.title = "To buy"
     count = sum(row.count for order in sheet.suppliers for row in order.rows)
-    sums: list[Cell] = ["All suppliers", "", "", "", "", count, "", sheet.cost, ""]
+    whole = "So far, without the shades not worked out" if sheet.missing else "All suppliers"
+    sums: list[Cell] = [whole, "", "", "", "", count, "", sheet.cost, ""]
     rows: list[list[Cell]] = [[*_header(sheet)], *_rows(sheet), sums]
     for row_number, cells in enumerate(rows, start=1):
         for column, value in enumerate(cells, start=1):
@@ -123,6 +124,9 @@ def _rows(sheet: PurchaseSheet) -> Iterator[list[Cell]]:
                 row.cost,
                 _writable(row.proof),
             ]
+    for shade in sheet.missing:
+        named = [_writable(shade.shade_code), _writable(shade.shade_name)]
+        yield ["", *named, "", "", "", "", "", _writable(shade.why)]
 
 
 def _writable(text: str) -> str:

@@ -63,8 +63,16 @@ def build_purchase_sheet(sheet: PurchaseSheet, paper: Paper | str) -> bytes:
 
 def _answer(sheet: PurchaseSheet) -> str:
     bought = sum(row.count for order in sheet.suppliers for row in order.rows)
+    if sheet.missing:
+        missing = counted(len(sheet.missing), "shade")
+        so_far = _bought(sheet, bought) if bought else "nothing to buy."
+        return f"Not the whole purchase: {missing} without a plan. So far {so_far}"
     if not bought:
         return "Nothing to buy: the thread on your shelf is enough."
+    return _bought(sheet, bought)
+
+
+def _bought(sheet: PurchaseSheet, bought: int) -> str:
     suppliers = sum(1 for order in sheet.suppliers if order.rows)
     names = [row.put_up for order in sheet.suppliers for row in order.rows]
     word = "skein" if all("skein" in name.casefold() for name in names) else "put-up"

@@ -12,6 +12,7 @@ from hypothesis import strategies as st
 from openpyxl import load_workbook
 from sheet_factories import HEAD, order, purchase_row, purchase_sheet
 
+from planner.sheets.contents import MissingShade
 from planner.sheets.lists import purchase_csv, purchase_xlsx
 
 # OWASP ASVS 1.2.10 / CWE-1236: what a spreadsheet may take for a formula.
@@ -110,3 +111,15 @@ def test_lists_are_equal_bytes_for_equal_sheets():
 def test_lists_of_nothing_have_their_heads():
     assert len(read_csv(purchase_csv(purchase_sheet()))) == 1
     assert workbook_of(purchase_sheet())["A1"].value == "Supplier"
+
+
+def test_lists_name_the_shades_that_were_not_worked_out():
+    """A list that lacks shades must not look like the whole purchase."""
+    missing = MissingShade("T09", "Net green", "not worked out: stopped before it was its turn")
+    sheet = replace(sheet_with(), missing=(missing,))
+    last = read_csv(purchase_csv(sheet))[-1]
+    assert last == ["", "T09", "Net green", "", "", "", "", "", missing.why]
+    page = load_workbook(BytesIO(purchase_xlsx(sheet))).active
+    *_, row, sums = page.iter_rows(values_only=True)
+    assert row == (None, "T09", "Net green", *[None] * 5, missing.why)
+    assert sums[0] == "So far, without the shades not worked out"

@@ -7,6 +7,7 @@ import pytest
 from sheet_factories import HEAD, SHADES, order, purchase_row, purchase_sheet
 from sheet_reading import all_text, overlapping, page_count, page_texts, runs
 
+from planner.sheets.contents import MissingShade
 from planner.sheets.paper import PAPERS
 from planner.sheets.purchase import build_purchase_sheet
 
@@ -52,6 +53,18 @@ def test_nothing_to_buy_is_said_plainly():
         text = all_text(build_purchase_sheet(sheet, A4))
         assert "Nothing to buy: the thread on your shelf is enough." in text
         assert "Quay Threads" not in text
+
+
+def test_sheet_that_lacks_shades_does_not_look_whole():
+    missing = (MissingShade("T09", "Net green", "not worked out"),)
+    for sheet, so_far in (
+        (two_suppliers(), "So far 9 put-ups from 2 suppliers"),
+        (purchase_sheet(), "So far nothing to buy."),
+    ):
+        text = all_text(build_purchase_sheet(replace(sheet, missing=missing), A4))
+        assert "Not the whole purchase: 1 shade without a plan." in text
+        assert so_far in text
+        assert "is enough" not in text
 
 
 def test_batch_without_a_date_gives_its_name():
