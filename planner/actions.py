@@ -14,6 +14,7 @@ from planner.models import Batch, OrderDraft, OrderLine, Plan
 from planner.order_list.results import GoodLine
 from planner.orders.drafts import corrected
 from planner.planning.snapshot import Snapshot
+from planner.planning.watching import Watcher
 from planner.plans.store import store_snapshot
 from planner.plans.work_out import PlanError, work_out_plan
 
@@ -149,22 +150,28 @@ def confirm_draft(
 
 def make_plan(*, batch: Batch, user: Any) -> Plan:
     """Work out a plan outside any transaction, then store it in one."""
+    return store_plan(snapshot=work_out_batch(batch=batch), batch=batch, user=user)
+
+
+def work_out_batch(*, batch: Batch, watcher: Watcher | None = None) -> Snapshot:
+    """The plan of a batch as it stands, not yet saved; its number is given when it is."""
     workshop = Workshop.current()
     if workshop is None:
         raise PlanError("Start a workshop first.")
-    snapshot = work_out_plan(
+    return work_out_plan(
         lines=list(batch.lines.for_grid()),
         workshop=workshop,
         batch_name=batch.name,
         market_date=batch.market_date,
         plan_number=1,
         today=timezone.localdate(),
+        watcher=watcher,
     )
-    return _store_numbered(snapshot, batch, user)
 
 
 @transaction.atomic
-def _store_numbered(snapshot: Snapshot, batch: Batch, user: Any) -> Plan:
+def store_plan(*, snapshot: Snapshot, batch: Batch, user: Any) -> Plan:
+    """Save a plan under the next number of its batch: every row of it, or none."""
     Batch.objects.select_for_update().get(pk=batch.pk)
     last = batch.plans.aggregate(last=Max("number"))["last"] or 0
     plan = store_snapshot(replace(snapshot, plan_number=last + 1), batch=batch, user=user)

@@ -1,11 +1,12 @@
 """Batches of orders, and plans: what a batch needs, frozen at one moment."""
 
-from datetime import date
+from datetime import date, timedelta
 
 from django.conf import settings
 from django.core.validators import MaxValueValidator, MinValueValidator
 from django.db import models
 from django.db.models import Count, Exists, Max, OuterRef, Q, QuerySet, Subquery, Sum
+from django.utils import timezone
 
 from patterns.models import Colourway, Ending, Pattern, Size
 
@@ -165,6 +166,15 @@ class Plan(models.Model):
         return newest if newest and newest.pk != self.pk else None
 
 
+LOST_AFTER = timedelta(minutes=1)
+
+
+class PlanRunQuerySet(QuerySet["PlanRun"]):
+    def under_way(self) -> "PlanRunQuerySet":
+        """Runs that somebody is working on, as far as can be heard."""
+        return self.filter(status=PlanRun.Status.RUNNING, heard_at__gte=timezone.now() - LOST_AFTER)
+
+
 class PlanRun(models.Model):
     """A plan being worked out, perhaps in another process: how far it is, and the wish to stop."""
 
@@ -186,11 +196,23 @@ class PlanRun(models.Model):
     message = models.CharField(max_length=500, blank=True)
     plan = models.ForeignKey(Plan, on_delete=models.SET_NULL, null=True, related_name="runs")
 
+    objects = PlanRunQuerySet.as_manager()
+
     class Meta:
         ordering = ["-pk"]
 
     def __str__(self) -> str:
         return f"run {self.pk} of {self.batch}"
+
+    @property
+    def is_running(self) -> bool:
+        return self.status == self.Status.RUNNING and not self.is_lost
+
+    @property
+    def is_lost(self) -> bool:
+        """Nothing was heard of it for so long that whoever worked on it must be gone."""
+        silence = timezone.now() - self.heard_at
+        return self.status == self.Status.RUNNING and silence > LOST_AFTER
 
 
 class PlanKind(models.Model):

@@ -2,7 +2,7 @@
 
 from django.urls import include, path
 
-from planner.views import batches, cards, home, lists, plans, workshop
+from planner.views import batches, cards, home, lists, plans, runs, workshop
 
 urlpatterns = [
     path("", home.home, name="home"),
@@ -18,7 +18,9 @@ urlpatterns = [
     path("orders/<key:pk>/lists/<key:draft_pk>/", lists.list_check, name="list_check"),
     path("orders/<key:pk>/lists/<key:draft_pk>/add/", lists.list_confirm, name="list_confirm"),
     path("orders/<key:pk>/lists/<key:draft_pk>/discard/", lists.list_discard, name="list_discard"),
-    path("orders/<key:pk>/plan/", plans.plan_new, name="plan_new"),
+    path("orders/<key:pk>/plan/", runs.plan_new, name="plan_new"),
+    path("runs/<key:pk>/", runs.run_detail, name="run_detail"),
+    path("runs/<key:pk>/stop/", runs.run_stop, name="run_stop"),
     path("plans/<key:pk>/", plans.plan_detail, name="plan_detail"),
     path("plans/<key:pk>/shades/<key:shade_pk>/", plans.plan_shade, name="plan_shade"),
     path("plans/<key:pk>/bracelets/", plans.plan_bracelets, name="plan_bracelets"),

@@ -4,12 +4,13 @@ from collections.abc import Sequence
 from datetime import date
 
 from inventory.models import Workshop
-from planner.cutting import CuttingError
 from planner.models import OrderLine
 from planner.planning.compose import compose
 from planner.planning.demand import Bracelet, ExplodedKind, Order, explode
-from planner.planning.netting import net
+from planner.planning.netting import NettedShade, net
 from planner.planning.snapshot import Snapshot
+from planner.planning.watching import Watcher
+from planner.planning.wording import WITHOUT_PLAN
 from planner.plans.load import habits_of, load_orders, load_shelf, orders_stamp
 
 MOST_BRACELETS = 20_000
@@ -31,6 +32,7 @@ def work_out_plan(
     today: date,
     strict: bool = False,
     row_numbers: Sequence[int] = (),
+    watcher: Watcher | None = None,
 ) -> Snapshot:
     """Lines that cannot be planned are named in the snapshot; `strict` refuses them instead."""
     if not lines:
@@ -45,10 +47,8 @@ def work_out_plan(
     _check_pieces(kinds, bracelets)
     shade_ids = {shade for kind in kinds for _, shade in kind.kind.shades}
     shelf = load_shelf(shade_ids, workshop)
-    try:
-        netted = net(kinds, bracelets, shelf.threads, shelf.offers)
-    except CuttingError as reason:
-        raise PlanError(f"These orders cannot be cut in one plan. {reason}") from None
+    netted = net(kinds, bracelets, shelf.threads, shelf.offers, watcher=watcher)
+    _check_worked_out(netted)
     return compose(
         batch_name=batch_name,
         market_date=market_date,
@@ -84,3 +84,13 @@ def _check_pieces(kinds: Sequence[ExplodedKind], bracelets: Sequence[Bracelet]) 
             f"{len(bracelets)} bracelets with {pieces} pieces are more than a plan takes: "
             f"{MOST_PIECES} at most. Split the batch."
         )
+
+
+def _check_worked_out(netted: Sequence[NettedShade]) -> None:
+    """A plan without a single shade is none."""
+    if any(one.result.status not in WITHOUT_PLAN for one in netted):
+        return
+    if any(one.result.status == "failed" for one in netted):
+        first = next(one.result.message for one in netted if one.result.status == "failed")
+        raise PlanError(f"No shade of these orders could be worked out. {first}")
+    raise PlanError("Stopped before the first shade was done: there is nothing to save yet.")

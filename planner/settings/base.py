@@ -138,6 +138,9 @@ DATA_UPLOAD_MAX_NUMBER_FILES = 500
 FILE_UPLOAD_MAX_MEMORY_SIZE = 2_500_000
 LARGEST_REQUEST_BYTES = 12_000_000
 
+# Plans are worked out in threads of the server, so that a page can show how far they are.
+PLANS_IN_THREADS = True
+
 LOGGING: dict[str, Any] = {
     "version": 1,
     "disable_existing_loggers": False,

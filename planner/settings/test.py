@@ -12,3 +12,5 @@ DATABASES = {"default": dict(database_from_url(env.str("DATABASE_URL", "sqlite:/
 PASSWORD_HASHERS = ["django.contrib.auth.hashers.MD5PasswordHasher"]
 WHITENOISE_USE_FINDERS = True
 WHITENOISE_AUTOREFRESH = True
+# A thread has a connection of its own, which cannot see what a test has not committed.
+PLANS_IN_THREADS = False

@@ -147,6 +147,7 @@ def _grid_page(
         "catalogue": load_catalogue(batch),
         "plans": batch.plans.all()[:10],
         "drafts": batch.drafts.all(),
+        "run": batch.runs.under_way().first(),
         "section": "orders",
     }
     return render(request, "planner/batch_detail.html", context, status=422 if refused else 200)

@@ -1,32 +1,18 @@
 """Plans, their shades and bracelets, and the sheets printed from them."""
 
-from django.contrib import messages
 from django.core.paginator import Paginator
 from django.http import Http404, HttpRequest, HttpResponse
-from django.shortcuts import get_object_or_404, redirect, render
+from django.shortcuts import get_object_or_404, render
 from django.utils.text import slugify
-from django.views.decorators.http import require_GET, require_POST
+from django.views.decorators.http import require_GET
 
-from planner.actions import make_plan
-from planner.models import Batch, Plan, PlanBracelet, PlanShade
+from planner.models import Plan, PlanBracelet, PlanShade
 from planner.planning.sheet_files import SHEET_FILES
 from planner.plans.pages import bracelet_page, plan_page, shade_page
 from planner.plans.store import read_snapshot
-from planner.plans.work_out import PlanError
 
 BRACELETS_A_PAGE = 100
 PAPERS = {"a4": "A4", "letter": "Letter"}
-
-
-@require_POST
-def plan_new(request: HttpRequest, pk: int) -> HttpResponse:
-    batch = get_object_or_404(Batch, pk=pk)
-    try:
-        plan = make_plan(batch=batch, user=request.user)
-    except PlanError as reason:
-        messages.error(request, str(reason))
-        return redirect("batch_detail", pk=pk)
-    return redirect("plan_detail", pk=plan.pk)
 
 
 @require_GET
