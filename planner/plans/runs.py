@@ -78,7 +78,7 @@ class RunWatcher:
         return str(shade)[:120] if shade else ""
 
 
-def begin(run: PlanRun, wait_s: float = WAIT_S) -> None:
+def begin(run: PlanRun) -> None:
     """Carry a run out in a thread of its own, and wait for it a little."""
     if not settings.PLANS_IN_THREADS:
         carry_out(run.pk)
@@ -86,7 +86,7 @@ def begin(run: PlanRun, wait_s: float = WAIT_S) -> None:
     # A daemon: closing the workshop must not wait for a plan; the run is then found lost.
     thread = Thread(target=_in_thread, args=[run.pk], name=f"plan run {run.pk}", daemon=True)
     thread.start()
-    thread.join(wait_s)
+    thread.join(WAIT_S)
 
 
 def _in_thread(pk: int) -> None:
