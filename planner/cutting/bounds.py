@@ -24,7 +24,8 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from planner.cutting.knapsack import SUM_CELLS, reachable_sums
-from planner.cutting.purchase import cheapest_purchase
+from planner.cutting.packs import SoldAs
+from planner.cutting.purchase import cheapest_purchase, fewest_put_ups
 
 LARGEST_DIVISOR = 30
 MOST_REFERENCES = 6
@@ -43,7 +44,8 @@ class Bounds:
     bought
         No plan buys fewer put-ups.
     purchase
-        The cheapest put-ups that could hold what the shelf cannot: a target for a plan.
+        The cheapest put-ups (how many single ones of each) that could hold what the shelf cannot:
+        a target for a plan.
     possible
         False when it is proven that no plan exists.
     """
@@ -75,12 +77,7 @@ class Bounds:
         )
 
 
-def length_bounds(
-    demand: dict[int, int],
-    shelf: dict[int, int],
-    sizes: Sequence[int],
-    prices: Sequence[int],
-) -> Bounds:
+def length_bounds(demand: dict[int, int], shelf: dict[int, int], sold: Sequence[SoldAs]) -> Bounds:
     """Bound by total length, counting of each stock piece only what pieces can fill.
 
     Parameters
@@ -89,28 +86,21 @@ def length_bounds(
         Length [cells] to count.
     shelf
         Length of a stock piece [cells] to count.
-    sizes
-        Length of each put-up [cells].
-    prices
-        Price of each put-up [smallest units of money].
+    sold
+        The put-ups.
 
     Returns
     -------
     Bounds
         With W(L) the largest sum of pieces, counted as often as they are wanted, up to L.
     """
-    usable = usable_lengths(demand, [*shelf, *sizes])
+    usable = usable_lengths(demand, [*shelf, *(item.size for item in sold)])
     need = sum(length * count for length, count in demand.items())
     need -= sum(usable[length] * count for length, count in shelf.items())
-    return bounds_for_need(need, [usable[size] for size in sizes], prices)
+    return bounds_for_need(need, [usable[item.size] for item in sold], sold)
 
 
-def rounded_bounds(
-    demand: dict[int, int],
-    shelf: dict[int, int],
-    sizes: Sequence[int],
-    prices: Sequence[int],
-) -> Bounds:
+def rounded_bounds(demand: dict[int, int], shelf: dict[int, int], sold: Sequence[SoldAs]) -> Bounds:
     """Bound by rounded weights, which see that long pieces do not share a stock piece.
 
     Parameters
@@ -119,10 +109,8 @@ def rounded_bounds(
         Length [cells] to count.
     shelf
         Length of a stock piece [cells] to count.
-    sizes
-        Length of each put-up [cells].
-    prices
-        Price of each put-up [smallest units of money].
+    sold
+        The put-ups.
 
     Returns
     -------
@@ -131,7 +119,8 @@ def rounded_bounds(
         longest of the shelf where none is sold). With k = 1 a piece longer than half a put-up
         weighs 1, and only one of these fits.
     """
-    bounds = Bounds(0, 0, (0,) * len(sizes))
+    bounds = Bounds(0, 0, (0,) * len(sold))
+    sizes = [item.size for item in sold]
     capacities = sorted({*shelf, *sizes})
     for size in sorted(set(sizes), reverse=True)[:MOST_REFERENCES] or capacities[-1:]:
         for divisor in range(1, LARGEST_DIVISOR + 1):
@@ -141,7 +130,7 @@ def rounded_bounds(
             holds = _held_weights(weights, capacities)
             need = sum(weights[length] * count for length, count in demand.items())
             need -= sum(holds[length] * count for length, count in shelf.items())
-            found = bounds_for_need(need, [holds[size] for size in sizes], prices)
+            found = bounds_for_need(need, [holds[size] for size in sizes], sold)
             bounds = bounds.combined(found)
     return bounds
 
@@ -176,7 +165,7 @@ def usable_lengths(demand: dict[int, int], capacities: Sequence[int]) -> dict[in
     return usable
 
 
-def bounds_for_need(need: int, holds: Sequence[int], prices: Sequence[int]) -> Bounds:
+def bounds_for_need(need: int, holds: Sequence[int], sold: Sequence[SoldAs]) -> Bounds:
     """Bound what must be bought to hold a weight.
 
     Parameters
@@ -185,19 +174,18 @@ def bounds_for_need(need: int, holds: Sequence[int], prices: Sequence[int]) -> B
         The weight that the shelf cannot hold.
     holds
         The most weight each put-up can hold.
-    prices
-        Price of each put-up [smallest units of money].
+    sold
+        The put-ups.
 
     Returns
     -------
     Bounds
         Impossible when something is needed and nothing holds anything.
     """
-    purchase = cheapest_purchase(holds, prices, need)
+    purchase = cheapest_purchase(sold, holds, need)
     if purchase is None:
         return Bounds(0, 0, (0,) * len(holds), possible=False)
-    fewest = -(-need // max(holds)) if need > 0 else 0
-    return Bounds(purchase.bound, fewest, purchase.counts)
+    return Bounds(purchase.bound, fewest_put_ups(sold, holds, need), purchase.counts)
 
 
 def _held_weights(weights: dict[int, int], capacities: list[int]) -> dict[int, int]:

@@ -10,6 +10,7 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, field, replace
 
 from planner.cutting.knapsack import Filler, LongestFirst, Pattern
+from planner.cutting.packs import SoldAs
 
 Pieces = tuple[tuple[int, int], ...]
 """Pairs of (length, count)."""
@@ -43,25 +44,6 @@ class Supply:
     def free(self) -> int:
         """What is not assigned yet [cells]."""
         return self.size - sum(length * count for length, count in self.held)
-
-
-@dataclass(frozen=True)
-class SoldAs:
-    """A put-up that can be bought in any number.
-
-    Parameters
-    ----------
-    length_mm
-        Its length [mm].
-    size
-        Its length [cells].
-    price
-        Its price [smallest units of money].
-    """
-
-    length_mm: int
-    size: int
-    price: int
 
 
 @dataclass(frozen=True)
@@ -283,10 +265,10 @@ def _fill_new(remaining: Remaining, sold: Sequence[SoldAs], filler: Filler) -> F
         return None
     holds_all = [index for index in patterns if sold[index].size >= remaining.total]
     if holds_all:
-        chosen = min(holds_all, key=lambda index: (sold[index].price, sold[index].size, index))
+        chosen = min(holds_all, key=lambda index: (sold[index].price_each, sold[index].size, index))
     else:
         used = {index: remaining.used(pattern) for index, pattern in patterns.items()}
-        chosen = min(patterns, key=lambda i: (sold[i].price / used[i], -used[i], i))
+        chosen = min(patterns, key=lambda i: (sold[i].price_each / used[i], -used[i], i))
     pattern = patterns[chosen]
     repeats = remaining.repeats(pattern, remaining.total)
     filler.learn(remaining.lengths, remaining.counts, sold[chosen].size, pattern)

@@ -10,6 +10,10 @@ import random
 from abc import ABC, abstractmethod
 from bisect import bisect_right
 from collections.abc import Callable, Iterator, Sequence
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    import numpy as np
 
 Pattern = list[tuple[int, int]]
 
@@ -259,6 +263,91 @@ def most_valuable(
             chosen[index] = chosen.get(index, 0) + multiple
             rest -= weight
     return list(chosen.items())
+
+
+def best_patterns(
+    lengths: Sequence[int],
+    counts: Sequence[int],
+    weights: Sequence[int],
+    capacities: Sequence[int],
+) -> dict[int, tuple[int, Pattern]]:
+    """Solve the bounded knapsack problem in whole numbers for several capacities at once.
+
+    Parameters
+    ----------
+    lengths
+        Distinct lengths, ascending [cells].
+    counts
+        How many there are of each.
+    weights
+        What one of each weighs.
+    capacities
+        The stock pieces [cells].
+
+    Returns
+    -------
+    dict
+        For each capacity the largest weight and a pattern that has it.
+    """
+    import numpy as np
+
+    largest = max(capacities, default=0)
+    best = np.zeros(largest + 1, dtype=np.int64)
+    steps = []
+    for index, (length, count, weight) in enumerate(zip(lengths, counts, weights, strict=True)):
+        if not weight:
+            continue
+        for multiple in _split(min(count, largest // length)):
+            shift = length * multiple
+            without_it = best[shift:]
+            with_it = best[: largest + 1 - shift] + multiple * weight
+            taken = with_it > without_it
+            np.maximum(without_it, with_it, out=without_it)
+            steps.append((index, multiple, shift, taken))
+    found = {}
+    for capacity in capacities:
+        rest = capacity
+        chosen: dict[int, int] = {}
+        for index, multiple, shift, taken in reversed(steps):
+            if rest >= shift and taken[rest - shift]:
+                chosen[index] = chosen.get(index, 0) + multiple
+                rest -= shift
+        found[capacity] = int(best[capacity]), sorted(chosen.items())
+    return found
+
+
+def value_tables(
+    lengths: Sequence[int], counts: Sequence[int], weights: Sequence[int], capacity: int
+) -> list["np.ndarray"]:
+    """Give the most that can be held by the first lengths alone, for every capacity.
+
+    Parameters
+    ----------
+    lengths
+        Distinct lengths, ascending [cells].
+    counts
+        How many there are of each.
+    weights
+        What one of each weighs.
+    capacity
+        The longest stock piece [cells].
+
+    Returns
+    -------
+    list of numpy.ndarray
+        ``tables[k][c]`` is the largest weight of the first k lengths within c cells; k from 0.
+    """
+    import numpy as np
+
+    best = np.zeros(capacity + 1, dtype=np.int64)
+    tables = [best.copy()]
+    for length, count, weight in zip(lengths, counts, weights, strict=True):
+        for multiple in _split(min(count, capacity // length)):
+            shift = length * multiple
+            with_it = best[: capacity + 1 - shift] + multiple * weight
+            np.maximum(best[shift:], with_it, out=best[shift:])
+        tables.append(best.copy())
+    return tables
 
 
 def _after_long_pieces(

@@ -19,6 +19,7 @@ from planner.cutting.lot_choice import (
     place_first,
 )
 from planner.cutting.lot_problem import CutPiece, Group, Lot, LotResult, Offer, Opened
+from planner.cutting.packs import SoldAs
 from planner.cutting.problem import (
     MAXIMUM_PIECES,
     CuttingError,
@@ -135,10 +136,20 @@ class _Shade:
         """The longest put-up of a supplier [cells]."""
         return max(offer.length_mm // self.cell_mm for offer in self.suppliers[supplier])
 
-    def sizes_and_prices(self, offers: Sequence[Offer]) -> tuple[list[int], list[int]]:
+    def sold(self, offers: Sequence[Offer]) -> list[SoldAs]:
         """Give offers in cells and smallest units of money."""
-        sizes = [offer.length_mm // self.cell_mm for offer in offers]
-        return sizes, [self.money.units(offer.price) for offer in offers]
+        return [
+            SoldAs(
+                offer.length_mm,
+                offer.length_mm // self.cell_mm,
+                self.money.units(offer.price),
+                offer.pack_size,
+                offer.minimum_packs,
+                offer.pack_step,
+                index,
+            )
+            for index, offer in enumerate(offers)
+        ]
 
     def fits_nowhere(self, kind: Kind) -> bool:
         """Whether neither a lot nor a supplier can serve a bracelet, even were it the only one."""
@@ -295,17 +306,16 @@ def _bounds(shade: _Shade, kinds: Counter[Kind], *, rounded: bool = False) -> Bo
     offers = [offer for sold in shade.suppliers.values() for offer in sold]
     bounds = _offer_bounds(shade, offers, need, demand)
     if rounded:
-        sizes, prices = shade.sizes_and_prices(offers)
-        bounds = bounds.combined(rounded_bounds(demand, dict(pooled), sizes, prices))
+        bounds = bounds.combined(rounded_bounds(demand, dict(pooled), shade.sold(offers)))
     return bounds if bounds.possible else Bounds(0, 0, ())
 
 
 def _offer_bounds(
     shade: _Shade, offers: Sequence[Offer], need: int, demand: Counter[int]
 ) -> Bounds:
-    sizes, prices = shade.sizes_and_prices(offers)
-    usable = usable_lengths(demand, sizes)
-    return bounds_for_need(need, [usable[size] for size in sizes], prices)
+    sold = shade.sold(offers)
+    usable = usable_lengths(demand, [item.size for item in sold])
+    return bounds_for_need(need, [usable[item.size] for item in sold], sold)
 
 
 class _Assignment:

@@ -71,10 +71,14 @@ class StockPiece:
         Length that can be cut from one [mm].
     count
         How many lie there.
+    lot
+        Their dye lot, as the caller names it; it is told again with every cut. Pieces that have to
+        stay in one lot are the business of `solve_with_lots`.
     """
 
     length_mm: int
     count: int
+    lot: str = ""
 
     def __post_init__(self) -> None:
         check_whole(self.length_mm, "length_mm of a stock piece", 1, MAXIMUM_LENGTH_MM)
@@ -105,22 +109,46 @@ def check_packs(pack_size: object, minimum_packs: object, pack_step: object) -> 
 
 @dataclass(frozen=True)
 class PutUp:
-    """A way thread is sold, in any number.
+    """A way thread is sold.
 
     Parameters
     ----------
     length_mm
-        Length that can be cut from one [mm].
+        Length of one as it is sold [mm].
     price
-        What one costs, with at most four decimal places.
+        What a pack costs, with at most four decimal places.
+    pack_size
+        How many come in a pack.
+    minimum_packs
+        The fewest packs taken, where any are.
+    pack_step
+        Packs are taken in multiples of it.
+    supplier
+        Who sells it, as the caller names it.
+    short_measure_share
+        What one may lack: it is trusted to hold `reckoned_mm`.
     """
 
     length_mm: int
     price: Decimal
+    pack_size: int = 1
+    minimum_packs: int = 1
+    pack_step: int = 1
+    supplier: str = ""
+    short_measure_share: Decimal = Decimal(0)
+
+    @property
+    def reckoned_mm(self) -> int:
+        """What one is trusted to hold [mm]."""
+        return int(self.length_mm * (1 - self.short_measure_share))
 
     def __post_init__(self) -> None:
         check_whole(self.length_mm, "length_mm of a put-up", 1, MAXIMUM_LENGTH_MM)
         check_price(self.price)
+        check_packs(self.pack_size, self.minimum_packs, self.pack_step)
+        share = self.short_measure_share
+        if not isinstance(share, Decimal) or not share.is_finite() or not 0 <= share < 1:
+            raise CuttingError("short_measure_share must be a decimal number from 0 to below 1.")
 
 
 def check_price(price: object) -> None:
@@ -155,7 +183,7 @@ class Problem:
     stock
         The thread on the shelf.
     buy
-        The put-ups that can be bought, any number of each.
+        The put-ups that can be bought.
     """
 
     demand: tuple[Demand, ...]
@@ -178,19 +206,25 @@ class Cut:
     Parameters
     ----------
     length_mm
-        Length of the stock piece [mm].
+        What the stock piece is trusted to hold [mm].
     new
         Whether it has to be bought.
     pieces_mm
         The pieces, longest first [mm].
     left_mm
         What is left of it [mm].
+    lot
+        The dye lot of a piece from the shelf.
+    put_up
+        Which of the problem's put-ups a new one is, from 0; None from the shelf.
     """
 
     length_mm: int
     new: bool
     pieces_mm: tuple[int, ...]
     left_mm: int
+    lot: str = ""
+    put_up: int | None = None
 
     def __post_init__(self) -> None:
         if self.left_mm < 0 or sum(self.pieces_mm) + self.left_mm != self.length_mm:
@@ -208,7 +242,7 @@ class Result:
     cost
         What the new thread costs.
     bought
-        How many put-ups are bought.
+        How many put-ups are bought: single ones, also where they come in packs.
     lower_bound
         No plan can cost less.
     bought_lower_bound
@@ -217,6 +251,15 @@ class Result:
         The stock pieces opened, shelf first.
     seconds
         How long it took [s].
+    purchase
+        How many of each of the problem's put-ups are bought; those not opened are spare.
+    waste_mm
+        What is left of opened pieces and shorter than the keep length [mm].
+    leftovers
+        How many pieces of the keep length or more are left of opened ones.
+    tidiest
+        Whether it is proven that no plan of this cost has less waste, nor, with as little waste,
+        fewer leftovers, nor, with as few, opens fewer stock pieces.
     """
 
     status: Status
@@ -226,6 +269,10 @@ class Result:
     bought_lower_bound: int
     cuts: tuple[Cut, ...]
     seconds: float
+    purchase: tuple[int, ...] = ()
+    waste_mm: int = 0
+    leftovers: int = 0
+    tidiest: bool = False
 
 
 @dataclass(frozen=True)

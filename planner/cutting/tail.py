@@ -5,8 +5,9 @@ from collections.abc import Sequence
 from dataclasses import replace
 from itertools import combinations_with_replacement
 
-from planner.cutting.filling import Filling, SoldAs, Supply, fill_all
+from planner.cutting.filling import Filling, Supply, fill_all
 from planner.cutting.knapsack import Fullest, LongestFirst
+from planner.cutting.packs import SoldAs
 from planner.cutting.task import Plan, Task
 
 TAIL_PUT_UPS = 4
@@ -34,7 +35,7 @@ def with_cheaper_tail(task: Task, plan: Plan) -> Plan:
     Buying by price per length used is right in the long run and wrong at the end, where a dear
     short put-up may do.
     """
-    while len(task.sold) > 1:
+    while len(task.sold) > 1 and all(item.is_single for item in task.sold):
         cheaper = _cheaper(task, plan)
         if cheaper is None:
             break

@@ -1,11 +1,14 @@
 """A cutting problem in cells and smallest units of money, and the plans for it."""
 
 from collections import Counter
+from collections.abc import Callable
 from dataclasses import dataclass
 from math import gcd
 
 from planner.cutting.bounds import Bounds, length_bounds, rounded_bounds
-from planner.cutting.filling import Filling, SoldAs, Supply
+from planner.cutting.filling import Filling, Supply
+from planner.cutting.highs import NEVER, Limits
+from planner.cutting.packs import SoldAs, worth_buying
 from planner.cutting.problem import CuttingError, Money, Problem
 
 
@@ -16,13 +19,14 @@ class Plan:
     fillings: list[Filling]
     cost: int
     waste_mm: int
+    leftovers: int
     opened: int
-    bought: int
+    bought: tuple[int, ...]
 
     @property
-    def rank(self) -> tuple[int, int, int]:
-        """Least money, then least waste, then fewest stock pieces to handle."""
-        return self.cost, self.waste_mm, self.opened
+    def rank(self) -> tuple[int, int, int, int]:
+        """Least money, then least waste, then fewest leftovers, then fewest stock pieces opened."""
+        return self.cost, self.waste_mm, self.leftovers, self.opened
 
 
 @dataclass(frozen=True)
@@ -34,12 +38,11 @@ class Task:
     sold: list[SoldAs]
     cell_mm: int
     money: Money
-    deadline: float
-    seed: int
+    limits: Limits
     keep_length_mm: int
 
     @classmethod
-    def of(cls, problem: Problem, deadline: float, seed: int, keep_length_mm: int) -> "Task":
+    def of(cls, problem: Problem, limits: Limits, keep_length_mm: int) -> "Task":
         """Merge equal lengths and change units."""
         wanted: Counter[int] = Counter()
         for piece in problem.demand:
@@ -53,13 +56,22 @@ class Task:
         return cls(
             {length // cell_mm: wanted[length] for length in lengths},
             [Supply(mm, mm // cell_mm, count) for mm, count in sorted(stock.items()) if count],
-            _worth_buying(problem, cell_mm, money),
+            worth_buying(_sold(problem, cell_mm, money)),
             cell_mm,
             money,
-            deadline,
-            seed,
+            limits,
             keep_length_mm,
         )
+
+    @property
+    def deadline(self) -> float:
+        """Reading of the monotonic clock at which quick rules take over [s]."""
+        return self.limits.deadline
+
+    @property
+    def need(self) -> int:
+        """All pieces together [cells]."""
+        return sum(length * count for length, count in self.demand.items())
 
     @property
     def longest_stock(self) -> int:
@@ -76,39 +88,70 @@ class Task:
                 "and every put-up."
             )
 
-    def length_bounds(self) -> Bounds:
-        """Bound by total length."""
-        return length_bounds(self.demand, *self._sizes())
-
-    def rounded_bounds(self) -> Bounds:
-        """Bound by rounded weights."""
-        return rounded_bounds(self.demand, *self._sizes())
-
-    def _sizes(self) -> tuple[dict[int, int], list[int], list[int]]:
+    def shelf_counts(self) -> dict[int, int]:
+        """Give the shelf as length [cells] to count."""
         shelf: Counter[int] = Counter()
         for supply in self.shelf:
             shelf[supply.size] += supply.count
-        return dict(shelf), [item.size for item in self.sold], [item.price for item in self.sold]
+        return dict(shelf)
+
+    def length_bounds(self) -> Bounds:
+        """Bound by total length."""
+        return length_bounds(self.demand, self.shelf_counts(), self.sold)
+
+    def rounded_bounds(self) -> Bounds:
+        """Bound by rounded weights."""
+        return rounded_bounds(self.demand, self.shelf_counts(), self.sold)
 
     def plan(self, fillings: list[Filling]) -> Plan:
         """Add up what fillings come to."""
-        cost = bought = waste_mm = opened = 0
+        waste_mm = leftovers = opened = 0
+        new = [0] * len(self.sold)
         for filling in fillings:
             opened += filling.repeats
             left_mm = filling.length_mm - filling.used * self.cell_mm
             if left_mm < self.keep_length_mm:
                 waste_mm += left_mm * filling.repeats
+            else:
+                leftovers += filling.repeats
             if filling.put_up is not None:
-                cost += self.sold[filling.put_up].price * filling.repeats
-                bought += filling.repeats
-        return Plan(fillings, cost, waste_mm, opened, bought)
+                new[filling.put_up] += filling.repeats
+        bought = tuple(item.bought_for(count) for item, count in zip(self.sold, new, strict=True))
+        cost = sum(item.cost_of(count) for item, count in zip(self.sold, bought, strict=True))
+        return Plan(fillings, cost, waste_mm, leftovers, opened, bought)
 
 
-def _worth_buying(problem: Problem, cell_mm: int, money: Money) -> list[SoldAs]:
-    """Leave out put-ups that another one, no dearer and no shorter, makes pointless."""
-    sold: list[SoldAs] = []
-    for put_up in sorted(problem.buy, key=lambda item: (item.price, -item.length_mm)):
-        if not sold or put_up.length_mm > sold[-1].length_mm:
-            size = put_up.length_mm // cell_mm
-            sold.append(SoldAs(put_up.length_mm, size, money.units(put_up.price)))
-    return sold
+def limits_for(deadline: float, seed: int, stop: Callable[[], bool] | None) -> Limits:
+    """Put limits together.
+
+    Parameters
+    ----------
+    deadline
+        Reading of the monotonic clock [s].
+    seed
+        For the random choices.
+    stop
+        Asked now and then, or None.
+
+    Returns
+    -------
+    Limits
+        The limits.
+    """
+    return Limits(deadline, seed, stop or NEVER)
+
+
+def _sold(problem: Problem, cell_mm: int, money: Money) -> list[SoldAs]:
+    return [
+        SoldAs(
+            put_up.reckoned_mm,
+            put_up.reckoned_mm // cell_mm,
+            money.units(put_up.price),
+            put_up.pack_size,
+            put_up.minimum_packs,
+            put_up.pack_step,
+            index,
+        )
+        for index, put_up in enumerate(problem.buy)
+        if put_up.reckoned_mm >= cell_mm
+    ]

@@ -1,9 +1,4 @@
-"""Published and constructed cutting problems; the sources stand in the data file beside each.
-
-All are reached but one: for falkenauer_t60_00 (Falkenauer 1996: 20 triples without any waste)
-filling finds 21 and says that at least 20 are needed. ampl110 is reached at 47 but not proven: the
-bound on total length and rounded weights says 46, the linear bound 46.25.
-"""
+"""Published and constructed cutting problems; the sources stand in the data file beside each."""
 
 from decimal import Decimal
 
@@ -18,8 +13,6 @@ from tests.unit.planner.cutting.cutting_helpers import (
 )
 
 PUBLISHED = published_problems()
-NOT_REACHED = {"falkenauer_t60_00": 21}
-NOT_PROVEN = {"ampl110", "falkenauer_t60_00"}
 
 
 def optimal_cost(name: str) -> Decimal:
@@ -30,13 +23,13 @@ def optimal_cost(name: str) -> Decimal:
 
 
 @pytest.mark.parametrize("name", sorted(PUBLISHED))
-def test_published_problem_is_solved_and_judged_honestly(name: str) -> None:
+def test_published_problem_is_solved_to_its_proven_optimum(name: str) -> None:
     problem = as_problem(PUBLISHED[name])
     result = solve(problem, time_limit_s=60)
     check_plan(problem, result)
-    assert result.cost == NOT_REACHED.get(name, optimal_cost(name))
-    assert result.lower_bound <= optimal_cost(name)
-    assert result.status == ("feasible" if name in NOT_PROVEN else "optimal")
+    assert result.cost == optimal_cost(name)
+    assert result.lower_bound == optimal_cost(name)
+    assert result.status == "optimal"
 
 
 def test_remnants_problem_opens_the_least_length() -> None:
