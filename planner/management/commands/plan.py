@@ -18,7 +18,9 @@ from planner.order_list.table import read_table
 from planner.orders.catalogue import how_to_read, load_catalogue
 from planner.planning.sheet_files import SHEET_FILES
 from planner.planning.snapshot import Snapshot, SnapshotShade
-from planner.planning.wording import proof_of_plan, proof_of_shade
+from planner.planning.watching import Watcher
+from planner.planning.wording import is_worked_out, proof_of_plan, proof_of_shade
+from planner.plans.shell_watch import ShellWatcher
 from planner.plans.work_out import PlanError, work_out_plan
 
 
@@ -33,7 +35,8 @@ class Command(OneLineCommand):
     def handle(self, *args: Any, **options: Any) -> None:
         path = Path(options["orders"])
         try:
-            snapshot = plan_file(path)
+            with ShellWatcher(self.stderr).listening() as watcher:
+                snapshot = plan_file(path, watcher)
             written = write_sheets(snapshot, Path(options["sheets"])) if options["sheets"] else []
         except (OrderListError, PlanError) as reason:
             raise Error(str(reason)) from None
@@ -48,7 +51,7 @@ class Command(OneLineCommand):
             self.stdout.write(f"wrote {name}")
 
 
-def plan_file(path: Path) -> Snapshot:
+def plan_file(path: Path, watcher: Watcher) -> Snapshot:
     workshop = Workshop.current()
     if workshop is None:
         raise PlanError("There is no workshop yet. Start one, or load the sample.")
@@ -67,6 +70,7 @@ def plan_file(path: Path) -> Snapshot:
         plan_number=0,
         today=timezone.localdate(),
         strict=True,
+        watcher=watcher,
     )
 
 
@@ -131,6 +135,7 @@ def _shade_json(shade: SnapshotShade) -> dict[str, Any]:
         "lower_bound": f"{shade.lower_bound:.2f}",
         "bought_lower_bound": shade.bought_lower_bound,
         "status": shade.status,
+        "message": shade.proof.message,
         "left_mm": shade.left_mm,
         "unplaced_tags": list(shade.unplaced),
     }
@@ -140,9 +145,7 @@ def as_sentences(snapshot: Snapshot) -> list[str]:
     unit, currency = snapshot.habits.length_unit, snapshot.habits.currency
     rows = [
         f"{shade.code} {shade.name}: need {format_length(shade.need_mm, unit)}, "
-        f"shelf {format_length(shade.shelf_mm, unit)}, buy {shade.bought} "
-        f"for {shade.cost:.2f} {currency} ({proof_of_shade(shade)}), "
-        f"left {format_length(shade.left_mm, unit)}"
+        f"shelf {format_length(shade.shelf_mm, unit)}, " + _answer(shade, unit, currency)
         for shade in snapshot.shades
     ]
     total = (
@@ -150,3 +153,12 @@ def as_sentences(snapshot: Snapshot) -> list[str]:
         f"{snapshot.cost:.2f} {currency}. {proof_of_plan(snapshot, snapshot.shades)}"
     )
     return [*rows, total]
+
+
+def _answer(shade: SnapshotShade, unit: str, currency: str) -> str:
+    if not is_worked_out(shade):
+        return f"{proof_of_shade(shade)}. {shade.proof.message}"
+    return (
+        f"buy {shade.bought} for {shade.cost:.2f} {currency} ({proof_of_shade(shade)}), "
+        f"left {format_length(shade.left_mm, unit)}"
+    )

@@ -2,6 +2,7 @@
 
 import json
 import os
+import signal
 import subprocess
 import sys
 from io import StringIO
@@ -13,8 +14,11 @@ from django.core.management import CommandError, call_command
 
 from inventory.models import PutUp
 from patterns.models import Colourway, KnottedLength
+from planner.cutting import LotResult
 from planner.management.commands.plan import Command
 from planner.models import Batch, OrderLine, Plan
+from planner.planning import netting
+from planner.plans.shell_watch import CLEAR_LINE
 from tests.factories import put_thread
 
 LIST = "pattern;size;quantity\nWave;Medium;2\nWave;16 cm;1\n"
@@ -139,3 +143,58 @@ def test_plan_without_put_ups_names_the_tags(colourway: Colourway, orders: Path)
     PutUp.objects.all().delete()
     found = json.loads(run(str(orders), "--json"))
     assert all(shade["unplaced_tags"] == [1, 2, 3] for shade in found["shades"])
+
+
+class Terminal(StringIO):
+    def isatty(self) -> bool:
+        return True
+
+
+def run_watched(stream: StringIO, *arguments: str) -> str:
+    out = StringIO()
+    call_command("plan", *arguments, stdout=out, stderr=stream)
+    return out.getvalue()
+
+
+def test_plan_tells_a_terminal_how_far_it_is(colourway: Colourway, orders: Path) -> None:
+    terminal, file = Terminal(), StringIO()
+    assert run_watched(terminal, str(orders)) == run_watched(file, str(orders))
+    shade = colourway.shades_by_slot()["A"]
+    assert f"Shade 1 of 3: {shade}" in terminal.getvalue()
+    assert terminal.getvalue().endswith(CLEAR_LINE)
+    assert file.getvalue() == ""
+
+
+def test_plan_stops_on_an_interrupt_with_the_shades_that_are_done(
+    colourway: Colourway, orders: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    solve, calls = netting.solve_with_lots, []
+
+    def interrupted(*args: Any, **kwargs: Any) -> LotResult:
+        calls.append(1)
+        if len(calls) == 2:
+            signal.raise_signal(signal.SIGINT)
+        return solve(*args, **kwargs)
+
+    monkeypatch.setattr(netting, "solve_with_lots", interrupted)
+    before = signal.getsignal(signal.SIGINT)
+    said = run_watched(terminal := Terminal(), str(orders))
+    assert "Stopping with the shades that are done" in terminal.getvalue()
+    assert "not worked out: stopped before it was its turn" in said
+    assert "1 of 3 shades was not worked out." in said
+    assert signal.getsignal(signal.SIGINT) is before
+
+
+def test_plan_gives_up_on_the_second_interrupt(
+    colourway: Colourway, orders: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    def interrupted(*args: Any, **kwargs: Any) -> LotResult:
+        signal.raise_signal(signal.SIGINT)
+        signal.raise_signal(signal.SIGINT)
+        raise AssertionError("went on")
+
+    monkeypatch.setattr(netting, "solve_with_lots", interrupted)
+    before = signal.getsignal(signal.SIGINT)
+    with pytest.raises(KeyboardInterrupt):
+        run(str(orders))
+    assert signal.getsignal(signal.SIGINT) is before
