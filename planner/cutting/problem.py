@@ -258,8 +258,8 @@ class Result:
     leftovers
         How many pieces of the keep length or more are left of opened ones.
     tidiest
-        Whether it is proven that no plan of this cost has less waste, nor, with as little waste,
-        fewer leftovers, nor, with as few, opens fewer stock pieces.
+        Whether it is proven that with this purchase no plan has less waste, nor, with as little,
+        leaves fewer pieces on the shelf, nor, with as few, opens fewer stock pieces.
     """
 
     status: Status

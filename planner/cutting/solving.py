@@ -2,7 +2,7 @@
 
 import time
 from collections import deque
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Callable, Iterator
 from dataclasses import replace
 from decimal import Decimal
 
@@ -14,6 +14,7 @@ from planner.cutting.knapsack import CorrectedValues, Filler, Fullest, LongestFi
 from planner.cutting.packs import SoldAs
 from planner.cutting.problem import Cut, CuttingError, Problem, Result
 from planner.cutting.purchase import purchases_between
+from planner.cutting.supplies import bought_supplies
 from planner.cutting.tail import with_cheaper_tail
 from planner.cutting.task import Plan, Task
 from planner.cutting.tidy import tidied
@@ -38,8 +39,8 @@ def solve(
 ) -> Result:
     """Find what to buy and how to cut it.
 
-    In this order: least money; least waste below the keep length, then few leftovers; few stock
-    pieces to handle.
+    In this order: least money; least waste below the keep length; fewest pieces on the shelf
+    afterwards, so that leftovers are few and long; fewest stock pieces to handle.
 
     Parameters
     ----------
@@ -223,28 +224,6 @@ def _routes(task: Task, shelf: list[Supply], bounds: Bounds) -> Iterator[_Route]
             yield order, task.sold
     if shelf and target:
         yield target + shelf, task.sold
-
-
-def bought_supplies(sold: Sequence[SoldAs], counts: Sequence[int]) -> list[Supply]:
-    """Give what is bought as stock to open.
-
-    Parameters
-    ----------
-    sold
-        The put-ups.
-    counts
-        How many of each.
-
-    Returns
-    -------
-    list of Supply
-        In their order, those bought.
-    """
-    return [
-        Supply(item.length_mm, item.size, count, index)
-        for index, (item, count) in enumerate(zip(sold, counts, strict=True))
-        if count
-    ]
 
 
 def _may_do_alone(task: Task, item: SoldAs, bounds: Bounds) -> bool:

@@ -1,13 +1,12 @@
 """A cutting problem in cells and smallest units of money, and the plans for it."""
 
 from collections import Counter
-from collections.abc import Callable
 from dataclasses import dataclass
 from math import gcd
 
 from planner.cutting.bounds import Bounds, length_bounds, rounded_bounds
 from planner.cutting.filling import Filling, Supply
-from planner.cutting.highs import NEVER, Limits
+from planner.cutting.highs import Limits
 from planner.cutting.packs import SoldAs, worth_buying
 from planner.cutting.problem import CuttingError, Money, Problem
 
@@ -20,13 +19,14 @@ class Plan:
     cost: int
     waste_mm: int
     leftovers: int
+    more_pieces: int
     opened: int
     bought: tuple[int, ...]
 
     @property
     def rank(self) -> tuple[int, int, int, int]:
-        """Least money, then least waste, then fewest leftovers, then fewest stock pieces opened."""
-        return self.cost, self.waste_mm, self.leftovers, self.opened
+        """Least money, least waste, fewest pieces on the shelf afterwards, fewest opened."""
+        return self.cost, self.waste_mm, self.more_pieces, self.opened
 
 
 @dataclass(frozen=True)
@@ -105,7 +105,7 @@ class Task:
 
     def plan(self, fillings: list[Filling]) -> Plan:
         """Add up what fillings come to."""
-        waste_mm = leftovers = opened = 0
+        waste_mm = leftovers = opened = from_shelf = 0
         new = [0] * len(self.sold)
         for filling in fillings:
             opened += filling.repeats
@@ -114,31 +114,13 @@ class Task:
                 waste_mm += left_mm * filling.repeats
             else:
                 leftovers += filling.repeats
-            if filling.put_up is not None:
+            if filling.put_up is None:
+                from_shelf += filling.repeats
+            else:
                 new[filling.put_up] += filling.repeats
         bought = tuple(item.bought_for(count) for item, count in zip(self.sold, new, strict=True))
         cost = sum(item.cost_of(count) for item, count in zip(self.sold, bought, strict=True))
-        return Plan(fillings, cost, waste_mm, leftovers, opened, bought)
-
-
-def limits_for(deadline: float, seed: int, stop: Callable[[], bool] | None) -> Limits:
-    """Put limits together.
-
-    Parameters
-    ----------
-    deadline
-        Reading of the monotonic clock [s].
-    seed
-        For the random choices.
-    stop
-        Asked now and then, or None.
-
-    Returns
-    -------
-    Limits
-        The limits.
-    """
-    return Limits(deadline, seed, stop or NEVER)
+        return Plan(fillings, cost, waste_mm, leftovers, leftovers - from_shelf, opened, bought)
 
 
 def _sold(problem: Problem, cell_mm: int, money: Money) -> list[SoldAs]:
