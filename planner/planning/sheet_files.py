@@ -1,6 +1,6 @@
 """Every file that a plan can be had as."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 
 from planner.planning.sheet_contents import cutting_sheet, purchase_sheet, tag_sheet
@@ -9,40 +9,40 @@ from planner.planning.snapshot import Snapshot
 
 @dataclass(frozen=True)
 class SheetFile:
-    """A file that a plan can be had as."""
+    """A file that a plan can be had as; what may be wrong is raised before its first part."""
 
     content_type: str
-    build: Callable[[Snapshot, str, str], bytes]
+    parts: Callable[[Snapshot, str, str], Iterable[bytes]]
 
 
-def _purchase_pdf(snapshot: Snapshot, paper: str, address: str) -> bytes:
+def _purchase_pdf(snapshot: Snapshot, paper: str, address: str) -> Iterable[bytes]:
     from planner.sheets.purchase import build_purchase_sheet
 
-    return build_purchase_sheet(purchase_sheet(snapshot), paper)
+    return [build_purchase_sheet(purchase_sheet(snapshot), paper)]
 
 
-def _cutting_pdf(snapshot: Snapshot, paper: str, address: str) -> bytes:
-    from planner.sheets.cutting import build_cutting_sheet
+def _cutting_pdf(snapshot: Snapshot, paper: str, address: str) -> Iterable[bytes]:
+    from planner.sheets.cutting import cutting_sheet_parts
 
-    return build_cutting_sheet(cutting_sheet(snapshot), paper)
-
-
-def _tags_pdf(snapshot: Snapshot, paper: str, address: str) -> bytes:
-    from planner.sheets.tags import build_tag_sheet
-
-    return build_tag_sheet(tag_sheet(snapshot, address=address), paper)
+    return cutting_sheet_parts(cutting_sheet(snapshot), paper)
 
 
-def _purchase_csv(snapshot: Snapshot, paper: str, address: str) -> bytes:
+def _tags_pdf(snapshot: Snapshot, paper: str, address: str) -> Iterable[bytes]:
+    from planner.sheets.tags import tag_sheet_parts
+
+    return tag_sheet_parts(tag_sheet(snapshot, address=address), paper)
+
+
+def _purchase_csv(snapshot: Snapshot, paper: str, address: str) -> Iterable[bytes]:
     from planner.sheets.lists import purchase_csv
 
-    return purchase_csv(purchase_sheet(snapshot))
+    return [purchase_csv(purchase_sheet(snapshot))]
 
 
-def _purchase_xlsx(snapshot: Snapshot, paper: str, address: str) -> bytes:
+def _purchase_xlsx(snapshot: Snapshot, paper: str, address: str) -> Iterable[bytes]:
     from planner.sheets.lists import purchase_xlsx
 
-    return purchase_xlsx(purchase_sheet(snapshot))
+    return [purchase_xlsx(purchase_sheet(snapshot))]
 
 
 XLSX = "application/vnd.openxmlformats-officedocument.spreadsheetml.sheet"

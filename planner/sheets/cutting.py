@@ -13,7 +13,7 @@ from planner.sheets.pages import (
     Heading,
     Opening,
     body_width,
-    draw_document,
+    document_parts,
     notice_blocks,
 )
 from planner.sheets.paper import Paper, paper_named
@@ -53,10 +53,15 @@ def build_cutting_sheet(sheet: CuttingSheet, paper: Paper | str) -> bytes:
     PaperError
         When there is no such paper.
     """
+    return b"".join(cutting_sheet_parts(sheet, paper))
+
+
+def cutting_sheet_parts(sheet: CuttingSheet, paper: Paper | str) -> Iterator[bytes]:
+    """Draw the cutting sheet, and give the document away page by page."""
     form = paper_named(paper)
     title = f"What to cut for {batch_words(sheet.head.batch)}"
     pen = Pen(form, title, sheet.head)
-    return draw_document(
+    return document_parts(
         pen, sheet.head, Opening(title, _answer(sheet)), list(_blocks(sheet, form))
     )
 

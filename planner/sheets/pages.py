@@ -3,7 +3,7 @@
 All heights and coordinates are points.
 """
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
 
 from planner.sheets.contents import SheetHead
@@ -83,6 +83,13 @@ def paginate(blocks: Sequence[Block], first: float, later: float) -> list[list[B
 
 def draw_document(pen: Pen, head: SheetHead, opening: Opening, blocks: Sequence[Block]) -> bytes:
     """Draw all blocks, page by page, and return the document."""
+    return b"".join(document_parts(pen, head, opening, blocks))
+
+
+def document_parts(
+    pen: Pen, head: SheetHead, opening: Opening, blocks: Sequence[Block]
+) -> Iterator[bytes]:
+    """Draw all blocks, and give the document away page by page."""
     body = pen.paper.height_pt - TOP_PT - BODY_FOOT_PT
     pages = paginate(blocks, body - _OPENING_PT, body - _RUNNING_PT)
     seen: Heading | None = None
@@ -101,7 +108,8 @@ def draw_document(pen: Pen, head: SheetHead, opening: Opening, blocks: Sequence[
             top -= block.height
         draw_foot(pen, head, number, len(pages), SIDE_PT)
         pen.next_page()
-    return pen.finish()
+        yield pen.taken()
+    yield pen.finish()
 
 
 def _draw_letterhead(pen: Pen, head: SheetHead, y: float) -> None:

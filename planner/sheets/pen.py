@@ -13,6 +13,7 @@ from reportlab.pdfgen.canvas import Canvas
 from patterns.colours import ink_on
 from planner.sheets.contents import SheetHead
 from planner.sheets.fonts import MISSING, REGULAR, printable, ready_fonts, shortened, width_of
+from planner.sheets.page_stream import PageStream
 from planner.sheets.paper import Paper
 from planner.sheets.wording import plain_text, whole_part
 
@@ -53,10 +54,9 @@ class Pen:
     def __init__(self, paper: Paper, title: str, head: SheetHead) -> None:
         ready_fonts()
         self.paper = paper
-        self._buffer = BytesIO()
         # invariant: the same sheet gives the same bytes, so that files can be compared.
         self.canvas = Canvas(
-            self._buffer,
+            BytesIO(),
             pagesize=(paper.width_pt, paper.height_pt),
             invariant=1,
             pageCompression=1,
@@ -68,6 +68,7 @@ class Pen:
         self.canvas.setSubject(plain_text(head.batch))
         self.canvas.setCreator("Flosswright")
         self.canvas.setProducer("Flosswright")
+        self._stream = PageStream(self.canvas)
         self.lacks_letters = False
 
     def text(
@@ -183,10 +184,13 @@ class Pen:
 
     def next_page(self) -> None:
         """Close this page and begin another."""
-        self.canvas.showPage()
+        self._stream.close_page()
         self.lacks_letters = False
 
+    def taken(self) -> bytes:
+        """Give away what was written of the document since it was last asked."""
+        return self._stream.taken()
+
     def finish(self) -> bytes:
-        """Return the finished document."""
-        self.canvas.save()
-        return self._buffer.getvalue()
+        """Return the document, or what was not taken of it yet; every page must be closed."""
+        return self._stream.finish()

@@ -6,7 +6,7 @@ All coordinates and heights are points.
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from planner.sheets.codes import Code, code_for
+from planner.sheets.codes import code_side
 from planner.sheets.contents import Tag
 from planner.sheets.fonts import REGULAR, wrapped
 from planner.sheets.paper import Paper, millimetres
@@ -86,9 +86,9 @@ def tags_height(paper: Paper) -> float:
     return paper.height_pt - TOP_PT - FOOT_PT
 
 
-def header_height(code: Code) -> float:
+def header_height(code_side_pt: float) -> float:
     """Height of a tag's head: its words, or its code where that is higher [pt]."""
-    return max(HEADER_PT, code.side_pt - PADDING_PT / 2)
+    return max(HEADER_PT, code_side_pt - PADDING_PT / 2)
 
 
 def small_print(tag: Tag, width: float) -> list[str]:
@@ -105,7 +105,7 @@ def least_height(tag: Tag, layout: TagLayout, paper: Paper) -> float:
     small_lines = len(small_print(tag, width))
     return (
         2 * PADDING_PT
-        + header_height(code_for(tag.code_text))
+        + header_height(code_side(tag.code_text))
         + PICTURE_PT
         + TABLE_HEAD_PT
         + rows * LEAST_ROW_PT

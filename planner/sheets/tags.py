@@ -3,6 +3,7 @@
 All coordinates are points.
 """
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 from inventory.measures import format_length, format_number
@@ -64,11 +65,24 @@ def build_tag_sheet(sheet: TagSheet, paper: Paper | str) -> bytes:
     TagError
         When a tag has more pieces than a page holds.
     """
+    return b"".join(tag_sheet_parts(sheet, paper))
+
+
+def tag_sheet_parts(sheet: TagSheet, paper: Paper | str) -> Iterator[bytes]:
+    """Draw the cut tags, and give the document away page by page.
+
+    What may be wrong with a sheet is raised here, before the first part, as by
+    `build_tag_sheet`.
+    """
     form = paper_named(paper)
+    pages = arrange(sheet.tags, form) or [[]]
+    return _tag_pages(sheet, form, pages)
+
+
+def _tag_pages(sheet: TagSheet, form: Paper, pages: list[list[TagRow]]) -> Iterator[bytes]:
     title = f"Tags for {batch_words(sheet.head.batch)}"
     pen = Pen(form, title, sheet.head)
     forms = DrawingForms(pen.canvas)
-    pages = arrange(sheet.tags, form) or [[]]
     for number, rows in enumerate(pages, start=1):
         if not rows:
             words = "No tags: this plan has no bracelets to make."
@@ -78,7 +92,8 @@ def build_tag_sheet(sheet: TagSheet, paper: Paper | str) -> bytes:
             top = _draw_row(pen, forms, row, sheet.unit, top)
         draw_foot(pen, sheet.head, number, len(pages), SIDE_PT)
         pen.next_page()
-    return pen.finish()
+        yield pen.taken()
+    yield pen.finish()
 
 
 def _draw_row(pen: Pen, forms: DrawingForms, row: TagRow, unit: str, top: float) -> float:
@@ -169,7 +184,7 @@ class _TagDrawing:
         for text, size, font in self._head_lines():
             pen.text(x, y, text, size, font=font, room=room)
             y -= 13
-        return top - PADDING_PT - header_height(code)
+        return top - PADDING_PT - header_height(code.side_pt)
 
     def _head_lines(self) -> list[tuple[str, float, str]]:
         tag = self.tag

@@ -1,7 +1,15 @@
 """Plans, their shades and bracelets, and the sheets printed from them."""
 
+from collections.abc import Iterable
+
 from django.core.paginator import Paginator
-from django.http import Http404, HttpRequest, HttpResponse
+from django.http import (
+    Http404,
+    HttpRequest,
+    HttpResponse,
+    HttpResponseBase,
+    StreamingHttpResponse,
+)
 from django.shortcuts import get_object_or_404, render
 from django.utils.text import slugify
 from django.views.decorators.http import require_GET
@@ -12,6 +20,7 @@ from planner.plans.pages import bracelet_page, plan_page, shade_page
 from planner.plans.store import read_snapshot
 
 BRACELETS_A_PAGE = 100
+STREAMED_FROM = 300  # bracelets: some seconds of drawing
 PAPERS = {"a4": "A4", "letter": "Letter"}
 
 
@@ -46,16 +55,23 @@ def bracelet(request: HttpRequest, pk: int) -> HttpResponse:
 
 
 @require_GET
-def plan_sheet(request: HttpRequest, pk: int, sheet: str, ending: str) -> HttpResponse:
+def plan_sheet(request: HttpRequest, pk: int, sheet: str, ending: str) -> HttpResponseBase:
     kind = SHEET_FILES.get((sheet, ending))
     if kind is None:
         raise Http404
     plan = get_object_or_404(Plan.objects.select_related("batch"), pk=pk)
     snapshot = read_snapshot(plan)
     paper = PAPERS.get(request.GET.get("paper", "").lower(), snapshot.habits.paper)
-    content = kind.build(snapshot, paper, request.build_absolute_uri("/"))
-    response = HttpResponse(content, content_type=kind.content_type)
+    parts = kind.parts(snapshot, paper, request.build_absolute_uri("/"))
+    response = _file(parts, kind.content_type, is_long=plan.bracelet_count > STREAMED_FROM)
     name = slugify(f"{sheet} {plan.batch_name} plan {plan.number}") or sheet
     disposition = "inline" if ending == "pdf" else "attachment"
     response["Content-Disposition"] = f'{disposition}; filename="{name}.{ending}"'
     return response
+
+
+def _file(parts: Iterable[bytes], content_type: str, *, is_long: bool) -> HttpResponseBase:
+    """A short file whole, with its length; a long one page by page as it is drawn."""
+    if is_long:
+        return StreamingHttpResponse(parts, content_type=content_type)
+    return HttpResponse(b"".join(parts), content_type=content_type)

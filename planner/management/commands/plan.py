@@ -102,7 +102,8 @@ def write_sheets(snapshot: Snapshot, folder: Path) -> list[Path]:
     written = []
     for (sheet, ending), kind in SHEET_FILES.items():
         target = folder / f"{sheet}.{ending}"
-        target.write_bytes(kind.build(snapshot, snapshot.habits.paper, ""))
+        with target.open("wb") as file:
+            file.writelines(kind.parts(snapshot, snapshot.habits.paper, ""))
         written.append(target)
     return written
 

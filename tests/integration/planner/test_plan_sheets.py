@@ -21,6 +21,7 @@ from planner.actions import make_plan
 from planner.models import Batch, Plan, PlanPurchase
 from planner.planning.snapshot import Snapshot
 from planner.plans.store import read_snapshot
+from planner.views import plans
 from tests.factories import make_order, put_thread
 
 
@@ -222,3 +223,15 @@ def test_unknown_sheet_is_not_found(page: Client, plan: Plan) -> None:
 def test_sheets_need_sign_in(client: Client, plan: Plan) -> None:
     address = reverse("plan_sheet", args=[plan.pk, "tags", "pdf"])
     assert client.get(address).status_code == 302
+
+
+@pytest.mark.parametrize("name", ["tags", "cutting", "purchase"])
+def test_sheet_of_many_bracelets_is_sent_as_it_is_drawn(
+    page: Client, plan: Plan, monkeypatch: pytest.MonkeyPatch, name: str
+) -> None:
+    whole = page.get(reverse("plan_sheet", args=[plan.pk, name, "pdf"]))
+    monkeypatch.setattr(plans, "STREAMED_FROM", 1)
+    streamed = page.get(reverse("plan_sheet", args=[plan.pk, name, "pdf"]))
+    assert (whole.streaming, streamed.streaming) == (False, True)
+    assert b"".join(streamed.streaming_content) == whole.content  # type: ignore[arg-type]
+    assert streamed["Content-Disposition"] == whole["Content-Disposition"]

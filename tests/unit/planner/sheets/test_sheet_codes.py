@@ -2,10 +2,12 @@
 
 import numpy as np
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 from sheet_factories import tag, tag_sheet
 from sheet_reading import decoded, page_count, rendered
 
-from planner.sheets.codes import MODULE_PT, CodeTextError, code_for
+from planner.sheets.codes import MODULE_PT, CodeTextError, code_for, code_side
 from planner.sheets.paper import PAPERS, millimetres
 from planner.sheets.tags import build_tag_sheet
 
@@ -99,3 +101,21 @@ def test_code_with_letters_beyond_ascii_decodes_as_written():
     address = "https://stall.example/t/Θάλασσα"
     document = build_tag_sheet(tag_sheet(tag(1, code_text=address)), PAPERS["a4"])
     assert [code.text for code in decoded(rendered(document, PRINTER_DPI))] == [address]
+
+
+@given(
+    st.one_of(
+        st.text(min_size=1, max_size=80), st.from_regex(r"[a-z:/0-9A-Z]{1,200}", fullmatch=True)
+    )
+)
+def test_side_is_that_of_the_code_itself(text):
+    assert code_side(text) == code_for(text).side_pt
+
+
+def test_side_of_a_text_without_code_is_refused_by_its_own_name():
+    for text in ("", "x" * 300, "x" * 5000):
+        with pytest.raises(CodeTextError) as wanted:
+            code_for(text)
+        with pytest.raises(CodeTextError) as found:
+            code_side(text)
+        assert str(found.value) == str(wanted.value)
