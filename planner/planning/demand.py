@@ -74,7 +74,7 @@ class ExplodedKind:
         return dict(self.kind.shades)
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, slots=True)
 class Bracelet:
     """One bracelet to make; `kind_index` points into the exploded kinds."""
 

@@ -73,7 +73,7 @@ class SnapshotKind:
         return lengths
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, slots=True)
 class SnapshotBracelet:
     """One bracelet; `key` is its page, None while the plan is not saved."""
 
@@ -86,7 +86,7 @@ class SnapshotBracelet:
     matched_set: str = ""
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, slots=True)
 class SnapshotCut:
     """One cut: the piece `piece_index` of the bracelet with this tag number."""
 
@@ -95,7 +95,7 @@ class SnapshotCut:
     cut_mm: int
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, slots=True)
 class SnapshotStock:
     """A skein or remnant that is cut from, its cuts in order, what is left of it."""
 

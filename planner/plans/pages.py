@@ -4,6 +4,7 @@ from collections import Counter, defaultdict
 from dataclasses import dataclass
 from typing import Any
 
+from django.core.paginator import Paginator
 from django.db.models import Count, Max
 from django.utils import timezone
 
@@ -27,6 +28,7 @@ from planner.plans.store import read_habits, read_kind
 
 # A hank of 40 m would press the skeins beside it flat: what is longer has a scale of its own.
 LONGEST_SCALE_MM = 10_000
+STOCK_A_PAGE = 50
 
 
 @dataclass(frozen=True)
@@ -155,9 +157,11 @@ def spoken_for(plan: Plan, shades: list[PlanShade]) -> list[dict[str, Any]]:
     ]
 
 
-def shade_page(shade: PlanShade) -> dict[str, Any]:
+def shade_page(shade: PlanShade, page_wanted: str | None = None) -> dict[str, Any]:
+    """Sums over all of a shade; cuts and bars of one page of its skeins."""
     stock = list(shade.stock.all())
-    cuts = _cuts_by_stock(shade)
+    page = Paginator(stock, STOCK_A_PAGE).get_page(page_wanted)
+    cuts = _cuts_by_stock(shade, list(page))
     scale_mm = min(LONGEST_SCALE_MM, max((row.reckoned_mm for row in stock), default=1))
     opened = {row.shelf_piece_number for row in stock}
     return {
@@ -170,7 +174,8 @@ def shade_page(shade: PlanShade) -> dict[str, Any]:
         "shelf": [{**thread, "opened": thread["number"] in opened} for thread in shade.shelf],
         "purchases": shade.purchases.all(),
         "lacking_mm": max(0, shade.need_mm - shade.usable_mm),
-        "stock": [_stock_row(row, cuts[row.pk], scale_mm, shade) for row in stock],
+        "page": page,
+        "stock": [_stock_row(row, cuts[row.pk], scale_mm, shade) for row in page],
         "back_mm": sum(row.left_mm for row in stock if row.goes_back),
         "waste_mm": sum(row.left_mm for row in stock if not row.goes_back),
         "new_mm": sum(row.reckoned_mm for row in stock if row.is_new),
@@ -180,10 +185,10 @@ def shade_page(shade: PlanShade) -> dict[str, Any]:
     }
 
 
-def _cuts_by_stock(shade: PlanShade) -> dict[int, list[Cut]]:
+def _cuts_by_stock(shade: PlanShade, stock: list[PlanStock]) -> dict[int, list[Cut]]:
     pieces_of = {row.pk: read_kind(row).pieces for row in shade.plan.kinds.all()}
     cuts: dict[int, list[Cut]] = defaultdict(list)
-    rows = shade.pieces.filter(stock__isnull=False).select_related("bracelet")
+    rows = shade.pieces.filter(stock__in=stock).select_related("bracelet")
     for row in rows.order_by("stock_id", "cut_position"):
         assert row.stock_id is not None
         piece = pieces_of[row.bracelet.kind_id][row.index]

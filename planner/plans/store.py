@@ -3,6 +3,7 @@
 from collections import defaultdict
 from dataclasses import asdict
 from decimal import Decimal
+from itertools import islice
 from typing import Any
 
 from patterns.geometry import Gauge, band_length_mm
@@ -159,14 +160,14 @@ def _store_cuts(
                 cut_at[cut.tag_number, cut.piece_index] = (stock_row, cut_position)
     PlanPurchase.objects.bulk_create(purchases)
     PlanStock.objects.bulk_create(stocks, batch_size=ROWS_AT_ONCE)
-    PlanPiece.objects.bulk_create(
-        (
-            _piece_row(bracelets[bracelet.number], row_of, index, piece, cut_at)
-            for bracelet in snapshot.bracelets
-            for index, piece in enumerate(snapshot.kinds[bracelet.kind_index].pieces)
-        ),
-        batch_size=ROWS_AT_ONCE,
+    pieces = (
+        _piece_row(bracelets[bracelet.number], row_of, index, piece, cut_at)
+        for bracelet in snapshot.bracelets
+        for index, piece in enumerate(snapshot.kinds[bracelet.kind_index].pieces)
     )
+    # A hundred thousand rows at once would lie in memory together.
+    while some := list(islice(pieces, ROWS_AT_ONCE)):
+        PlanPiece.objects.bulk_create(some)
 
 
 def _stock_row(shade: PlanShade, position: int, stock: SnapshotStock) -> PlanStock:

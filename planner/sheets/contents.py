@@ -66,7 +66,7 @@ class PurchaseSheet:
     missing: tuple[MissingShade, ...] = ()
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, slots=True)
 class SheetCut:
     """One piece on the cutting sheet: whose tag, which strands ("4 + 1"), how long, where to fold."""
 
@@ -77,7 +77,7 @@ class SheetCut:
     fold_mm: int | None
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, slots=True)
 class StockCut:
     """One skein or remnant and its cuts in order; `left_mm` goes back or is waste."""
 
@@ -122,7 +122,7 @@ class TagPiece:
     fold_mm: int | None
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, slots=True)
 class Tag:
     """One bracelet's tag."""
 

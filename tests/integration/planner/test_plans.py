@@ -1,5 +1,6 @@
 """Plans: right sums, a snapshot that stays, and pages that say what changed."""
 
+import re
 from collections import Counter
 from decimal import Decimal
 
@@ -10,11 +11,13 @@ from django.test.utils import CaptureQueriesContext
 from django.urls import reverse
 
 from inventory.actions import ChangeThread, RemoveThread, change_shelf
+from inventory.measures import format_length
 from inventory.models import PutUp, Shade
 from patterns.actions import add_pattern, change_pattern
 from patterns.models import Colourway, KnottedLength
 from planner.actions import make_plan
 from planner.models import Batch, Plan, PlanPiece
+from planner.plans import pages
 from planner.plans.store import read_snapshot
 from planner.plans.work_out import PlanError
 from tests.factories import (
@@ -235,6 +238,28 @@ def test_shade_page_full_and_fragment(page: Client, colourway: Colourway, batch:
     assert "<html" not in part.content.decode()
     assert "HX-Request" in part["Vary"]
     assert page.get(reverse("plan_shade", args=[plan.pk + 1, shade.pk])).status_code == 404
+
+
+def test_shade_page_shows_its_skeins_page_by_page(
+    page: Client, colourway: Colourway, batch: Batch, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """18 bracelets of two pieces of about 1 m: 36 pieces, 7 of 7.84 m, so 6 skeins."""
+    monkeypatch.setattr(pages, "STOCK_A_PAGE", 4)
+    make_order(batch, colourway, quantity=18)
+    shade = plan_of(batch).shades.all()[0]
+    address = reverse("plan_shade", args=[shade.plan_id, shade.pk])
+    assert shade.stock.count() == 6
+    left = format_length(shade.left_mm, "cm")
+    shown: list[str] = []
+    for number, count in ((1, 4), (2, 2)):
+        text = page.get(f"{address}?page={number}").content.decode()
+        assert text.count('<svg class="thread-bar"') == count
+        assert f"{address}?page={3 - number}" in text
+        assert f"− pieces cut = <strong>{left}</strong>" in text
+        shown += re.findall(r"for <a href=\"/b/\d+/\">tag (\d+)</a>", text)
+    assert Counter(shown) == {str(number): 2 for number in range(1, 19)}
+    for nonsense in ("0", "99", "x", "-1", "%00"):
+        assert page.get(f"{address}?page={nonsense}").status_code == 200
 
 
 def test_plan_pages_query_count_is_flat(page: Client, colourway: Colourway) -> None:
