@@ -90,9 +90,10 @@ class _Hands:
         self.free = [Counter(piece.length_mm for piece in pieces) for pieces in cut]
         self.given: list[list[CutPiece]] = [[] for _ in cut]
         self.wanted = _wanted_by_group(piece for pieces in cut for piece in pieces)
+        self.need = {key: _need_of(wanted) for key, wanted in self.wanted.items()}
         self.waiting: dict[Need, deque[str]] = defaultdict(deque)
         for key in sorted(self.wanted, key=_in_words):
-            self.waiting[self._need_of(key)].append(key)
+            self.waiting[self.need[key]].append(key)
         # The largest first: of those a whole one saves the most pairs.
         kinds = sorted(self.waiting, key=lambda need: (-sum(count for _, count in need), need))
         self.by_longest: dict[int, list[Need]] = defaultdict(list)
@@ -114,7 +115,7 @@ class _Hands:
         free = self.free[position]
         for length_mm in sorted(free, reverse=True):
             for key in _first_of(self.begun[length_mm]):
-                if _fits(self._need_of(key), free):
+                if _fits(self.need[key], free):
                     self._give(key, position)
 
     def give_whole(self, position: int) -> None:
@@ -133,8 +134,7 @@ class _Hands:
 
     def _best_for(self, length_mm: int, free: Counter[int]) -> str:
         begun = [
-            ((*_use(self._need_of(key), free), True), key)
-            for key in _first_of(self.begun[length_mm])
+            ((*_use(self.need[key], free), True), key) for key in _first_of(self.begun[length_mm])
         ]
         new = [((*_use(need, free), False), need) for need in _first_of(self.by_length[length_mm])]
         best_begun = max(begun, key=lambda each: each[0], default=None)
@@ -166,9 +166,7 @@ class _Hands:
             else:
                 del wanted[length_mm]
                 self.begun[length_mm].pop(key, None)
-
-    def _need_of(self, key: str) -> Need:
-        return tuple((length_mm, len(pieces)) for length_mm, pieces in self.wanted[key].items())
+        self.need[key] = _need_of(wanted)
 
 
 def _wanted_by_group(pieces: Iterable[CutPiece]) -> dict[str, dict[int, deque[CutPiece]]]:
@@ -176,6 +174,10 @@ def _wanted_by_group(pieces: Iterable[CutPiece]) -> dict[str, dict[int, deque[Cu
     for piece in sorted(pieces, key=lambda piece: (-piece.length_mm, piece.index)):
         wanted[piece.group_key][piece.length_mm].append(piece)
     return wanted
+
+
+def _need_of(wanted: dict[int, deque[CutPiece]]) -> Need:
+    return tuple((length_mm, len(pieces)) for length_mm, pieces in wanted.items())
 
 
 def _first_of(found: Iterable[Found]) -> list[Found]:

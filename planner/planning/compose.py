@@ -8,6 +8,7 @@ from typing import Any
 
 from patterns.cautions import cautions_for
 from planner.cutting import Opened
+from planner.cutting.cut_order import cut_order
 from planner.planning.demand import Bracelet, ExplodedKind, ShadeName
 from planner.planning.netting import NettedShade, ShelfThread, ThreadOffer, pieces_by_shade
 from planner.planning.snapshot import (
@@ -138,7 +139,8 @@ def _shade(
 
     new_count = 0
     stock = []
-    for opened in result.opened:
+    suppliers = {key: offer.supplier_name for key, offer in offers.items()}
+    for opened in cut_order(result.opened, suppliers=suppliers):
         if opened.offer_key is not None:
             new_count += 1
         stock.append(_stock(opened, new_count, threads, offers, piece_index, habits))
