@@ -114,7 +114,7 @@ class _Gap:
         limits = self.task.limits.at_most(SEARCH_SHARE * self.task.limits.left_s)
         found = cheapest_flow(wanted, [pool], self.bounds.cost, self.most, limits)
         if found.pools:
-            self.offer(_fillings(self.task, found.pools[0]))
+            self.offer(fillings_of(self.task, found.pools[0]))
         if found.verdict == "impossible" and self.best is None:
             self.bounds = replace(self.bounds, possible=False)
         elif found.verdict != "unknown" and self.best is not None:
@@ -137,7 +137,7 @@ def _trimmed(task: Task, plan: PatternPlan) -> Iterator[Filling]:
         tuple((column.size, tuple(_taken(left, column))) for column in from_shelf),
         tuple((put_up, tuple(_taken(left, column))) for column, put_up in bought),
     )
-    return _fillings(task, pool)
+    return fillings_of(task, pool)
 
 
 def _taken(left: dict[int, int], column: Column) -> Iterator[int]:
@@ -147,8 +147,21 @@ def _taken(left: dict[int, int], column: Column) -> Iterator[int]:
         yield from [length] * taken
 
 
-def _fillings(task: Task, pool: PoolPlan) -> Iterator[Filling]:
-    """Turn paths into fillings; of shelf pieces of one size in cells, each is opened once."""
+def fillings_of(task: Task, pool: PoolPlan) -> Iterator[Filling]:
+    """Turn paths into fillings.
+
+    Parameters
+    ----------
+    task
+        The problem of the pool alone.
+    pool
+        The paths.
+
+    Yields
+    ------
+    Filling
+        Of shelf pieces of one size in cells, each is opened once.
+    """
     counts: Counter[Filling] = Counter()
     lengths_mm = {
         size: [s.length_mm for s in task.shelf if s.size == size for _ in range(s.count)]

@@ -83,7 +83,7 @@ def solve(
     limits = Limits(started + max(0.0, time_limit_s), seed, stop)
     task = Task.of(problem, limits, keep_length_mm)
     task.check_lengths()
-    best, bounds = _search(task, work_limit)
+    best, bounds = settled(task, work_limit=work_limit)
     best, tidiest = tidied(task, best)
     purchase = [0] * len(problem.buy)
     for item, count in zip(task.sold, best.bought, strict=True):
@@ -123,8 +123,30 @@ def lower_bounds(problem: Problem) -> tuple[Decimal, int]:
     return task.money.amount(bounds.cost), bounds.bought
 
 
-def _search(task: Task, work_limit: int) -> tuple[Plan, Bounds]:
-    """Run one pass after the other until the bound is reached."""
+def settled(
+    task: Task, *, work_limit: int = WORK_LIMIT, thorough: bool = True
+) -> tuple[Plan, Bounds]:
+    """Run one pass after the other until the bound is reached.
+
+    Parameters
+    ----------
+    task
+        The problem.
+    work_limit
+        Table cells that the passes with random weights may fill.
+    thorough
+        Whether, where filling misses the bound, the linear bound and the exact search follow.
+
+    Returns
+    -------
+    tuple of (Plan, Bounds)
+        The best plan found and what is proven.
+
+    Raises
+    ------
+    CuttingError
+        When no plan exists, or none was found.
+    """
     bounds = task.length_bounds()
     best: Plan | None = None
     for number, fillings in enumerate(_passes(task, bounds, min(work_limit, FIRST_WORK_LIMIT))):
@@ -133,16 +155,21 @@ def _search(task: Task, work_limit: int) -> tuple[Plan, Bounds]:
             bounds = bounds.combined(task.rounded_bounds())
         if not bounds.possible or (best is not None and best.cost == bounds.cost):
             break
-    if bounds.possible and (best is None or best.cost > bounds.cost):
+    if thorough and bounds.possible and (best is None or best.cost > bounds.cost):
         best, bounds = proven_or_cheaper(task, best, bounds)
-    if best is not None and best.cost > bounds.cost and work_limit > FIRST_WORK_LIMIT:
-        for fillings in _learning_passes(task, bounds, work_limit, task.limits.seed + 1):
-            best = _better(task, best, fillings)
-            if best is not None and best.cost == bounds.cost:
-                break
+        if best is not None and best.cost > bounds.cost:
+            best = _learned(task, best, bounds, work_limit)
     if best is None:
         raise CuttingError(_no_plan(bounds))
     return best, bounds
+
+
+def _learned(task: Task, best: Plan, bounds: Bounds, work_limit: int) -> Plan:
+    for fillings in _learning_passes(task, bounds, work_limit, task.limits.seed + 1):
+        best = _better(task, best, fillings) or best
+        if best.cost == bounds.cost:
+            break
+    return best
 
 
 def _better(task: Task, best: Plan | None, fillings: list[Filling] | None) -> Plan | None:

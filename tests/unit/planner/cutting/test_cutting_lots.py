@@ -43,7 +43,7 @@ SKEIN = Offer("skein", "Quay Street", 8000, Decimal("1.20"))
 
 
 def check_lots(shade: Shade, result: LotResult) -> None:
-    """Every piece once, from one lot a group, from stock that exists; sums right; one supplier."""
+    """Every piece once, from one lot a group, from stock that exists, in whole packs; sums right."""
     groups, lots, offers = shade
     wanted = {
         (group.key, index): length
@@ -54,6 +54,7 @@ def check_lots(shade: Shade, result: LotResult) -> None:
     cut = [piece for one in result.opened for piece in one.pieces]
     assert len(cut) == len(wanted)
     assert {(piece.group_key, piece.index): piece.length_mm for piece in cut} == wanted
+    by_key = {offer.key: offer for offer in offers}
     lot_of: dict[str, set[str | None]] = {}
     for one in result.opened:
         lengths = [piece.length_mm for piece in one.pieces]
@@ -62,7 +63,8 @@ def check_lots(shade: Shade, result: LotResult) -> None:
         assert sum(lengths) + one.left_mm == one.length_mm
         assert one.left_mm >= 0
         for piece in one.pieces:
-            lot_of.setdefault(piece.group_key, set()).add(one.lot_key)
+            lot = one.lot_key if one.offer_key is None else by_key[one.offer_key].supplier
+            lot_of.setdefault(piece.group_key, set()).add(lot)
     assert all(len(found) == 1 for found in lot_of.values())
     shelf = {stock.key: (lot.key, stock.length_mm) for lot in lots for stock in lot.stock}
     old = [one for one in result.opened if one.stock_key is not None]
@@ -72,11 +74,18 @@ def check_lots(shade: Shade, result: LotResult) -> None:
         assert one.offer_key is None
     new = [one for one in result.opened if one.stock_key is None]
     assert all(one.lot_key is None for one in new)
-    by_key = {offer.key: offer for offer in offers}
-    assert Counter(one.offer_key for one in new) == Counter(dict(result.bought))
+    assert Counter(one.offer_key for one in new) <= Counter(dict(result.bought))
     assert all(by_key[str(one.offer_key)].length_mm == one.length_mm for one in new)
-    assert len({by_key[key].supplier for key, _ in result.bought}) <= 1
-    assert result.cost == sum((by_key[key].price * n for key, n in result.bought), Decimal(0))
+    cost = Decimal(0)
+    for key, count in result.bought:
+        offer = by_key[key]
+        packs, rest = divmod(count, offer.pack_size)
+        assert rest == 0
+        assert packs >= offer.minimum_packs
+        assert packs % offer.pack_step == 0
+        cost += packs * offer.price
+    assert result.cost == cost
+    assert result.lower_bound_without_lots <= result.cost_without_lots <= result.cost
     assert result.cost >= result.lower_bound
     assert sum(n for _, n in result.bought) >= result.bought_lower_bound
     if result.status == "optimal":
@@ -86,8 +95,12 @@ def check_lots(shade: Shade, result: LotResult) -> None:
 lengths = st.integers(1, 30)
 some_groups = st.lists(st.lists(lengths, max_size=4), max_size=8)
 some_lots = st.lists(st.lists(st.integers(0, 90), max_size=3), max_size=3)
+some_packs = st.one_of(
+    st.just((1, 1, 1)), st.tuples(st.integers(1, 4), st.integers(1, 3), st.integers(1, 2))
+)
 some_offers = st.lists(
-    st.tuples(st.sampled_from("AB"), st.integers(0, 60), st.decimals(0, 9, places=2)), max_size=3
+    st.tuples(st.sampled_from("AB"), st.integers(0, 60), st.decimals(0, 9, places=2), some_packs),
+    max_size=3,
 )
 
 
@@ -98,8 +111,8 @@ def shades(draw: st.DrawFn) -> Shade:
     groups += draw(st.lists(st.sampled_from(groups), max_size=4)) if groups else []
     lots = [[length * scale for length in one] for one in draw(some_lots)]
     offers = tuple(
-        Offer(f"offer {n}", supplier, length * scale, price)
-        for n, (supplier, length, price) in enumerate(draw(some_offers))
+        Offer(f"offer {n}", supplier, length * scale, price, *packs)
+        for n, (supplier, length, price, packs) in enumerate(draw(some_offers))
     )
     return make_groups(*groups), make_lots(*lots), offers
 
@@ -111,12 +124,16 @@ def pooled_bound(shade: Shade, result: LotResult) -> Decimal:
     problem = Problem(
         tuple(Demand(length, 1) for group in placed for length in group.pieces_mm),
         tuple(StockPiece(s.length_mm, 1) for lot in lots for s in lot.stock if s.length_mm),
-        tuple(PutUp(offer.length_mm, offer.price) for offer in offers if offer.length_mm),
+        tuple(
+            PutUp(o.length_mm, o.price, o.pack_size, o.minimum_packs, o.pack_step)
+            for o in offers
+            if o.length_mm
+        ),
     )
     return lower_bounds(problem)[0]
 
 
-def test_lower_bound_holds_for_a_mix_of_suppliers() -> None:
+def test_suppliers_are_mixed_where_that_is_cheaper() -> None:
     """A bracelet from each supplier costs 3 + 2 = 5; either supplier alone costs 6 or more."""
     groups = make_groups((4, 1), (2, 4))
     offers = (
@@ -125,9 +142,45 @@ def test_lower_bound_holds_for_a_mix_of_suppliers() -> None:
         Offer("short", "Y", 5, Decimal(2)),
     )
     result = solve_with_lots(groups, (), offers)
-    assert result.cost == 6
-    assert result.lower_bound <= 5
-    assert result.status == "feasible"
+    check_lots((groups, (), offers), result)
+    assert result.cost == 5
+    assert result.status == "optimal"
+
+
+def test_keeping_lots_apart_costs_a_skein_and_says_so() -> None:
+    """Two remnants of 1.5 m and a bracelet of two strands of 1.4 m: together they would do."""
+    groups = make_groups((1400, 1400))
+    lots = make_lots((1500,), (1500,))
+    result = solve_with_lots(groups, lots, (SKEIN,))
+    check_lots((groups, lots, (SKEIN,)), result)
+    assert (result.status, result.cost, result.lower_bound) == (
+        "optimal",
+        Decimal("1.20"),
+        Decimal("1.20"),
+    )
+    assert result.bought == (("skein", 1),)
+    assert (result.cost_without_lots, result.bought_without_lots) == (0, 0)
+    assert result.lower_bound_without_lots == 0
+
+
+def test_pack_of_twelve_is_bought_only_where_it_pays() -> None:
+    pack = Offer("pack", "Harbour Row", 8000, Decimal("9.00"), pack_size=12)
+    seven = make_groups(*[(4000, 4000)] * 7)
+    few = solve_with_lots(seven, (), (SKEIN, pack))
+    assert (few.bought, few.cost, few.status) == ((("skein", 7),), Decimal("8.40"), "optimal")
+    eight = make_groups(*[(4000, 4000)] * 8)
+    many = solve_with_lots(eight, (), (SKEIN, pack))
+    assert (many.bought, many.cost, many.status) == ((("pack", 12),), Decimal("9.00"), "optimal")
+    assert len(many.opened) == 8
+
+
+def test_minimum_and_steps_of_packs_are_kept() -> None:
+    offer = Offer("pair", "X", 8000, Decimal("2.00"), pack_size=2, minimum_packs=3, pack_step=2)
+    result = solve_with_lots(make_groups((7000,)), (), (offer,))
+    # Three packs at least, and only two or four at a time: four packs are eight skeins.
+    assert (result.bought, result.cost, result.status) == ((("pair", 8),), 8, "optimal")
+    nine = solve_with_lots(make_groups(*[(7000,)] * 9), (), (offer,))
+    assert (nine.bought, nine.cost) == ((("pair", 12),), 12)
 
 
 @settings(deadline=None, max_examples=200)

@@ -110,14 +110,32 @@ def test_plan_counts_pieces_not_metres() -> None:
     assert result.status == "optimal"
 
 
-def test_plan_takes_the_shelf_before_buying() -> None:
-    result = solve(make_problem({1000: 10}, {3000: 1, 2500: 1}, {8000: "2"}))
-    assert result.cost == 2
+def test_plan_takes_from_the_shelf_what_saves_a_skein() -> None:
+    result = solve(make_problem({1000: 13}, {3000: 1, 2500: 1}, {8000: "2"}))
+    assert (result.cost, result.status) == (2, "optimal")
     assert [(cut.length_mm, cut.new, len(cut.pieces_mm)) for cut in result.cuts] == [
         (2500, False, 2),
         (3000, False, 3),
-        (8000, True, 5),
+        (8000, True, 8),
     ]
+
+
+def test_plan_at_one_cost_wastes_least_then_leaves_fewest_pieces_then_opens_fewest() -> None:
+    # Seven pieces of 1 m fit into the new skein; what is left of it is 1 m, nothing is wasted.
+    result = solve(make_problem({1000: 7}, {}, {8000: "2"}))
+    assert (result.waste_mm, result.leftovers, result.tidiest) == (0, 1, True)
+    # A remnant of 3 m is used up before a whole skein of the shelf is begun.
+    shelf = solve(make_problem({1000: 3}, {3000: 1, 8000: 1}))
+    assert [(cut.length_mm, cut.left_mm) for cut in shelf.cuts] == [(3000, 0)]
+    assert shelf.tidiest
+
+
+def test_leftovers_are_least_scrap_then_few_pieces() -> None:
+    """After Cherri, Arenales & Yanasse, EJOR 196 (2009) 897-908: stock 100, keep 50 or more."""
+    result = solve(make_problem({40: 3, 30: 2, 25: 1}, {}, {100: "1"}), keep_length_mm=50)
+    assert (result.bought, result.waste_mm, result.leftovers) == (3, 20, 1)
+    assert result.status == "optimal"
+    assert result.tidiest
 
 
 def test_plan_buys_a_short_put_up_at_the_end() -> None:
