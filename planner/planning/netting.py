@@ -3,9 +3,10 @@
 import logging
 import time
 from collections import defaultdict
-from collections.abc import Iterable, Mapping
+from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from decimal import Decimal
+from functools import partial
 from typing import Literal
 
 from planner.cutting import CuttingError, Group, Lot, LotResult, LotStock, Offer, solve_with_lots
@@ -73,6 +74,7 @@ def net(
     *,
     time_limit_s: float = 10.0,
     seed: int = 0,
+    keep_length_mm: int = 300,
     watcher: Watcher | None = None,
 ) -> tuple[NettedShade, ...]:
     """Meet the need of every shade from the shelf first, then from new thread.
@@ -84,15 +86,24 @@ def net(
     offers : put-ups that can be bought.
     time_limit_s : for one shade [s].
     seed : for the solver.
+    keep_length_mm : what is left of an opened piece is waste when shorter than this [mm].
     watcher : hears which shade is begun, and may ask to stop.
 
     Returns
     -------
     One entry a shade needed, by first use. All pieces of one shade in one bracelet come
     from one dye lot. A shade on which the solver raises is "failed" and one that a stop came
-    before is "stopped": both without a plan, and the other shades as if they were alone.
+    before is "stopped": both without a plan, and the other shades as if they were alone. The
+    shade that a stop comes upon has the best plan found until then.
     """
     watcher = watcher or Unwatched()
+    solve = partial(
+        solve_with_lots,
+        time_limit_s=time_limit_s,
+        seed=seed,
+        keep_length_mm=keep_length_mm,
+        stop=watcher.stop_wanted,
+    )
     groups = groups_by_shade(kinds, bracelets)
     shelf_by_shade: dict[int, list[ShelfThread]] = defaultdict(list)
     for thread in shelf:
@@ -104,7 +115,7 @@ def net(
             netted.append(_netted(shade, wanted, own, _without_plan("stopped", wanted, STOPPED)))
             continue
         watcher.shade_begins(position, len(groups), shade)
-        result = _solved(shade, wanted, own, offers, time_limit_s, seed)
+        result = _solved(shade, wanted, own, offers, solve)
         netted.append(_netted(shade, wanted, own, result))
     return tuple(netted)
 
@@ -141,13 +152,12 @@ def _solved(
     groups: list[Group],
     shelf: list[ShelfThread],
     offers: tuple[ThreadOffer, ...],
-    time_limit_s: float,
-    seed: int,
+    solve: Callable[..., LotResult],
 ) -> LotResult:
     """Work out one shade; whatever goes wrong in it is told in its result."""
     started = time.monotonic()
     try:
-        return solve_with_lots(
+        return solve(
             tuple(groups),
             _lots(shelf),
             tuple(
@@ -155,8 +165,6 @@ def _solved(
                 for offer in offers
                 if offer.serves(shade)
             ),
-            time_limit_s=time_limit_s,
-            seed=seed,
         )
     except CuttingError as reason:
         message = str(reason)

@@ -48,7 +48,14 @@ def work_out_plan(
     _check_pieces(kinds, bracelets)
     shade_ids = {shade for kind in kinds for _, shade in kind.kind.shades}
     shelf = load_shelf(shade_ids, workshop)
-    netted = net(kinds, bracelets, shelf.threads, shelf.offers, watcher=watcher)
+    netted = net(
+        kinds,
+        bracelets,
+        shelf.threads,
+        shelf.offers,
+        keep_length_mm=workshop.keep_length_mm,
+        watcher=watcher,
+    )
     _check_worked_out(netted)
     return compose(
         batch_name=batch_name,

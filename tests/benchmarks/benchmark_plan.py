@@ -94,7 +94,16 @@ def plan_and_store(batch: Any, watch: Watch) -> tuple[Any, Any]:
     kinds, bracelets = watch.time("explode", lambda: explode(orders))
     shades = {shade for kind in kinds for _, shade in kind.kind.shades}
     shelf = watch.time("load shelf", lambda: load_shelf(shades, workshop))
-    netted = watch.time("net and cut", lambda: net(kinds, bracelets, shelf.threads, shelf.offers))
+    netted = watch.time(
+        "net and cut",
+        lambda: net(
+            kinds,
+            bracelets,
+            shelf.threads,
+            shelf.offers,
+            keep_length_mm=workshop.keep_length_mm,
+        ),
+    )
     snapshot = watch.time(
         "compose",
         lambda: compose(

@@ -139,3 +139,30 @@ def test_net_begins_nothing_after_a_stop() -> None:
     watcher = StopsAt(2)
     net_three(watcher)
     assert watcher.heard == [(1, 3, 1), (2, 3, 2)]
+
+
+def test_net_lets_the_solver_ask_whether_to_stop(monkeypatch: pytest.MonkeyPatch) -> None:
+    solve, asked = netting.solve_with_lots, []
+
+    def asking(*args: Any, stop: Callable[[], bool], **kwargs: Any) -> LotResult:
+        asked.append(stop())
+        assert kwargs["keep_length_mm"] == 450
+        return solve(*args, stop=stop, **kwargs)
+
+    monkeypatch.setattr(netting, "solve_with_lots", asking)
+    kinds, bracelets = explode((Order(1, make_kind("A A B B C C"), 5),))
+    watcher = StopsAt(2)
+    netted = net(kinds, bracelets, (), (make_offer(),), keep_length_mm=450, watcher=watcher)
+    assert asked == [False, True]
+    assert [one.result.unplaced == () for one in netted] == [True, True, False]
+
+
+def test_net_out_of_time_has_a_plan_for_every_shade() -> None:
+    """A time limit of nothing leaves the quick rules, which always find one."""
+    kinds, bracelets = explode((Order(1, make_kind("A A B B C C"), 40),))
+    shelf = [make_thread(number, 1_100 + 37 * number) for number in range(1, 30)]
+    for one in net(kinds, bracelets, shelf, (make_offer(),), time_limit_s=0.0):
+        assert one.result.status in ("optimal", "feasible")
+        assert one.result.unplaced == ()
+        assert sum(len(opened.pieces) for opened in one.result.opened) == one.piece_count == 80
+        assert one.result.lower_bound <= one.result.cost
