@@ -13,11 +13,11 @@ from planner.cutting.task import Plan, Task
 
 MOST_PIECES = 3_000
 """With more pieces one order of the stock is tried only."""
-MOST_ARCS = 4_000
-MOST_ENDS = 8_000
-MOST_NODES = 500
+MOST_ARCS = 2_000
+MOST_ENDS = 3_000
+MOST_NODES = 100
 """Nodes of the search tree: work, not time, so that plans repeat."""
-LONGEST_S = 1.5
+LONGEST_S = 0.3
 
 
 def tidied(task: Task, plan: Plan) -> tuple[Plan, bool]:

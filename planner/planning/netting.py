@@ -84,7 +84,7 @@ def net(
     kinds, bracelets : as `explode` returns them.
     shelf : thread on the shelf, of any shade.
     offers : put-ups that can be bought.
-    time_limit_s : for one shade [s].
+    time_limit_s : for all shades together [s]; what a shade does not need, later ones may use.
     seed : for the solver.
     keep_length_mm : what is left of an opened piece is waste when shorter than this [mm].
     watcher : hears which shade is begun, and may ask to stop.
@@ -99,7 +99,6 @@ def net(
     watcher = watcher or Unwatched()
     solve = partial(
         solve_with_lots,
-        time_limit_s=time_limit_s,
         seed=seed,
         keep_length_mm=keep_length_mm,
         stop=watcher.stop_wanted,
@@ -108,6 +107,7 @@ def net(
     shelf_by_shade: dict[int, list[ShelfThread]] = defaultdict(list)
     for thread in shelf:
         shelf_by_shade[thread.shade].append(thread)
+    deadline = time.monotonic() + time_limit_s
     netted = []
     for position, (shade, wanted) in enumerate(groups.items(), start=1):
         own = shelf_by_shade[shade]
@@ -115,7 +115,9 @@ def net(
             netted.append(_netted(shade, wanted, own, _without_plan("stopped", wanted, STOPPED)))
             continue
         watcher.shade_begins(position, len(groups), shade)
-        result = _solved(shade, wanted, own, offers, solve)
+        left_s = max(0.0, deadline - time.monotonic())
+        share_s = left_s / (len(groups) - position + 1)
+        result = _solved(shade, wanted, own, offers, partial(solve, time_limit_s=share_s))
         netted.append(_netted(shade, wanted, own, result))
     return tuple(netted)
 
