@@ -9,9 +9,9 @@ ISO/IEC 18004, Information technology: QR code bar code symbology specification 
 from dataclasses import dataclass
 from functools import lru_cache
 
-import segno
 from reportlab.lib.colors import black, white
 
+from planner.sheets.code_masks import symbol_of
 from planner.sheets.paper import millimetres
 from planner.sheets.pen import Pen
 
@@ -19,7 +19,7 @@ QUIET_MODULES = 4
 # Four dots of a 203 dpi printer, as a whole number of its dots.
 MODULE_PT = 4 * 72 / 203
 LEAST_SIDE_PT = millimetres(12)
-_HIGHEST_VERSION = 10
+_MOST_MODULES = 17 + 4 * 10  # version 10
 
 
 class CodeTextError(ValueError):
@@ -64,15 +64,15 @@ def code_for(text: str) -> Code:
     if not text:
         raise CodeTextError("A tag's code needs a text: the address of the bracelet's page.")
     try:
-        symbol = segno.make_qr(text, error="L", encoding="utf-8", boost_error=True)
+        symbol = symbol_of(text)
     except ValueError as reason:
         raise CodeTextError(f"This text does not fit a code: {text[:40]!r}.") from reason
-    if int(symbol.version) > _HIGHEST_VERSION:
+    if len(symbol) > _MOST_MODULES:
         raise CodeTextError(
             f"The address of a bracelet's page is too long for a tag ({len(text)} characters): "
             "use a shorter site address."
         )
-    rows = [bytes(row) for row in symbol.matrix]
+    rows = [bytes(row) for row in symbol.astype("uint8")]
     return Code(len(rows), tuple(_runs(rows)))
 
 
@@ -102,14 +102,11 @@ def _runs(rows: list[bytes]) -> list[tuple[int, int, int]]:
     """Gather neighbouring dark modules of each row."""
     found = []
     for row_number, row in enumerate(rows):
-        column = 0
-        while column < len(row):
-            end = column
-            while end < len(row) and row[end]:
-                end += 1
-            if end > column:
-                found.append((column, row_number, end - column))
-            column = end + 1
+        end = 0
+        while (column := row.find(1, end)) >= 0:
+            end = row.find(0, column)
+            end = end if end >= 0 else len(row)
+            found.append((column, row_number, end - column))
     return found
 
 
