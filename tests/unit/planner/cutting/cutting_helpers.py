@@ -45,10 +45,6 @@ def check_plan(problem: Problem, result: Result) -> None:
     shelf: Counter[int] = Counter()
     for stock in problem.stock:
         shelf[stock.length_mm] += stock.count
-    price = {
-        put_up.length_mm: min(p.price for p in problem.buy if p.length_mm == put_up.length_mm)
-        for put_up in problem.buy
-    }
     cut: Counter[int] = Counter()
     for one in result.cuts:
         assert one.pieces_mm, "a stock piece is opened for nothing"
@@ -58,9 +54,23 @@ def check_plan(problem: Problem, result: Result) -> None:
         cut.update(one.pieces_mm)
     assert cut == +wanted
     assert not Counter(one.length_mm for one in result.cuts if not one.new) - shelf
-    new = [one.length_mm for one in result.cuts if one.new]
-    assert result.cost == sum((price[length] for length in new), Decimal(0))
-    assert result.bought == len(new) >= result.bought_lower_bound
+    new = Counter(one.put_up for one in result.cuts if one.new)
+    assert all(
+        one.length_mm == problem.buy[one.put_up].reckoned_mm
+        for one in result.cuts
+        if one.put_up is not None
+    )
+    assert all((one.put_up is not None) == one.new for one in result.cuts)
+    cost = Decimal(0)
+    for index, (put_up, bought) in enumerate(zip(problem.buy, result.purchase, strict=True)):
+        packs, rest = divmod(bought, put_up.pack_size)
+        assert rest == 0
+        assert not packs or packs >= put_up.minimum_packs
+        assert packs % put_up.pack_step == 0
+        assert new[index] <= bought
+        cost += packs * put_up.price
+    assert result.cost == cost
+    assert result.bought == sum(result.purchase) >= result.bought_lower_bound
     assert result.cost >= result.lower_bound
     assert (result.status == "optimal") == (result.cost == result.lower_bound)
 
