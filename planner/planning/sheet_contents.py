@@ -8,6 +8,8 @@ from decimal import Decimal
 from patterns.drawing import draw_band
 from patterns.pattern_file import read_pattern
 from patterns.shapes import Drawing
+from planner.cutting.stacks import Skein, stacks
+from planner.planning.bench import lots_at_the_bench, source_of
 from planner.planning.snapshot import (
     Snapshot,
     SnapshotKind,
@@ -24,6 +26,7 @@ from planner.sheets.contents import (
     ShadeCuts,
     SheetCut,
     SheetHead,
+    StackCut,
     StockCut,
     SupplierOrder,
     Tag,
@@ -132,13 +135,30 @@ def cutting_sheet(snapshot: Snapshot) -> CuttingSheet:
                 shade_code=shade.code,
                 shade_name=shade.name,
                 shade_colour=shade.colour,
-                stock=tuple(_stock_cut(stock, cut_on_sheet) for stock in shade.stock),
+                stacks=_stacks(shade, cut_on_sheet),
             )
             for shade in snapshot.shades
             if shade.stock
         ),
         notices=left_out(snapshot),
     )
+
+
+def _stacks(
+    shade: SnapshotShade, cut_on_sheet: Callable[[int, int], SheetCut]
+) -> tuple[StackCut, ...]:
+    lots = lots_at_the_bench(shade.stock, [item.put_up_name for item in shade.purchases])
+    skeins = [
+        Skein(lot, tuple(cut.cut_mm for cut in stock.cuts))
+        for lot, stock in zip(lots, shade.stock, strict=True)
+    ]
+    found = []
+    for stack in stacks(skeins):
+        own = shade.stock[stack.first : stack.first + stack.count]
+        found.append(
+            StackCut(source_of(own), tuple(_stock_cut(stock, cut_on_sheet) for stock in own))
+        )
+    return tuple(found)
 
 
 def _stock_cut(stock: SnapshotStock, cut_on_sheet: Callable[[int, int], SheetCut]) -> StockCut:

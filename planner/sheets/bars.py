@@ -3,11 +3,12 @@
 All coordinates are points, lengths of thread are whole millimetres.
 """
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 from reportlab.lib.colors import HexColor
 
-from planner.sheets.contents import StockCut
+from planner.sheets.contents import SheetCut, StockCut
 from planner.sheets.fonts import STRONG, width_of
 from planner.sheets.pen import INK, WHITE, Pen, thread_colour
 
@@ -21,12 +22,12 @@ _MOST_ROWS = 12
 
 @dataclass(frozen=True)
 class Segment:
-    """A part of a bar in one of its rows; `tag_number` is None for what is left."""
+    """A part of a bar in one of its rows; `cut` is None for what is left."""
 
     row: int
     start_mm: int
     end_mm: int
-    tag_number: int | None
+    cut: SheetCut | None
     labelled: bool
 
 
@@ -55,12 +56,12 @@ def segments_of(stock: StockCut, row_mm: int) -> list[Segment]:
     """Cut a bar into segments, and those at the end of rows; the largest part has the label."""
     found: list[Segment] = []
     place = 0
-    parts: list[tuple[int, int | None]] = [(cut.cut_mm, cut.tag_number) for cut in stock.cuts]
-    for length, tag_number in [*parts, (stock.left_mm, None)]:
+    parts: list[tuple[int, SheetCut | None]] = [(cut.cut_mm, cut) for cut in stock.cuts]
+    for length, cut in [*parts, (stock.left_mm, None)]:
         pieces = _split(place, place + length, row_mm)
         largest = max(pieces, key=lambda piece: piece[2] - piece[1], default=None)
         found += [
-            Segment(row, start, end, tag_number, (row, start, end) == largest)
+            Segment(row, start, end, cut, (row, start, end) == largest)
             for row, start, end in pieces
         ]
         place += length
@@ -78,13 +79,20 @@ def _split(start_mm: int, end_mm: int, row_mm: int) -> list[tuple[int, int, int]
     return found
 
 
-def hatch_gap(stock: StockCut) -> float:
+def hatch_gap(goes_back: bool) -> float:
     """Choose a wide hatch for what goes back, a narrow one for waste [pt]."""
-    return 6.0 if stock.goes_back else 2.6
+    return 6.0 if goes_back else 2.6
 
 
 def draw_bar(
-    pen: Pen, stock: StockCut, colour: str, x: float, top: float, width: float, row_mm: int
+    pen: Pen,
+    stock: StockCut,
+    colour: str,
+    x: float,
+    top: float,
+    width: float,
+    row_mm: int,
+    label: Callable[[SheetCut], str],
 ) -> None:
     """Draw a bar with its upper left corner at (x, top); `width` stands for `row_mm`."""
     canvas, scale = pen.canvas, width / row_mm
@@ -94,20 +102,20 @@ def draw_bar(
         foot = top - segment.row * BAR_STEP_PT - BAR_PT
         canvas.setFillColor(HexColor(WHITE))
         canvas.rect(left, foot, long, BAR_PT, stroke=0, fill=1)
-        if segment.tag_number is None:
-            pen.hatch(left, foot, long, BAR_PT, hatch_gap(stock))
+        if segment.cut is None:
+            pen.hatch(left, foot, long, BAR_PT, hatch_gap(stock.goes_back))
         else:
             canvas.setFillColor(thread_colour(colour))
             canvas.rect(left, foot, long, _THREAD_PT, stroke=0, fill=1)
         canvas.setStrokeColor(HexColor(INK))
         canvas.setLineWidth(0.5)
         canvas.rect(left, foot, long, BAR_PT, stroke=1, fill=0)
-        if segment.tag_number is not None and segment.labelled:
-            _draw_label(pen, str(segment.tag_number), left, long, foot)
+        if segment.cut is not None and segment.labelled:
+            _draw_label(pen, label(segment.cut), left, long, foot)
 
 
 def _draw_label(pen: Pen, label: str, left: float, long: float, foot: float) -> None:
-    """Write a tag number where it fits; the list of cuts has it in any case."""
+    """Write a number where it fits; the list of cuts has it in any case."""
     for size in (_LABEL_PT, 6.5, 5.5):
         if width_of(label, STRONG, size) + 2 <= long:
             base = foot + _THREAD_PT + (BAR_PT - _THREAD_PT - size * 0.66) / 2

@@ -90,13 +90,26 @@ class StockCut:
 
 
 @dataclass(frozen=True)
+class StackCut:
+    """Skeins of one lot that are cut alike and laid together; mostly it is one alone."""
+
+    source: str
+    skeins: tuple[StockCut, ...]
+
+
+@dataclass(frozen=True)
 class ShadeCuts:
     """All cuts of one shade, lot by lot."""
 
     shade_code: str
     shade_name: str
     shade_colour: str
-    stock: tuple[StockCut, ...]
+    stacks: tuple[StackCut, ...]
+
+    @property
+    def stock(self) -> tuple[StockCut, ...]:
+        """All skeins and remnants, in the order of the cuts."""
+        return tuple(skein for stack in self.stacks for skein in stack.skeins)
 
 
 @dataclass(frozen=True)

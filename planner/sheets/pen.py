@@ -109,9 +109,19 @@ class Pen:
         self.canvas.drawString(start, y, words)
         return width
 
-    def figure(self, x: float, y: float, figure: str, size: float, *, font: str = REGULAR) -> None:
+    def figure(
+        self,
+        x: float,
+        y: float,
+        figure: str,
+        size: float,
+        *,
+        font: str = REGULAR,
+        colour: str = INK,
+    ) -> None:
         """Write a figure so that its whole number ends at x, whatever stands behind it."""
-        self.text(x - width_of(whole_part(figure), font, size), y, figure, size, font=font)
+        start = x - width_of(whole_part(figure), font, size)
+        self.text(start, y, figure, size, font=font, colour=colour)
 
     def rule(
         self, x: float, y: float, width: float, colour: str = RULE, thickness: float = 0.5

@@ -56,41 +56,79 @@ def test_tags_every_code_opens_its_own_bracelet(page: Client, plan: Plan, paper:
         assert page.get(address.removeprefix("http://testserver")).status_code == 200
 
 
-# As the text of the pages reads. A shade: its code over what there is to cut from. A thread: its
-# reckoned length, then its source. A cut: its place, length, tag, strands with their slot, fold.
+# As the text of the pages reads. A shade: its code over what there is to cut from. A thread, or
+# several cut alike: its reckoned length, then its source. A row of cuts: its length, how often it
+# is cut from each thread (not told again in a further row), tags, strands with their slot, fold.
 CUTTING_LINE = re.compile(
     r"^(?P<shade>\S+)\n(?:\(continued\)|\d+ threads? to cut from)$"
     r"|to count on\n(?P<source>.+?)(?: \(continued\))?$"
-    r"|^\d+\n(?P<length>[\d.]+)\n(?P<tag>\d+)\n(?P<strands>\d+(?P<other> \+ \d+)? [A-Z])$"
+    r"|^(?P<length>[\d.]+)\n(?:× (?P<each>\d+)\n)?(?P<tags>\d[\d, –]*)\n"
+    r"(?P<strands>\d+(?P<other> \+ \d+)?(?:, [\d +]+)*)  ?(?P<slot>[A-Z])$"
     r"(?(other)\n(?P<fold>[\d.]+)$)",
     re.MULTILINE,
 )
-Cut = tuple[str, str, int, str, int, int | None]
+Cut = tuple[int, str, str, int, int | None]
+Threads = tuple[str, tuple[str, ...]]
 TagPiece = tuple[str, str, int, int | None]
 
 
 def test_cutting_sheet_has_every_cut_of_the_plan_once(page: Client, plan: Plan) -> None:
-    written = list(_cuts_written(text_of(sheet(page, plan, "cutting", "pdf"))))
-    wanted = list(_cuts_planned(read_snapshot(plan)))
-    assert len(wanted) == plan.piece_count
-    assert {fold is None for *_, fold in wanted} == {True, False}
-    assert Counter(written) == Counter(wanted)
+    _check_cuts(page, plan)
 
 
-def _cuts_written(text: str) -> Iterator[Cut]:
-    shade = source = ""
+def test_skeins_cut_alike_are_on_the_cutting_sheet_once(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    """Their pieces are listed together: equal lengths of one lot are interchangeable."""
+    make_order(batch, colourway, quantity=60)
+    written = _check_cuts(page, make_plan(batch=batch, user=None))
+    assert any(len(names) > 1 for _, names in written)
+
+
+def _check_cuts(page: Client, plan: Plan) -> dict[Threads, list[Cut]]:
+    written = _cuts_written(text_of(sheet(page, plan, "cutting", "pdf")))
+    wanted = dict(_cuts_planned(read_snapshot(plan)))
+    assert sum(len(cuts) for cuts in wanted.values()) == plan.piece_count
+    named = [(shade, name) for shade, names in written for name in names]
+    assert Counter(named) == Counter(list(wanted))
+    for (shade, names), cuts in written.items():
+        own = [wanted[shade, name] for name in names]
+        assert Counter(cuts) == Counter(cut for each in own for cut in each)
+        lengths = [sorted(cut[3] for cut in each) for each in own]
+        assert lengths == [lengths[0]] * len(own)
+    return written
+
+
+def _cuts_written(text: str) -> dict[Threads, list[Cut]]:
+    found: dict[Threads, list[Cut]] = {}
+    shade = ""
+    threads: Threads = ("", ())
     for line in CUTTING_LINE.finditer(text):
         shade = line["shade"] or shade
-        source = line["source"] or source
+        if line["source"]:
+            threads = shade, tuple(_names(line["source"]))
+            found.setdefault(threads, [])
         if line["length"]:
-            yield (
-                shade,
-                source,
-                int(line["tag"]),
-                line["strands"],
-                _whole_mm(line["length"]),
-                _whole_mm(line["fold"]) if line["fold"] else None,
-            )
+            found[threads] += _cuts_of_row(line)
+    return found
+
+
+def _names(source: str) -> Iterator[str]:
+    """Two and more are named together: "New thread 2 to 5: ...", "Pieces 4, 7: ..."."""
+    name, _, numbers = source.partition(":")[0].rpartition("thread ")
+    word = "new thread" if name else "piece"
+    for part in (numbers if name else source.partition(":")[0].partition(" ")[2]).split(", "):
+        first, _, last = part.partition(" to ")
+        yield from (f"{word} {number}" for number in range(int(first), int(last or first) + 1))
+
+
+def _cuts_of_row(line: re.Match[str]) -> Iterator[Cut]:
+    for part in line["tags"].split(", "):
+        first, _, last = part.partition("–")
+        for tag in range(int(first), int(last or first) + 1):
+            for strands in line["strands"].split(", "):
+                fold = _whole_mm(line["fold"]) if line["fold"] else None
+                yield tag, strands, line["slot"], _whole_mm(line["length"]), fold
 
 
 def _whole_mm(centimetres: str) -> int:
@@ -99,17 +137,18 @@ def _whole_mm(centimetres: str) -> int:
     return int(length_mm)
 
 
-def _cuts_planned(snapshot: Snapshot) -> Iterator[Cut]:
+def _cuts_planned(snapshot: Snapshot) -> Iterator[tuple[tuple[str, str], list[Cut]]]:
     kinds = {
         bracelet.number: snapshot.kinds[bracelet.kind_index] for bracelet in snapshot.bracelets
     }
     for shade in snapshot.shades:
         for stock in shade.stock:
-            source = f"{stock.source}, lot {stock.lot_name}" if stock.lot_name else stock.source
+            cuts = []
             for cut in stock.cuts:
                 piece = kinds[cut.tag_number].pieces[cut.piece_index]
-                strands = f"{' + '.join(map(str, piece.strands))} {piece.slot}"
-                yield shade.code, source, cut.tag_number, strands, cut.cut_mm, piece.fold_mm
+                strands = " + ".join(map(str, piece.strands))
+                cuts.append((cut.tag_number, strands, piece.slot, cut.cut_mm, piece.fold_mm))
+            yield (shade.code, stock.source.partition(":")[0]), cuts
 
 
 # A tag: its number over the pattern's name. A piece: slot, strands, shade's code and name, length

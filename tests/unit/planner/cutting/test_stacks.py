@@ -1,6 +1,7 @@
 """Stacks and settings of the winding board, by hand and under Hypothesis."""
 
 from collections import Counter
+from itertools import pairwise
 
 from hypothesis import given
 from hypothesis import strategies as st
@@ -73,6 +74,6 @@ def test_every_piece_is_in_one_stack_and_at_one_setting(skeins: list[Skein]) -> 
 def test_stacks_are_as_few_as_can_be(skeins: list[Skein]) -> None:
     """No two neighbours could be laid together."""
     found = stacks(skeins)
-    for before, after in zip(found, found[1:], strict=False):
+    for before, after in pairwise(found):
         one, other = skeins[before.first], skeins[after.first]
         assert one.lot != other.lot or one.lengths_mm != other.lengths_mm

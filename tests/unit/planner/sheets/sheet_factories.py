@@ -14,6 +14,7 @@ from planner.sheets.contents import (
     ShadeCuts,
     SheetCut,
     SheetHead,
+    StackCut,
     StockCut,
     SupplierOrder,
     Tag,
@@ -135,7 +136,8 @@ def stock(
 
 
 def shade_cuts(shade: int, *pieces: StockCut) -> ShadeCuts:
-    return ShadeCuts(*SHADES[shade % len(SHADES)], pieces)
+    stacks = tuple(StackCut(piece.source, (piece,)) for piece in pieces)
+    return ShadeCuts(*SHADES[shade % len(SHADES)], stacks)
 
 
 def cutting_sheet(*shades: ShadeCuts, unit: str = "cm") -> CuttingSheet:
