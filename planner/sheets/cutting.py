@@ -230,7 +230,7 @@ class _StackBlock:
 
     def _left_words(self, skeins: list[StockCut]) -> str:
         one, together = skeins[0], len(self.stack.skeins)
-        of_which = " of each" if together > 1 else ""
+        of_which = " of each" if together > 1 and one.left_mm else ""
         if len(skeins) < together:
             names = (plain_text(skein.source).partition(":")[0] for skein in skeins)
             of_which = f" of {', '.join(names)}"

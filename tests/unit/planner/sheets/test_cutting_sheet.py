@@ -127,6 +127,12 @@ def test_rests_of_skeins_cut_alike_are_told_apart():
     assert "2 cm of piece 9 left: waste" in text
 
 
+def test_skeins_cut_alike_with_nothing_left_say_so_once():
+    stack = StackCut("new thread 1, 2: hank", (alike(1, left_mm=0), alike(2, left_mm=0)))
+    text = all_text(build_cutting_sheet(cutting_sheet(ShadeCuts(*SHADES[0], (stack,))), A4))
+    assert text.count("Nothing left.") == 1
+
+
 def test_length_is_told_again_where_its_tags_go_on():
     cuts = (SheetCut(8, "1", "A", 870, None), SheetCut(11, "2", "A", 870, None))
     piece = stock(1, 2, 2000, cuts=cuts, left_mm=260)
