@@ -83,11 +83,39 @@ class ThreadAddForm(ThreadForm):
     field_order = ["kind", "length", "count", "lot_name", "note"]
 
 
+PACK_FIELDS = ("pack_size", "minimum_packs", "pack_step")
+MOST_IN_PACKS = 1_000
+
+
 class PutUpForm(forms.ModelForm):
     name = LineField(label="Name", max_length=80, help_text="Like “skein” or “cone, small”.")
     supplier_name = LineField(label="Supplier", max_length=80)
     length_mm = LengthField(label="Length")
     price = PriceField(label="Price")
+    pack_size = QuantityField(
+        label="Skeins in a pack",
+        name="number in a pack",
+        initial="1",
+        maximum=MOST_IN_PACKS,
+        required=False,
+        help_text="12 for a box of twelve; the price is then that of the box.",
+    )
+    minimum_packs = QuantityField(
+        label="Fewest packs at once",
+        name="fewest packs",
+        initial="1",
+        maximum=MOST_IN_PACKS,
+        required=False,
+        help_text="Of one shade.",
+    )
+    pack_step = QuantityField(
+        label="Packs come in steps of",
+        name="step of packs",
+        initial="1",
+        maximum=MOST_IN_PACKS,
+        required=False,
+        help_text="2 where they are sold by the pair.",
+    )
     for_every_shade = forms.BooleanField(label="Sold in every shade", required=False, initial=True)
     shades = TicksField(
         label="Sold in these shades only", queryset=Shade.objects.all(), required=False
@@ -95,20 +123,31 @@ class PutUpForm(forms.ModelForm):
 
     class Meta:
         model = PutUp
-        fields = ["name", "length_mm", "price", "for_every_shade", "shades"]
+        fields = ["name", "length_mm", "price", *PACK_FIELDS, "for_every_shade", "shades"]
 
     def __init__(self, *args: Any, unit: str, currency: str, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
         self.supplier_names = list(Supplier.objects.values_list("name", flat=True))
         _set_unit(self.fields["length_mm"], unit)
-        self.fields["price"].help_text = f"Of one, in {currency}."
+        self.fields["price"].help_text = f"Of one, or of a pack, in {currency}."
         supplier = self.fields["supplier_name"]
         supplier.widget.attrs.update(list="supplier-names", autocomplete="off")
         if self.instance.pk:
             supplier.initial = self.instance.supplier.name
 
+    @property
+    def comes_in_packs(self) -> bool:
+        """Whether the fields about packs have anything to say, or to mend."""
+        return any(
+            self.errors.get(name) if self.is_bound else getattr(self.instance, name) != 1
+            for name in PACK_FIELDS
+        )
+
     def clean(self) -> dict[str, Any]:
         cleaned = super().clean() or self.cleaned_data
+        for name in PACK_FIELDS:
+            if name not in self.errors:
+                cleaned[name] = cleaned.get(name) or 1
         is_sold = cleaned.get("for_every_shade") or cleaned.get("shades")
         if not is_sold and "shades" not in self.errors:
             self.add_error("shades", "Tick the shades it is sold in, or tick every shade.")

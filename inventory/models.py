@@ -191,6 +191,16 @@ class PutUp(models.Model):
     def __str__(self) -> str:
         return f"{self.name}, {self.supplier}"
 
+    @property
+    def pack_words(self) -> str:
+        """How many at once; empty where they are sold one by one."""
+        words = [f"pack of {self.pack_size}"] if self.pack_size > 1 else []
+        if self.minimum_packs > 1:
+            words.append(f"at least {self.minimum_packs}")
+        if self.pack_step > 1:
+            words.append(f"in steps of {self.pack_step}")
+        return ", ".join(words)
+
 
 class Lot(models.Model):
     """A dye lot of one shade; thread of different lots may differ in colour."""

@@ -331,6 +331,11 @@ class PlanPurchase(models.Model):
     def __str__(self) -> str:
         return f"{self.count} x {self.put_up_name}"
 
+    @property
+    def packs(self) -> int:
+        """How many packs are taken to the till."""
+        return self.count // self.pack_size
+
 
 class PlanStock(models.Model):
     """A skein or remnant that the plan cuts from, in the order in which it is opened."""

@@ -31,6 +31,7 @@ def make_put_up(
     length_mm: int = 8_000,
     price: str = "1.20",
     shades: tuple[Shade, ...] = (),
+    **packs: int,
 ) -> PutUp:
     """Sold in every shade, unless shades are given."""
     put_up = PutUp.objects.create(
@@ -39,6 +40,7 @@ def make_put_up(
         length_mm=length_mm,
         price=Decimal(price),
         for_every_shade=not shades,
+        **packs,
     )
     put_up.shades.set(shades)
     return put_up

@@ -7,7 +7,7 @@ from django.urls import reverse
 from django.views.decorators.http import require_http_methods, require_POST, require_safe
 
 from inventory.actions import save_put_up
-from inventory.forms import PutUpForm
+from inventory.forms import PACK_FIELDS, PutUpForm
 from inventory.measures import UNITS
 from inventory.models import PutUp, Shade
 from inventory.page_helpers import habits, saved, say_with_undo
@@ -24,7 +24,8 @@ def put_up_list(request: HttpRequest) -> HttpResponse:
 
 def _price_per(put_up: PutUp, unit: str) -> Decimal:
     exact = UNITS[unit]
-    return put_up.price * exact.numerator / (put_up.length_mm * exact.denominator)
+    pack_mm = put_up.length_mm * put_up.pack_size
+    return put_up.price * exact.numerator / (pack_mm * exact.denominator)
 
 
 @require_http_methods(["GET", "HEAD", "POST"])
@@ -82,6 +83,7 @@ def _values(put_up: PutUp) -> list[tuple[str, object]]:
         ("supplier_name", put_up.supplier.name),
         ("length_mm", f"{put_up.length_mm} mm"),
         ("price", put_up.price),
+        *((name, getattr(put_up, name)) for name in PACK_FIELDS),
     ]
     if put_up.for_every_shade:
         values.append(("for_every_shade", "on"))

@@ -186,7 +186,8 @@ def _purchase(offer: ThreadOffer, count: int) -> SnapshotPurchase:
         reckoned_mm=offer.reckoned_mm,
         unit_price=offer.price,
         count=count,
-        cost=Decimal(count) * offer.price,
+        cost=Decimal(count // offer.pack_size) * offer.price,
+        pack_size=offer.pack_size,
     )
 
 

@@ -35,7 +35,7 @@ class ShelfThread:
 
 @dataclass(frozen=True)
 class ThreadOffer:
-    """A put-up that can be bought; `shades` is None where it comes in every shade."""
+    """A put-up that can be bought, `price` a pack; `shades` is None where it comes in every shade."""
 
     key: int
     supplier_name: str
@@ -44,6 +44,9 @@ class ThreadOffer:
     reckoned_mm: int
     price: Decimal
     shades: frozenset[int] | None = None
+    pack_size: int = 1
+    minimum_packs: int = 1
+    pack_step: int = 1
 
     def serves(self, shade: int) -> bool:
         return self.shades is None or shade in self.shades
@@ -112,13 +115,15 @@ def net(
     for position, (shade, wanted) in enumerate(groups.items(), start=1):
         own = shelf_by_shade[shade]
         if watcher.stop_wanted():
-            netted.append(_netted(shade, wanted, own, _without_plan("stopped", wanted, STOPPED)))
+            netted.append(
+                _netted(shade, wanted, own, _without_plan("stopped", wanted, STOPPED), offers)
+            )
             continue
         watcher.shade_begins(position, len(groups), shade)
         left_s = max(0.0, deadline - time.monotonic())
         share_s = left_s / (len(groups) - position + 1)
         result = _solved(shade, wanted, own, offers, partial(solve, time_limit_s=share_s))
-        netted.append(_netted(shade, wanted, own, result))
+        netted.append(_netted(shade, wanted, own, result, offers))
     return tuple(netted)
 
 
@@ -163,7 +168,15 @@ def _solved(
             tuple(groups),
             _lots(shelf),
             tuple(
-                Offer(str(offer.key), offer.supplier_name, offer.reckoned_mm, offer.price)
+                Offer(
+                    str(offer.key),
+                    offer.supplier_name,
+                    offer.reckoned_mm,
+                    offer.price,
+                    offer.pack_size,
+                    offer.minimum_packs,
+                    offer.pack_step,
+                )
                 for offer in offers
                 if offer.serves(shade)
             ),
@@ -196,12 +209,17 @@ def _without_plan(
 
 
 def _netted(
-    shade: int, groups: list[Group], shelf: list[ShelfThread], result: LotResult
+    shade: int,
+    groups: list[Group],
+    shelf: list[ShelfThread],
+    result: LotResult,
+    offers: tuple[ThreadOffer, ...],
 ) -> NettedShade:
     need_mm = sum(sum(group.pieces_mm) for group in groups)
     shelf_mm = sum(thread.reckoned_mm for thread in shelf)
     cut_mm = sum(piece.length_mm for opened in result.opened for piece in opened.pieces)
-    new_mm = sum(opened.length_mm for opened in result.opened if opened.offer_key is not None)
+    length_of = {str(offer.key): offer.reckoned_mm for offer in offers}
+    new_mm = sum(length_of[key] * count for key, count in result.bought)
     return NettedShade(
         shade=shade,
         piece_count=sum(len(group.pieces_mm) for group in groups),

@@ -65,6 +65,8 @@ def purchase_sheet(snapshot: Snapshot) -> PurchaseSheet:
                     unit_price=item.unit_price,
                     cost=item.cost,
                     proof=proof_of_shade(shade),
+                    pack_size=item.pack_size,
+                    spare=shade.spare(item),
                 )
             )
     return PurchaseSheet(
@@ -118,13 +120,8 @@ def cutting_sheet(snapshot: Snapshot) -> CuttingSheet:
     kind_of = {bracelet.number: bracelet.kind_index for bracelet in snapshot.bracelets}
 
     def cut_on_sheet(tag_number: int, piece_index: int) -> SheetCut:
-        piece = snapshot.kinds[kind_of[tag_number]].pieces[piece_index]
-        return SheetCut(
-            tag_number=tag_number,
-            label=piece.short_label if piece.role in ("strand", "base") else piece.label,
-            slot=piece.slot,
-            cut_mm=piece.cut_mm,
-            fold_mm=piece.fold_mm,
+        return piece_on_sheet(
+            tag_number, snapshot.kinds[kind_of[tag_number]].pieces[piece_index]
         )
 
     return CuttingSheet(
@@ -141,6 +138,17 @@ def cutting_sheet(snapshot: Snapshot) -> CuttingSheet:
             if shade.stock
         ),
         notices=left_out(snapshot),
+    )
+
+
+def piece_on_sheet(tag_number: int, piece: SnapshotPiece) -> SheetCut:
+    """Say of a piece what the maker at the bench has to know."""
+    return SheetCut(
+        tag_number=tag_number,
+        label=piece.short_label if piece.role in ("strand", "base") else piece.label,
+        slot=piece.slot,
+        cut_mm=piece.cut_mm,
+        fold_mm=piece.fold_mm,
     )
 
 

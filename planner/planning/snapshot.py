@@ -134,6 +134,11 @@ class SnapshotPurchase:
     cost: Decimal
     pack_size: int = 1
 
+    @property
+    def packs(self) -> int:
+        """How many packs are taken to the till."""
+        return self.count // self.pack_size
+
 
 @dataclass(frozen=True)
 class ShadeProof:
@@ -174,6 +179,16 @@ class SnapshotShade:
     stock: tuple[SnapshotStock, ...]
     unplaced: tuple[int, ...]
     proof: ShadeProof = ShadeProof()
+
+    def spare(self, purchase: SnapshotPurchase) -> int:
+        """How many of a purchase are not opened: a pack holds more than the plan cuts from."""
+        opened = sum(
+            stock.is_new
+            and stock.length_mm == purchase.length_mm
+            and stock.source.endswith(f": {purchase.put_up_name}")
+            for stock in self.stock
+        )
+        return max(0, purchase.count - opened)
 
     @property
     def solving_seconds(self) -> float:

@@ -55,11 +55,22 @@ class LoadedShelf:
     @property
     def stamp(self) -> str:
         threads = [(t.number, t.shade, t.lot, t.kind, t.reckoned_mm) for t in self.threads]
-        offers = [
-            (o.key, o.supplier_name, o.name, o.reckoned_mm, str(o.price), sorted(o.shades or []))
-            for o in self.offers
-        ]
+        offers = [_values_of_offer(offer) for offer in self.offers]
         return _stamp([sorted(threads), sorted(offers), self.keep_length_mm])
+
+
+def _values_of_offer(offer: ThreadOffer) -> tuple[object, ...]:
+    """Packs only where there are some, so that plans of earlier releases do not look stale."""
+    packs = (offer.pack_size, offer.minimum_packs, offer.pack_step)
+    return (
+        offer.key,
+        offer.supplier_name,
+        offer.name,
+        offer.reckoned_mm,
+        str(offer.price),
+        sorted(offer.shades or []),
+        *(packs if packs != (1, 1, 1) else ()),
+    )
 
 
 def habits_of(workshop: Workshop) -> Habits:
@@ -227,6 +238,9 @@ def _offers(wanted: set[int], workshop: Workshop) -> tuple[ThreadOffer, ...]:
                 reckoned_mm=reckoned_length(put_up.length_mm, workshop.short_measure_share),
                 price=put_up.price,
                 shades=shades,
+                pack_size=put_up.pack_size,
+                minimum_packs=put_up.minimum_packs,
+                pack_step=put_up.pack_step,
             )
         )
     return tuple(offers)

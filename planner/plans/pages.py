@@ -1,10 +1,8 @@
 """What the pages of a plan show: the answer, and how each number was made."""
 
-from collections import Counter, defaultdict
-from dataclasses import dataclass
+from collections import Counter
 from typing import Any
 
-from django.core.paginator import Paginator
 from django.db.models import Count, Max
 from django.utils import timezone
 
@@ -15,29 +13,15 @@ from patterns.pattern_file import read_pattern
 from patterns.pictures import band_picture
 from patterns.working import knotted_working
 from planner.models import Plan, PlanBracelet, PlanKind, PlanShade, PlanStock
-from planner.planning.snapshot import SnapshotPiece
 from planner.planning.wording import (
     bought_words,
     is_worked_out,
     proof_of_plan,
     proof_of_shade,
 )
-from planner.plans.bars import stock_bar
+from planner.plans.cut_pages import cuts_of_shade
 from planner.plans.load import load_orders, load_shelf, orders_stamp
 from planner.plans.store import read_habits, read_kind
-
-# A hank of 40 m would press the skeins beside it flat: what is longer has a scale of its own.
-LONGEST_SCALE_MM = 10_000
-STOCK_A_PAGE = 50
-
-
-@dataclass(frozen=True)
-class Cut:
-    """One cut of a stock piece, as the page of a shade lists it."""
-
-    bracelet_key: int
-    tag_number: int
-    piece: SnapshotPiece
 
 
 def plan_page(plan: Plan) -> dict[str, Any]:
@@ -157,43 +141,40 @@ def spoken_for(plan: Plan, shades: list[PlanShade]) -> list[dict[str, Any]]:
     ]
 
 
-def shade_page(shade: PlanShade, page_wanted: str | None = None) -> dict[str, Any]:
-    """Sums over all of a shade; cuts and bars of one page of its skeins."""
+def shade_page(
+    shade: PlanShade, by: str | None = None, page_wanted: str | None = None
+) -> dict[str, Any]:
+    """Sums over all of a shade; cuts and bars of one page of its skeins or lengths."""
     stock = list(shade.stock.all())
-    page = Paginator(stock, STOCK_A_PAGE).get_page(page_wanted)
-    cuts = _cuts_by_stock(shade, list(page))
-    scale_mm = min(LONGEST_SCALE_MM, max((row.reckoned_mm for row in stock), default=1))
     opened = {row.shelf_piece_number for row in stock}
     return {
         **plan_context(shade.plan),
         "shade": shade,
-        "scale_mm": scale_mm,
         "proof": proof_of_shade(shade),
         "is_worked_out": is_worked_out(shade),
         "lengths": _need_by_length(shade),
         "shelf": [{**thread, "opened": thread["number"] in opened} for thread in shade.shelf],
         "purchases": shade.purchases.all(),
         "lacking_mm": max(0, shade.need_mm - shade.usable_mm),
-        "page": page,
-        "stock": [_stock_row(row, cuts[row.pk], scale_mm, shade) for row in page],
+        **cuts_of_shade(shade, stock, by, page_wanted),
         "back_mm": sum(row.left_mm for row in stock if row.goes_back),
         "waste_mm": sum(row.left_mm for row in stock if not row.goes_back),
-        "new_mm": sum(row.reckoned_mm for row in stock if row.is_new),
+        "new_mm": sum(item.reckoned_mm * item.count for item in shade.purchases.all()),
+        **_spare(shade, stock),
         "untouched_mm": sum(
             thread["reckoned_mm"] for thread in shade.shelf if thread["number"] not in opened
         ),
     }
 
 
-def _cuts_by_stock(shade: PlanShade, stock: list[PlanStock]) -> dict[int, list[Cut]]:
-    pieces_of = {row.pk: read_kind(row).pieces for row in shade.plan.kinds.all()}
-    cuts: dict[int, list[Cut]] = defaultdict(list)
-    rows = shade.pieces.filter(stock__in=stock).select_related("bracelet")
-    for row in rows.order_by("stock_id", "cut_position"):
-        assert row.stock_id is not None
-        piece = pieces_of[row.bracelet.kind_id][row.index]
-        cuts[row.stock_id].append(Cut(row.bracelet_id, row.bracelet.number, piece))
-    return cuts
+def _spare(shade: PlanShade, stock: list[PlanStock]) -> dict[str, int]:
+    """What is bought and not opened: a pack holds more than the plan cuts from."""
+    opened_mm = sum(row.reckoned_mm for row in stock if row.is_new)
+    bought_mm = sum(item.reckoned_mm * item.count for item in shade.purchases.all())
+    return {
+        "spare": shade.bought - sum(row.is_new for row in stock),
+        "spare_mm": bought_mm - opened_mm,
+    }
 
 
 def _need_by_length(shade: PlanShade) -> list[dict[str, int]]:
@@ -202,20 +183,6 @@ def _need_by_length(shade: PlanShade) -> list[dict[str, int]]:
         {"cut_mm": cut_mm, "count": count, "sum_mm": cut_mm * count}
         for cut_mm, count in sorted(counts.items(), reverse=True)
     ]
-
-
-def _stock_row(row: PlanStock, cuts: list[Cut], scale_mm: int, shade: PlanShade) -> dict[str, Any]:
-    return {
-        "row": row,
-        "cuts": cuts,
-        "bar": stock_bar(
-            title=f"{row.source}: {len(cuts)} cuts",
-            colour=shade.colour,
-            length_mm=row.reckoned_mm,
-            scale_mm=scale_mm,
-            segments=[(str(cut.tag_number), cut.piece.cut_mm) for cut in cuts],
-        ),
-    }
 
 
 def bracelet_page(bracelet: PlanBracelet) -> dict[str, Any]:

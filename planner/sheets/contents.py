@@ -20,7 +20,7 @@ class SheetHead:
 
 @dataclass(frozen=True)
 class PurchaseRow:
-    """One shade in one put-up to buy."""
+    """One shade in one put-up to buy: `count` single ones, of which `spare` are not opened."""
 
     shade_code: str
     shade_name: str
@@ -31,6 +31,13 @@ class PurchaseRow:
     unit_price: Decimal
     cost: Decimal
     proof: str
+    pack_size: int = 1
+    spare: int = 0
+
+    @property
+    def packs(self) -> int:
+        """What is asked for at the till: packs, or single ones."""
+        return self.count // self.pack_size
 
 
 @dataclass(frozen=True)

@@ -25,7 +25,7 @@ _UNWRITABLE = re.compile("[\x00-\x08\x0b\x0c\x0e-\x1f\x7f\ud800-\udfff\ufffe\uff
 # A spreadsheet cell holds 32,767 characters.
 _LONGEST_CELL = 32_000
 _ZIP_TIME = (1980, 1, 1, 0, 0, 0)
-_WIDTHS = (24, 12, 26, 22, 12, 11, 12, 12, 34)
+_WIDTHS = (24, 12, 26, 22, 12, 11, 12, 12, 34, 11, 8)
 _MONEY_COLUMNS = (7, 8)
 
 
@@ -73,9 +73,9 @@ def purchase_xlsx(sheet: PurchaseSheet) -> bytes:
     workbook = Workbook()
     page = workbook.active
     page.title = "To buy"
-    count = sum(row.count for order in sheet.suppliers for row in order.rows)
+    count = sum(row.packs for order in sheet.suppliers for row in order.rows)
     whole = "So far, without the shades not worked out" if sheet.missing else "All suppliers"
-    sums: list[Cell] = [whole, "", "", "", "", count, "", sheet.cost, ""]
+    sums: list[Cell] = [whole, "", "", "", "", count, "", sheet.cost, "", "", ""]
     rows: list[list[Cell]] = [[*_header(sheet)], *_rows(sheet), sums]
     for row_number, cells in enumerate(rows, start=1):
         for column, value in enumerate(cells, start=1):
@@ -83,7 +83,7 @@ def purchase_xlsx(sheet: PurchaseSheet) -> bytes:
     for row_number in (1, len(rows)):
         for cell in page[row_number]:
             cell.font = Font(bold=True)
-    for letter, width in zip("ABCDEFGHI", _WIDTHS, strict=True):
+    for letter, width in zip("ABCDEFGHIJK", _WIDTHS, strict=True):
         page.column_dimensions[letter].width = width
     page.freeze_panes = "A2"
     made = datetime.combine(sheet.head.plan_date, time())
@@ -107,6 +107,8 @@ def _header(sheet: PurchaseSheet) -> list[str]:
         f"Each{unit}",
         f"Cost{unit}",
         "Proof",
+        "In a pack",
+        "Spare",
     ]
 
 
@@ -119,14 +121,16 @@ def _rows(sheet: PurchaseSheet) -> Iterator[list[Cell]]:
                 _writable(row.shade_name),
                 _writable(row.put_up),
                 Decimal(row.length_mm) / 1000,
-                row.count,
+                row.packs,
                 row.unit_price,
                 row.cost,
                 _writable(row.proof),
+                row.pack_size,
+                row.spare,
             ]
     for shade in sheet.missing:
         named = [_writable(shade.shade_code), _writable(shade.shade_name)]
-        yield ["", *named, "", "", "", "", "", _writable(shade.why)]
+        yield ["", *named, "", "", "", "", "", _writable(shade.why), "", ""]
 
 
 def _writable(text: str) -> str:

@@ -147,9 +147,13 @@ def _supplier_heading(
 
 def _put_up_words(row: PurchaseRow) -> str:
     """The put-up with its length, unless its name tells a length already."""
-    if any(character.isdigit() for character in row.put_up):
-        return row.put_up
-    return f"{row.put_up}, {format_length(row.length_mm, 'm')}"
+    words = row.put_up
+    if not any(character.isdigit() for character in words):
+        words = f"{words}, {format_length(row.length_mm, 'm')}"
+    if row.pack_size == 1:
+        return words
+    spare = f", {row.spare} spare" if row.spare else ""
+    return f"pack of {row.pack_size}: {words}{spare}"
 
 
 def _row_block(row: PurchaseRow, heading: Heading, columns: _Columns, paper: Paper) -> Block:
@@ -169,7 +173,7 @@ def _row_block(row: PurchaseRow, heading: Heading, columns: _Columns, paper: Pap
         put_up_room = max(room - width_of(proof, REGULAR, 9) - 12, room / 3)
         put_up = shortened(_put_up_words(row), REGULAR, 9, put_up_room)
         pen.text(name_x, base - 13, joined((put_up, proof)), 9, colour=QUIET, room=room)
-        pen.text(right - columns.skeins, base, str(row.count), 13, font=STRONG, align="right")
+        pen.text(right - columns.skeins, base, str(row.packs), 13, font=STRONG, align="right")
         pen.text(right - columns.price, base, money(row.unit_price), 11, align="right")
         pen.text(right, base, money(row.cost), 11, align="right")
         pen.rule(SIDE_PT, top - _ROW_PT + 2, body_width(paper), RULE, 0.4)
@@ -182,7 +186,7 @@ def _row_with_sum(last: Block, order: SupplierOrder, columns: _Columns, paper: P
         last.draw(pen, top)
         base = top - last.height - 12
         right = paper.width_pt - SIDE_PT
-        count = sum(row.count for row in order.rows)
+        count = sum(row.packs for row in order.rows)
         pen.text(right - columns.price, base, "together", 9, colour=QUIET, align="right")
         pen.text(right - columns.skeins, base, str(count), 11, font=STRONG, align="right")
         pen.text(right, base, money(order.cost), 11, font=STRONG, align="right")

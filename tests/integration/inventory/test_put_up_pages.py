@@ -219,3 +219,42 @@ def test_removing_a_put_up_twice_is_no_error(maker: Client) -> None:
     maker.post(reverse("put_up_remove", args=[put_up.pk]))
     response = maker.post(reverse("put_up_remove", args=[put_up.pk]), follow=True)
     assert "That put-up was removed already." in response.content.decode()
+
+
+@pytest.mark.parametrize("name", ["pack_size", "minimum_packs", "pack_step"])
+@pytest.mark.parametrize("typed", ["0", "-1", "1.5", "dozen", "1001", "9" * 40, "\x00"])
+def test_bad_packs_are_refused_and_nothing_typed_is_lost(
+    maker: Client, name: str, typed: str
+) -> None:
+    answer = maker.post(reverse("put_up_new"), GOOD | {"pack_size": "12", name: typed})
+    assert answer.status_code in (200, 422)
+    assert not PutUp.objects.exists()
+    page = answer.content.decode()
+    assert answer.context["form"].errors.keys() == {name}
+    assert "Quay Threads" in page
+    assert '<details class="packs" open>' in page
+
+
+def test_pack_is_kept_and_shown_with_its_price_per_metre(maker: Client) -> None:
+    # A box of twelve skeins of 8 m at 12.00 is 12.00 / 96 m = 0.125, shown as 0.12 or 0.13.
+    values = {"price": "12.00", "pack_size": "12", "minimum_packs": "3", "pack_step": "2"}
+    maker.post(reverse("put_up_new"), GOOD | values)
+    put_up = PutUp.objects.get()
+    assert (put_up.pack_size, put_up.minimum_packs, put_up.pack_step) == (12, 3, 2)
+    words = text_of(list_page(maker))
+    assert "skein pack of 12, at least 3, in steps of 2 Quay Threads 8 m €12.00 €0.1" in words
+
+
+def test_single_skeins_need_no_word_about_packs(maker: Client) -> None:
+    maker.post(reverse("put_up_new"), GOOD | {"pack_size": "", "minimum_packs": " "})
+    put_up = PutUp.objects.get()
+    assert (put_up.pack_size, put_up.minimum_packs, put_up.pack_step) == (1, 1, 1)
+    assert put_up.pack_words == ""
+
+
+def test_removed_pack_comes_back_as_it_was(maker: Client) -> None:
+    maker.post(reverse("put_up_new"), GOOD | {"pack_size": "12"})
+    page = maker.post(
+        reverse("put_up_remove", args=[PutUp.objects.get().pk]), follow=True
+    ).content.decode()
+    assert 'name="pack_size" value="12"' in page

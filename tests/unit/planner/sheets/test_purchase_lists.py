@@ -43,6 +43,18 @@ def test_csv_has_a_mark_crlf_and_a_line_per_shade():
         "1.20",
         "3.60",
         "fewer than 3 is impossible",
+        "1",
+        "0",
+    ]
+
+    box = purchase_row(0, 12, pack_size=12, spare=5, cost=Decimal("1.20"))
+    assert read_csv(purchase_csv(purchase_sheet(order("Quay Threads", box))))[1][5:] == [
+        "1",
+        "1.20",
+        "1.20",
+        "fewer than 12 is impossible",
+        "12",
+        "5",
     ]
 
 
@@ -118,8 +130,8 @@ def test_lists_name_the_shades_that_were_not_worked_out():
     missing = MissingShade("T09", "Net green", "not worked out: stopped before it was its turn")
     sheet = replace(sheet_with(), missing=(missing,))
     last = read_csv(purchase_csv(sheet))[-1]
-    assert last == ["", "T09", "Net green", "", "", "", "", "", missing.why]
+    assert last == ["", "T09", "Net green", "", "", "", "", "", missing.why, "", ""]
     page = load_workbook(BytesIO(purchase_xlsx(sheet))).active
     *_, row, sums = page.iter_rows(values_only=True)
-    assert row == (None, "T09", "Net green", *[None] * 5, missing.why)
+    assert row == (None, "T09", "Net green", *[None] * 5, missing.why, None, None)
     assert sums[0] == "So far, without the shades not worked out"
