@@ -110,6 +110,23 @@ def stacks(skeins: Sequence[Skein]) -> tuple[Stack, ...]:
     return tuple(found)
 
 
+def stop_settings(stacked: Sequence[Stack]) -> int:
+    """Count how often the measuring stop is set when stacks are cut one after another.
+
+    Parameters
+    ----------
+    stacked
+        In the order of the cuts.
+
+    Returns
+    -------
+    int
+        One for the first cut and one for each change of the length.
+    """
+    stops = [length_mm for stack in stacked for length_mm, _ in stack.lengths]
+    return len(list(groupby(stops)))
+
+
 def board_settings(skeins: Sequence[Skein]) -> tuple[Setting, ...]:
     """Take all cuts length by length, so that the board is set once for each.
 

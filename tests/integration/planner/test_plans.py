@@ -3,6 +3,7 @@
 import re
 from collections import Counter
 from decimal import Decimal
+from itertools import groupby
 
 import pytest
 from django.db import connection
@@ -17,7 +18,7 @@ from patterns.actions import add_pattern, change_pattern
 from patterns.models import Colourway, KnottedLength
 from planner.actions import make_plan
 from planner.models import Batch, Plan, PlanPiece
-from planner.plans import pages
+from planner.plans import cut_pages
 from planner.plans.store import read_snapshot
 from planner.plans.work_out import PlanError
 from tests.factories import (
@@ -244,22 +245,87 @@ def test_shade_page_shows_its_skeins_page_by_page(
     page: Client, colourway: Colourway, batch: Batch, monkeypatch: pytest.MonkeyPatch
 ) -> None:
     """18 bracelets of two pieces of about 1 m: 36 pieces, 7 of 7.84 m, so 6 skeins."""
-    monkeypatch.setattr(pages, "STOCK_A_PAGE", 4)
+    monkeypatch.setattr(cut_pages, "STACKS_A_PAGE", 1)
     make_order(batch, colourway, quantity=18)
     shade = plan_of(batch).shades.all()[0]
     address = reverse("plan_shade", args=[shade.plan_id, shade.pk])
     assert shade.stock.count() == 6
     left = format_length(shade.left_mm, "cm")
-    shown: list[str] = []
-    for number, count in ((1, 4), (2, 2)):
+    shown: Counter[int] = Counter()
+    text = page.get(address).content.decode()
+    stacks = int(re.findall(r"Skeins and stacks 1 to 1 of (\d+)", text)[0])
+    assert 1 < stacks < 6
+    for number in range(1, stacks + 1):
         text = page.get(f"{address}?page={number}").content.decode()
-        assert text.count('<svg class="thread-bar"') == count
-        assert f"{address}?page={3 - number}" in text
+        assert text.count('<svg class="thread-bar"') == 1
         assert f"− pieces cut = <strong>{left}</strong>" in text
-        shown += re.findall(r"for <a href=\"/b/\d+/\">tag (\d+)</a>", text)
-    assert Counter(shown) == {str(number): 2 for number in range(1, 19)}
+        shown += tags_shown(text)
+    assert shown == dict.fromkeys(range(1, 19), 2)
     for nonsense in ("0", "99", "x", "-1", "%00"):
         assert page.get(f"{address}?page={nonsense}").status_code == 200
+
+
+def tags_shown(html: str) -> Counter[int]:
+    """How many pieces each tag has on a page; strands are counted where they stand."""
+    shown: Counter[int] = Counter()
+    rows = re.findall(r"tags? ((?:<a [^>]*>\d+</a>(?:, )?)+|[\d, –]+): ([\d, ]+)  ?[A-Z]", html)
+    for tags, strands in rows:
+        for part in re.sub("<[^>]*>", "", tags).split(", "):
+            first, _, last = part.partition("–")
+            for tag in range(int(first), int(last or first) + 1):
+                shown[tag] += len(strands.split(", "))
+    return shown
+
+
+def test_shade_page_takes_the_cuts_length_by_length(
+    page: Client, colourway: Colourway, batch: Batch, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.setattr(cut_pages, "SETTINGS_A_PAGE", 1)
+    put_thread(shade_of(colourway, "A"), 2_500)
+    make_order(batch, colourway, quantity=18)
+    shade = plan_of(batch).shades.all()[0]
+    address = reverse("plan_shade", args=[shade.plan_id, shade.pk])
+    wanted = Counter(shade.pieces.values_list("cut_mm", flat=True))
+    assert len(wanted) > 1
+    shown: Counter[int] = Counter()
+    for number, (cut_mm, count) in enumerate(sorted(wanted.items(), reverse=True), start=1):
+        text = page.get(f"{address}?by=length&page={number}").content.decode()
+        assert f"Set the board to {format_length(cut_mm, 'cm')}: {count} pieces" in text
+        turns = re.findall(
+            r"<strong>(\d+) turns?</strong> (?:each )?from (pieces?|new thread) ([^<\n]+)", text
+        )
+        pieces = 0
+        for turn_count, _, names in turns:
+            first, _, last = names.split(", lot ")[0].partition(" to ")
+            numbers = names.split(", lot ")[0].split(", ")
+            pieces += int(turn_count) * (int(last) - int(first) + 1 if last else len(numbers))
+        assert pieces == count
+        shown += tags_shown(text)
+    assert shown == dict.fromkeys(range(1, 19), 2)
+    assert f"it is set <strong>{len(wanted)}</strong> times" in text
+    assert f"{address}?by=length&amp;page=1" in text
+
+
+def test_plan_keeps_the_order_of_the_cuts(colourway: Colourway, batch: Batch) -> None:
+    """Longest first, shelf before new thread, and skeins cut alike side by side."""
+    put_thread(shade_of(colourway, "A"), 2_500, 1_200)
+    make_order(batch, colourway, quantity=40)
+    for shade in read_snapshot(plan_of(batch)).shades:
+        patterns = [tuple(cut.cut_mm for cut in stock.cuts) for stock in shade.stock]
+        assert all(pattern == tuple(sorted(pattern, reverse=True)) for pattern in patterns)
+        new = [stock.is_new for stock in shade.stock]
+        assert new == sorted(new)
+        bought = [pattern for pattern, is_new in zip(patterns, new, strict=True) if is_new]
+        assert len(list(groupby(bought))) == len(set(bought)) < len(bought)
+
+
+def test_alike_skeins_are_named_together(page: Client, colourway: Colourway, batch: Batch) -> None:
+    make_order(batch, colourway, quantity=40)
+    shade = plan_of(batch).shades.all()[0]
+    text = page.get(reverse("plan_shade", args=[shade.plan_id, shade.pk])).content.decode()
+    assert re.search(r"New thread \d+ to \d+: ", text)
+    assert re.search(r"\d+ skeins together: <span class=\"nowrap\">[\d.]+ cm × \d+</span>", text)
+    assert "as your shears cut cleanly" in text
 
 
 def test_plan_pages_query_count_is_flat(page: Client, colourway: Colourway) -> None:

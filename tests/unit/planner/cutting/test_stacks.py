@@ -6,7 +6,15 @@ from itertools import pairwise
 from hypothesis import given
 from hypothesis import strategies as st
 
-from planner.cutting.stacks import Setting, Skein, Stack, Turns, board_settings, stacks
+from planner.cutting.stacks import (
+    Setting,
+    Skein,
+    Stack,
+    Turns,
+    board_settings,
+    stacks,
+    stop_settings,
+)
 
 
 def test_alike_skeins_of_one_lot_are_a_stack() -> None:
@@ -18,6 +26,13 @@ def test_alike_skeins_of_one_lot_are_a_stack() -> None:
         Stack(3, 1, counted),
         Stack(4, 1, ((700, 1),)),
     )
+
+
+def test_stop_is_set_once_for_a_stack_and_where_lengths_go_on() -> None:
+    """118 and 96 for two skeins at once, then 96 goes on, then 70: three settings."""
+    skeins = [Skein("8a", (118, 96))] * 2 + [Skein("8a", (96, 96, 70))]
+    assert stop_settings(stacks(skeins)) == 3
+    assert stop_settings(()) == 0
 
 
 def test_board_is_set_once_for_a_length() -> None:
