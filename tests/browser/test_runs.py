@@ -2,6 +2,7 @@
 
 import re
 import threading
+import time
 from collections.abc import Callable, Iterator
 from typing import Any
 
@@ -104,16 +105,18 @@ def test_progress_without_scripts_has_a_link_to_look_again(
     page = new_page(user=maker, java_script_enabled=False)
     begin(page, batch)
     next_shade()
-    page.get_by_role("link", name="Look how far it is").click()
-    expect(page.get_by_text("Shade 2 of 3")).to_be_visible()
+    look_until(page, lambda: page.get_by_text("Shade 2 of 3").is_visible())
     next_shade()
     next_shade()
-    for _ in range(50):
-        if "/plans/" in page.url:
-            break
-        page.reload()
-        page.wait_for_timeout(50)
-    assert "/plans/" in page.url
+    look_until(page, lambda: "/plans/" in page.url)
+
+
+def look_until(page: Page, is_so: Callable[[], bool]) -> None:
+    """Without scripts the page is as it was when it was loaded."""
+    until = time.monotonic() + PATIENCE_S
+    while not is_so():
+        assert time.monotonic() < until
+        page.get_by_role("link", name="Look how far it is").click()
 
 
 @pytest.mark.parametrize("scheme", ["light", "dark"])
