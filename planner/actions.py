@@ -28,6 +28,7 @@ LINE_FIELDS = (
     "due_date",
     "note",
     "distinct_lengths",
+    "matched_set",
 )
 
 
@@ -60,6 +61,7 @@ def line_values(line: GoodLine) -> dict[str, Any]:
         "due_date": line.due_date,
         "note": line.note,
         "distinct_lengths": line.distinct_lengths,
+        "matched_set": line.matched_set,
     }
 
 

@@ -20,6 +20,7 @@ Field = Literal[
     "due_date",
     "note",
     "distinct_lengths",
+    "matched_set",
 ]
 
 DEFAULT_ORDER: tuple[Field, ...] = get_args(Field)
@@ -39,6 +40,7 @@ FIELD_LABELS: Mapping[Field, str] = MappingProxyType(
         "due_date": "due date",
         "note": "note",
         "distinct_lengths": "lengths",
+        "matched_set": "set",
     }
 )
 
@@ -68,6 +70,8 @@ _SYNONYMS: Mapping[Field, str] = {
     "opmerking, notitie, nota, notas, observación, observaciones",
     "distinct_lengths": "lengths, distinct lengths, cut lengths, lengths to cut, how many lengths, Längen, "
     "longueurs, lengtes, largos",
+    "matched_set": "set, matched set, matched, matching set, set name, Satz, zusammen, ensemble, "
+    "assortis, stel, bij elkaar, juego, conjunto",
 }
 
 

@@ -15,6 +15,7 @@ from planner.order_list.limits import (
     MAX_DISTINCT_LENGTHS,
     MAX_FOR_WHOM_CHARACTERS,
     MAX_NOTE_CHARACTERS,
+    MAX_SET_CHARACTERS,
 )
 from planner.order_list.problems import CellProblem
 from planner.order_list.results import BadLine, GoodLine, Problem
@@ -170,6 +171,7 @@ class RowReader:
         due_date, due_notice = row.read("due_date", self._read_due_date) or (None, None)
         note = row.read("note", _read_note)
         distinct_lengths = row.read("distinct_lengths", _read_distinct_lengths)
+        matched_set = row.read("matched_set", _read_matched_set)
         if (
             row.problems
             or for_whom is None
@@ -179,6 +181,7 @@ class RowReader:
             or ending_key is None
             or quantity is None
             or note is None
+            or matched_set is None
         ):
             return row.as_bad()
         row.add_notice(size_notice)
@@ -195,6 +198,7 @@ class RowReader:
             note=note,
             cells=tuple(row.cells.values()),
             distinct_lengths=distinct_lengths,
+            matched_set=matched_set,
             notices=tuple(row.notices),
         )
 
@@ -273,6 +277,10 @@ def _read_for_whom(text: str) -> str:
 
 def _read_note(text: str) -> str:
     return _within(text, MAX_NOTE_CHARACTERS, "note")
+
+
+def _read_matched_set(text: str) -> str:
+    return _within(one_line(text), MAX_SET_CHARACTERS, "set")
 
 
 def _within(text: str, most: int, what: str) -> str:

@@ -21,6 +21,7 @@ class GoodLine:
     note: str
     cells: tuple[str, ...]
     distinct_lengths: int | None = None
+    matched_set: str = ""
     notices: tuple[str, ...] = ()
 
 

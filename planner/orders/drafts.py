@@ -120,6 +120,7 @@ def resolved_rows(reading: Reading, catalogue: Catalogue) -> list[tuple[int, tup
                 line.due_date.isoformat() if line.due_date else "",
                 line.note,
                 str(line.distinct_lengths or ""),
+                line.matched_set,
             ),
         )
         for line in reading.good

@@ -24,6 +24,7 @@ HEADINGS: tuple[tuple[str, str], ...] = (
     ("due_date", "Due"),
     ("note", "Note"),
     ("distinct_lengths", "Lengths to cut"),
+    ("matched_set", "Set of one lot"),
 )
 
 
@@ -110,6 +111,7 @@ def cells_of_line(line: OrderLine) -> dict[str, str]:
         "due_date": line.due_date.isoformat() if line.due_date else "",
         "note": line.note,
         "distinct_lengths": str(line.distinct_lengths or ""),
+        "matched_set": line.matched_set,
     }
 
 

@@ -62,7 +62,14 @@ def compose(
         habits=habits,
         kinds=tuple(_kind(kind, names) for kind in kinds),
         bracelets=tuple(
-            SnapshotBracelet(b.number, b.kind_index, b.for_whom, b.due_date, b.note)
+            SnapshotBracelet(
+                b.number,
+                b.kind_index,
+                b.for_whom,
+                b.due_date,
+                b.note,
+                matched_set=b.matched_set,
+            )
             for b in bracelets
         ),
         shades=tuple(sorted(shades, key=lambda shade: shade.code.casefold())),

@@ -51,7 +51,10 @@ class Kind:
 
 @dataclass(frozen=True)
 class Order:
-    """So many bracelets of one kind for one person; `line_number` is the row in the batch."""
+    """So many bracelets of one kind for one person; `line_number` is the row in the batch.
+
+    Bracelets of one `matched_set`, whatever its capitals, are cut from one dye lot of each shade.
+    """
 
     line_number: int
     kind: Kind
@@ -59,6 +62,7 @@ class Order:
     for_whom: str = ""
     due_date: date | None = None
     note: str = ""
+    matched_set: str = ""
 
 
 @dataclass(frozen=True)
@@ -83,6 +87,7 @@ class Bracelet:
     for_whom: str
     due_date: date | None
     note: str
+    matched_set: str = ""
 
 
 def explode_kind(kind: Kind) -> ExplodedKind:
@@ -140,6 +145,7 @@ def explode(orders: tuple[Order, ...]) -> tuple[tuple[ExplodedKind, ...], tuple[
                     for_whom=order.for_whom,
                     due_date=order.due_date,
                     note=order.note,
+                    matched_set=order.matched_set,
                 )
             )
     return tuple(kinds), tuple(bracelets)

@@ -12,6 +12,7 @@ from typing import Literal
 from planner.cutting import CuttingError, Group, Lot, LotResult, LotStock, Offer, solve_with_lots
 from planner.cutting.bounds import usable_lengths
 from planner.planning.demand import Bracelet, ExplodedKind
+from planner.planning.sets import Together, sets_of
 from planner.planning.watching import Unwatched, Watcher
 
 logger = logging.getLogger(__name__)
@@ -94,8 +95,8 @@ def net(
 
     Returns
     -------
-    One entry a shade needed, by first use. All pieces of one shade in one bracelet come
-    from one dye lot. A shade on which the solver raises is "failed" and one that a stop came
+    One entry a shade needed, by first use. All pieces of one shade in one bracelet, or
+    in one matched set, come from one dye lot. A shade on which the solver raises is "failed" and one that a stop came
     before is "stopped": both without a plan, and the other shades as if they were alone. The
     shade that a stop comes upon has the best plan found until then.
     """
@@ -112,6 +113,7 @@ def net(
         shelf_by_shade[thread.shade].append(thread)
     deadline = time.monotonic() + time_limit_s
     netted = []
+    sets = sets_of(bracelets)
     for position, (shade, wanted) in enumerate(groups.items(), start=1):
         own = shelf_by_shade[shade]
         if watcher.stop_wanted():
@@ -122,7 +124,10 @@ def net(
         watcher.shade_begins(position, len(groups), shade)
         left_s = max(0.0, deadline - time.monotonic())
         share_s = left_s / (len(groups) - position + 1)
-        result = _solved(shade, wanted, own, offers, partial(solve, time_limit_s=share_s))
+        together = Together.of(wanted, sets)
+        result = together.apart(
+            _solved(shade, together.groups, own, offers, partial(solve, time_limit_s=share_s))
+        )
         netted.append(_netted(shade, wanted, own, result, offers))
     return tuple(netted)
 

@@ -12,6 +12,7 @@ from planner.cutting.stacks import Skein, stacks
 from planner.planning.bench import lots_at_the_bench, source_of
 from planner.planning.snapshot import (
     Snapshot,
+    SnapshotBracelet,
     SnapshotKind,
     SnapshotPiece,
     SnapshotShade,
@@ -120,9 +121,7 @@ def cutting_sheet(snapshot: Snapshot) -> CuttingSheet:
     kind_of = {bracelet.number: bracelet.kind_index for bracelet in snapshot.bracelets}
 
     def cut_on_sheet(tag_number: int, piece_index: int) -> SheetCut:
-        return piece_on_sheet(
-            tag_number, snapshot.kinds[kind_of[tag_number]].pieces[piece_index]
-        )
+        return piece_on_sheet(tag_number, snapshot.kinds[kind_of[tag_number]].pieces[piece_index])
 
     return CuttingSheet(
         head=sheet_head(snapshot),
@@ -181,6 +180,14 @@ def _stock_cut(stock: SnapshotStock, cut_on_sheet: Callable[[int, int], SheetCut
     )
 
 
+def _for_whom_and_set(bracelet: SnapshotBracelet) -> str:
+    """Who it is for; at the bench a set is told by its name, since its thread is of one lot."""
+    named = [bracelet.for_whom] if bracelet.for_whom else []
+    if bracelet.matched_set:
+        named.append(f"set {bracelet.matched_set}")
+    return ", ".join(named)
+
+
 def tag_sheet(snapshot: Snapshot, *, address: str) -> TagSheet:
     """Return all tags; `address` is where the workshop answers, for the codes."""
     shades = {shade.code: shade for shade in snapshot.shades}
@@ -196,7 +203,7 @@ def tag_sheet(snapshot: Snapshot, *, address: str) -> TagSheet:
                 piece_lists[bracelet.kind_index],
                 number=bracelet.number,
                 code_text=_code_text(bracelet.key, bracelet.number, address),
-                for_whom=bracelet.for_whom,
+                for_whom=_for_whom_and_set(bracelet),
                 due=bracelet.due_date,
             )
             for bracelet in snapshot.bracelets

@@ -155,14 +155,20 @@ def _order(
         pattern_key=line.pattern_id,
         pattern_version=line.pattern.version,
     )
-    return Order(row, kind, line.quantity, line.for_whom, line.due_date, line.note)
+    return Order(
+        row, kind, line.quantity, line.for_whom, line.due_date, line.note, line.matched_set
+    )
 
 
 def orders_stamp(orders: Sequence[Order]) -> str:
     """Tell whether the orders, or the patterns and sizes behind them, have changed."""
     kinds = {order.kind: None for order in orders}
     number_of = {kind: number for number, kind in enumerate(kinds)}
-    lines = [[number_of[o.kind], o.quantity, o.for_whom, str(o.due_date), o.note] for o in orders]
+    lines = [
+        [number_of[o.kind], o.quantity, o.for_whom, str(o.due_date), o.note]
+        + ([o.matched_set] if o.matched_set else [])
+        for o in orders
+    ]
     return _stamp([[_values_of_kind(kind) for kind in kinds], lines])
 
 

@@ -94,6 +94,7 @@ def _unsaved(line: GoodLine) -> OrderLine:
         due_date=line.due_date,
         note=line.note,
         distinct_lengths=line.distinct_lengths,
+        matched_set=line.matched_set,
     )
 
 

@@ -40,7 +40,7 @@ def test_field_names_are_column_names() -> None:
 
 def test_columns_without_header_stand_in_the_order_of_the_grid() -> None:
     # Up to the note: a comma in it must not become another field.
-    assert read_columns(None).fields == DEFAULT_ORDER[:-1] == UNNAMED_ORDER
+    assert read_columns(None).fields == DEFAULT_ORDER[:-2] == UNNAMED_ORDER
 
 
 def test_columns_in_another_order_with_unknown_ones() -> None:

@@ -44,12 +44,13 @@ def test_row_of_all_fields() -> None:
     row = {
         "for_whom": "  Harbour   choir ", "pattern": "Wave", "colourway": "Dusk", "size": "Large",
         "ending": "Loop and button", "quantity": "12", "due_date": "2026-11-20", "note": " two\nlines ",
-        "distinct_lengths": "3",
+        "distinct_lengths": "3", "matched_set": " The  Pair ",
     }  # fmt: skip
     line = read_row(4, row, CATALOGUE, today=TODAY, market_date=MARKET)
     assert line == GoodLine(
         number=4, for_whom="Harbour choir", pattern_key=1, colourway_key=12, size_key=3, ending_key=2,
-        quantity=12, due_date=date(2026, 11, 20), note="two\nlines", distinct_lengths=3, cells=tuple(row.values()),
+        quantity=12, due_date=date(2026, 11, 20), note="two\nlines", distinct_lengths=3, matched_set="The Pair",
+        cells=tuple(row.values()),
     )  # fmt: skip
 
 
@@ -298,7 +299,7 @@ def test_lines_of_a_list_with_columns_in_another_order() -> None:
     reading = read_lines(table, CATALOGUE, today=TODAY, market_date=MARKET)
     (line,) = reading.good
     assert (line.number, line.size_key, line.pattern_key, line.quantity) == (2, 3, 3, 2)
-    assert line.cells == ("", "Rope walk", "", "Large", "", "2", "", "", "")
+    assert line.cells == ("", "Rope walk", "", "Large", "", "2", "", "", "", "")
     assert [wrong.number for wrong in reading.bad] == [4]
     assert reading.ignored_columns == ("Price",)
     assert reading.notices == ("Left out, with nothing in the columns that are read: row 3.",)
@@ -351,3 +352,11 @@ def test_catalogue_refuses_what_does_not_fit_together() -> None:
         PatternChoice(1, "Wave", (Choice(1, "A"),), 2)
     with pytest.raises(ValueError, match="backwards"):
         SizeChoice(1, "Small", 150, 130)
+
+
+def test_name_of_a_set_that_is_too_long_is_refused_by_its_own_cell() -> None:
+    line = read_row(1, cells(matched_set="x" * 41), CATALOGUE, today=TODAY, market_date=MARKET)
+    assert isinstance(line, BadLine)
+    (problem,) = line.problems
+    assert problem.field == "matched_set"
+    assert "41 characters; 40 is the limit" in problem.message
