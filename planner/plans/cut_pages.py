@@ -28,7 +28,7 @@ LONGEST_SCALE_MM = 10_000
 STACKS_A_PAGE = 50
 SETTINGS_A_PAGE = 20
 # A longer list of tags is told as ranges, without a link each.
-MOST_LINKS = 12
+MOST_LINKS = 6
 
 
 def cuts_of_shade(
@@ -161,12 +161,19 @@ class _Bench:
         return [
             {
                 "cut_mm": row.cut_mm,
-                "from_each": row.from_each,
+                "pieces": row.pieces,
                 "tags": number_ranges(row.tags),
                 "links": [(tag, self.bracelet_key[tag]) for tag in row.tags][: MOST_LINKS + 1],
                 "has_links": len(row.tags) <= MOST_LINKS,
-                "strands": row.strands,
+                "strands": _strands_in_words(row.strands),
                 "fold_mm": row.fold_mm,
             }
             for row in rows_of_stack(StackCut("", skeins))
         ]
+
+
+def _strands_in_words(strands: str) -> str:
+    """Numbers alone are strands; "sliding piece" or "run 2 of B" says so itself."""
+    if not strands[:1].isdigit():
+        return strands
+    return f"strands {strands}" if "," in strands or "+" in strands else f"strand {strands}"

@@ -32,6 +32,8 @@ class CutRow:
         Which strands of each of these tags they are, with their slot.
     fold_mm
         Where each is folded [mm], or None.
+    pieces
+        How many pieces they are, for all these tags together.
     """
 
     cut_mm: int
@@ -39,6 +41,7 @@ class CutRow:
     tags: tuple[int, ...]
     strands: str
     fold_mm: int | None
+    pieces: int
 
 
 def rows_of_stack(stack: StackCut) -> tuple[CutRow, ...]:
@@ -65,7 +68,8 @@ def rows_of_stack(stack: StackCut) -> tuple[CutRow, ...]:
             strands = joined((strand_words(labels), plain_text(slot)), "  ")
             for start in range(0, len(tags), MOST_TAGS_A_ROW):
                 some = tuple(tags[start : start + MOST_TAGS_A_ROW])
-                rows.append(CutRow(cut_mm, from_each, some, strands, fold_mm))
+                pieces = len(labels) * len(some)
+                rows.append(CutRow(cut_mm, from_each, some, strands, fold_mm, pieces))
                 from_each = None
     return tuple(rows)
 

@@ -268,7 +268,9 @@ def test_shade_page_shows_its_skeins_page_by_page(
 def tags_shown(html: str) -> Counter[int]:
     """How many pieces each tag has on a page; strands are counted where they stand."""
     shown: Counter[int] = Counter()
-    rows = re.findall(r"tags? ((?:<a [^>]*>\d+</a>(?:, )?)+|[\d, –]+): ([\d, ]+)  ?[A-Z]", html)
+    rows = re.findall(
+        r"tags? ((?:<a [^>]*>\d+</a>(?:, )?)+|[\d, –]+): strands? ([\d, ]+)  ?[A-Z]", html
+    )
     for tags, strands in rows:
         for part in re.sub("<[^>]*>", "", tags).split(", "):
             first, _, last = part.partition("–")
@@ -324,7 +326,9 @@ def test_alike_skeins_are_named_together(page: Client, colourway: Colourway, bat
     shade = plan_of(batch).shades.all()[0]
     text = page.get(reverse("plan_shade", args=[shade.plan_id, shade.pk])).content.decode()
     assert re.search(r"New thread \d+ to \d+: ", text)
-    assert re.search(r"\d+ skeins together: <span class=\"nowrap\">[\d.]+ cm × \d+</span>", text)
+    assert re.search(
+        r"\d+ together, from each: <span class=\"nowrap\">[\d.]+ cm × \d+</span>", text
+    )
     assert "as your shears cut cleanly" in text
 
 

@@ -27,8 +27,8 @@ def test_equal_lengths_are_told_once_with_their_tags() -> None:
         ),
     )
     assert rows_of_stack(stack) == (
-        CutRow(870, 2, (1, 2), "1, 2  A", None),
-        CutRow(870, None, (5, 6), "3  A", None),
+        CutRow(870, 2, (1, 2), "1, 2  A", None, 4),
+        CutRow(870, None, (5, 6), "3  A", None, 2),
     )
 
 
@@ -96,6 +96,7 @@ def test_every_piece_is_in_one_row(
             for label in labels
         )
         assert len(row.tags) <= 24
+        assert row.pieces == len(row.tags) * len(labels)
     assert found == Counter(each for one in cut for each in one.cuts)
     for length in (500, 400):
         own = [row for row in rows if row.cut_mm == length]
