@@ -17,7 +17,8 @@ from planner.cutting import Problem, PutUp, Result, solve
 from planner.cutting.highs import Limits
 from planner.cutting.linear import linear_bound
 from planner.cutting.packs import SoldAs
-from tests.cutting_reference import cp_sat_plan, greedy_plan
+from tests.cutting_greedy import greedy_plan
+from tests.cutting_reference import cp_sat_plan
 from tests.cutting_samples import (
     folded_starts,
     realistic_shade,
