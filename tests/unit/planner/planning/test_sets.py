@@ -100,7 +100,7 @@ def test_set_costs_a_skein_where_its_lots_would_have_done_one_by_one() -> None:
     (apart,) = net(*alone, shelf, (make_offer(),))
     assert apart.result.bought == ()
     as_set = explode((Order(1, make_kind("A A A A"), 2, matched_set="Pair"),))
-    (together,) = net(*as_set, shelf, (make_offer(),))
+    (together,) = net(*as_set, shelf, (make_offer(length_mm=10_000),))
     assert together.result.bought == (("1", 1),)
     assert together.result.status == "optimal"
     assert together.result.cost_without_lots == Decimal(0)
