@@ -11,7 +11,7 @@ from planner.cutting.highs import Limits
 from planner.cutting.lot_choice import Kind, most_from_lot, pieces_of
 from planner.cutting.lot_problem import Group, Lot, Offer
 from planner.cutting.packs import SoldAs, worth_buying
-from planner.cutting.problem import MAXIMUM_PIECES, CuttingError, Money
+from planner.cutting.problem import MAXIMUM_PIECES, MAXIMUM_PUT_UPS, CuttingError, Money
 from planner.cutting.task import Task
 
 
@@ -192,6 +192,8 @@ def _check(groups: Sequence[Group], lots: Sequence[Lot], offers: Sequence[Offer]
     _check_keys("lot", [lot.key for lot in lots])
     _check_keys("stock piece", [stock.key for lot in lots for stock in lot.stock])
     _check_keys("offer", [offer.key for offer in offers])
+    if len(offers) > MAXIMUM_PUT_UPS:
+        raise CuttingError(f"Too many put-ups to buy: at most {MAXIMUM_PUT_UPS}.")
     if sum(len(group.pieces_mm) for group in groups) > MAXIMUM_PIECES:
         raise CuttingError(f"Too many pieces to cut: at most {MAXIMUM_PIECES} in all.")
 

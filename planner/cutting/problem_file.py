@@ -9,6 +9,7 @@ from typing import Any, NoReturn, TypeVar
 from planner.cutting.problem import CuttingError, Demand, Problem, PutUp, StockPiece
 
 MAXIMUM_BYTES = 16_000_000
+LONGEST_NAME = 200
 _PRICE = re.compile(r"[0-9]{1,12}(\.[0-9]{1,12})?")
 _Part = TypeVar("_Part")
 
@@ -21,7 +22,9 @@ def read_problem(content: bytes) -> Problem:
     content
         JSON in UTF-8: ``{"demand": [{"length_mm", "count"}], "stock": [{"length_mm", "count"}],
         "buy": [{"length_mm", "price"}]}``. Stock and buy may be left out, other keys are ignored,
-        a price is a number or a text like "3.50".
+        a price is a number or a text like "3.50". Stock may have a "lot"; what is bought a
+        "pack_size" (the price is then that of a pack), "minimum_packs", "pack_step", a "supplier"
+        and a "short_measure_share".
 
     Returns
     -------
@@ -42,9 +45,32 @@ def read_problem(content: bytes) -> Problem:
         raise CuttingError('The file has no "demand": what is to be cut?')
     return Problem(
         demand=_parts(data, "demand", lambda row: Demand(row["length_mm"], row["count"])),
-        stock=_parts(data, "stock", lambda row: StockPiece(row["length_mm"], row["count"])),
-        buy=_parts(data, "buy", lambda row: PutUp(row["length_mm"], _price(row["price"]))),
+        stock=_parts(data, "stock", _stock_piece),
+        buy=_parts(data, "buy", _put_up),
     )
+
+
+def _stock_piece(row: dict[str, Any]) -> StockPiece:
+    return StockPiece(row["length_mm"], row["count"], _name(row, "lot"))
+
+
+def _put_up(row: dict[str, Any]) -> PutUp:
+    return PutUp(
+        row["length_mm"],
+        _price(row["price"]),
+        row.get("pack_size", 1),
+        row.get("minimum_packs", 1),
+        row.get("pack_step", 1),
+        _name(row, "supplier"),
+        _price(row.get("short_measure_share", 0)),
+    )
+
+
+def _name(row: dict[str, Any], key: str) -> str:
+    name = row.get(key, "")
+    if not isinstance(name, str) or len(name) > LONGEST_NAME:
+        raise CuttingError(f'"{key}" must be text of at most {LONGEST_NAME} characters.')
+    return name
 
 
 def _load(content: bytes) -> object:

@@ -45,6 +45,7 @@ def _as_json(result: Result) -> str:
             "cost": _money(result.cost),
             "bought": result.bought,
             "lower_bound": _money(result.lower_bound),
+            "waste_mm": result.waste_mm,
             "cuts": [
                 {
                     "length_mm": cut.length_mm,

@@ -55,10 +55,11 @@ def test_cut_as_json_prints_the_whole_plan(
         "cost": "3.00",
         "bought": 2,
         "lower_bound": "3.00",
+        # Two skeins are needed with the remnant or without; cut from it, 100 mm would be waste.
+        "waste_mm": 0,
         "cuts": [
-            {"length_mm": 2500, "new": False, "pieces_mm": [1200] * 2, "left_mm": 100},
             {"length_mm": 8000, "new": True, "pieces_mm": [1200] * 6, "left_mm": 800},
-            {"length_mm": 8000, "new": True, "pieces_mm": [1200] * 2, "left_mm": 5600},
+            {"length_mm": 8000, "new": True, "pieces_mm": [1200] * 4, "left_mm": 3200},
         ],
     }
 
@@ -69,8 +70,51 @@ def test_cut_without_json_prints_a_table(
     code, out, _ = run(capsys, write(tmp_path, PROBLEM))
     assert code == 0
     assert "To buy: 2, cost 3.00, and less is impossible" in out
-    assert "shelf 2500" in out
+    assert "new 8000" in out
     assert "6 x 1200" in out
+
+
+def test_cut_takes_packs_lots_and_short_measure(
+    tmp_path: Path, capsys: pytest.CaptureFixture[str]
+) -> None:
+    problem = {
+        "demand": [{"length_mm": 3900, "count": 3}],
+        "stock": [{"length_mm": 3900, "count": 1, "lot": "8a"}],
+        "buy": [
+            {"length_mm": 8000, "price": "5", "pack_size": 4, "short_measure_share": "0.02"},
+        ],
+    }
+    code, out, _ = run(capsys, write(tmp_path, problem), "--json")
+    answer = json.loads(out)
+    assert (code, answer["cost"], answer["bought"]) == (0, "5.00", 4)
+    assert max(cut["length_mm"] for cut in answer["cuts"]) == 7840
+
+
+@pytest.mark.parametrize(
+    ("part", "key", "value", "words"),
+    [
+        ("buy", "pack_size", 0, "pack_size of a put-up must be from 1 to 1000"),
+        ("buy", "pack_step", "two", "pack_step of a put-up must be a whole number"),
+        ("buy", "short_measure_share", "1", "short_measure_share must be"),
+        ("buy", "short_measure_share", [], "short_measure_share must be"),
+        ("buy", "supplier", 7, '"supplier" must be text'),
+        ("stock", "lot", {}, '"lot" must be text'),
+        ("stock", "lot", "x" * 201, "at most 200 characters"),
+    ],
+)
+def test_cut_names_what_is_wrong_with_packs_and_lots(
+    part: str,
+    key: str,
+    value: object,
+    words: str,
+    tmp_path: Path,
+    capsys: pytest.CaptureFixture[str],
+) -> None:
+    problem = json.loads(json.dumps(PROBLEM))
+    problem[part][0][key] = value
+    said = refusal(capsys, write(tmp_path, problem))
+    assert words in said
+    assert f'"{part}", item 1' in said
 
 
 @pytest.mark.parametrize("row", json.loads(DATA.read_text())["problems"], ids=lambda row: row["id"])
