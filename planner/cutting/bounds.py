@@ -21,7 +21,9 @@ problems", Mathematical Programming 91 (2001) (both from memory).
 from bisect import bisect_right
 from collections import deque
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
+from fractions import Fraction
+from math import ceil
 
 from planner.cutting.knapsack import SUM_CELLS, reachable_sums
 from planner.cutting.packs import SoldAs
@@ -75,6 +77,27 @@ class Bounds:
             dearer.purchase,
             self.possible and other.possible,
         )
+
+
+def with_fewest(bounds: Bounds, sold: Sequence[SoldAs]) -> Bounds:
+    """Say how many put-ups a proven cost takes: at the dearest price of one, at least so many.
+
+    Parameters
+    ----------
+    bounds
+        What is proven.
+    sold
+        The put-ups.
+
+    Returns
+    -------
+    Bounds
+        The same, or with more put-ups.
+    """
+    dearest = max((Fraction(item.price, item.pack_size) for item in sold), default=Fraction(0))
+    if not dearest:
+        return bounds
+    return replace(bounds, bought=max(bounds.bought, ceil(bounds.cost / dearest)))
 
 
 def length_bounds(demand: dict[int, int], shelf: dict[int, int], sold: Sequence[SoldAs]) -> Bounds:

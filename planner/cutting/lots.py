@@ -5,7 +5,7 @@ from collections import Counter
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 
-from planner.cutting.bounds import Bounds
+from planner.cutting.bounds import Bounds, with_fewest
 from planner.cutting.exact import fillings_of
 from planner.cutting.filling import Supply
 from planner.cutting.flow_model import Pool, PoolPlan, Wanted, cheapest_flow
@@ -90,7 +90,7 @@ def solve_with_lots(
         cost=task.money.amount(plan.cost),
         bought=_bought(task, plan, offers),
         lower_bound=task.money.amount(search.bounds.cost),
-        bought_lower_bound=search.bounds.bought,
+        bought_lower_bound=with_fewest(search.bounds, task.sold).bought,
         opened=opened,
         unplaced=unplaced,
         seconds=time.monotonic() - started,

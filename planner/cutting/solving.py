@@ -6,7 +6,7 @@ from collections.abc import Callable, Iterator
 from dataclasses import replace
 from decimal import Decimal
 
-from planner.cutting.bounds import Bounds
+from planner.cutting.bounds import Bounds, with_fewest
 from planner.cutting.exact import proven_or_cheaper
 from planner.cutting.filling import Filling, Supply, fill_all, hold_long_pieces
 from planner.cutting.highs import NEVER, Limits
@@ -161,7 +161,7 @@ def settled(
             best = _learned(task, best, bounds, work_limit)
     if best is None:
         raise CuttingError(_no_plan(bounds))
-    return best, bounds
+    return best, with_fewest(bounds, task.sold)
 
 
 def _learned(task: Task, best: Plan, bounds: Bounds, work_limit: int) -> Plan:

@@ -1,6 +1,7 @@
 """The sentences that say how good a plan is, the same on the page, the sheet and the shell."""
 
 from collections.abc import Iterable
+from dataclasses import dataclass
 from decimal import Decimal
 from typing import Protocol
 
@@ -30,6 +31,25 @@ class ShadeResult(Protocol):
 
     @property
     def unplaced(self) -> Iterable[int]: ...
+
+
+class LotsProof(Protocol):
+    """What a sentence needs to know of the same shade with all thread as one lot."""
+
+    @property
+    def cost_without_lots(self) -> Decimal | None: ...
+
+    @property
+    def bought_without_lots(self) -> int | None: ...
+
+
+@dataclass(frozen=True)
+class LotsCost:
+    """What is bought more because lots are kept apart, and what would do if they were not."""
+
+    put_ups: int
+    cost: Decimal
+    cost_without: Decimal
 
 
 class PlanResult(Protocol):
@@ -73,6 +93,15 @@ def proof_of_shade(shade: ShadeResult) -> str:
     if shade.bought == 1:
         return "the shelf alone is not enough"
     return "fewer is impossible"
+
+
+def cost_of_lots(shade: ShadeResult, proof: LotsProof) -> LotsCost | None:
+    """Tell what keeping dye lots apart costs; None where it costs nothing, or nobody knows."""
+    cheaper = proof.cost_without_lots
+    if not is_worked_out(shade) or shade.unplaced or cheaper is None or cheaper >= shade.cost:
+        return None
+    extra = max(0, shade.bought - (proof.bought_without_lots or 0))
+    return LotsCost(extra, shade.cost - cheaper, cheaper)
 
 
 def _not_settled(shade: ShadeResult) -> str:

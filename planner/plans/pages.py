@@ -15,13 +15,14 @@ from patterns.working import knotted_working
 from planner.models import Plan, PlanBracelet, PlanKind, PlanShade, PlanStock
 from planner.planning.wording import (
     bought_words,
+    cost_of_lots,
     is_worked_out,
     proof_of_plan,
     proof_of_shade,
 )
 from planner.plans.cut_pages import cuts_of_shade
 from planner.plans.load import load_orders, load_shelf, orders_stamp
-from planner.plans.store import read_habits, read_kind
+from planner.plans.store import read_habits, read_kind, read_proof
 
 
 def plan_page(plan: Plan) -> dict[str, Any]:
@@ -33,6 +34,7 @@ def plan_page(plan: Plan) -> dict[str, Any]:
             {
                 "row": shade,
                 "proof": proof_of_shade(shade),
+                "lots_cost": cost_of_lots(shade, read_proof(shade.proof)),
                 "buys": list(shade.purchases.all()),
                 "is_worked_out": is_worked_out(shade),
             }
@@ -151,6 +153,7 @@ def shade_page(
         **plan_context(shade.plan),
         "shade": shade,
         "proof": proof_of_shade(shade),
+        "lots_cost": cost_of_lots(shade, read_proof(shade.proof)),
         "is_worked_out": is_worked_out(shade),
         "lengths": _need_by_length(shade),
         "shelf": [{**thread, "opened": thread["number"] in opened} for thread in shade.shelf],

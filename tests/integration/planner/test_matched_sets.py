@@ -12,7 +12,7 @@ from patterns.models import Colourway
 from planner.actions import make_plan
 from planner.models import Batch, OrderDraft, PlanPiece
 from planner.plans.load import load_orders, orders_stamp
-from planner.plans.store import read_snapshot
+from planner.plans.store import read_proof, read_snapshot
 from tests.factories import make_order, put_thread
 
 pytestmark = pytest.mark.django_db
@@ -74,3 +74,25 @@ def test_orders_without_sets_keep_the_stamp_of_earlier_releases(
     assert orders_stamp(load_orders([line], current).orders) != plain
     line.matched_set = ""
     assert orders_stamp(load_orders([line], current).orders) == plain
+
+
+def test_plan_says_what_keeping_lots_apart_costs(
+    page: Client, colourway: Colourway, batch: Batch
+) -> None:
+    """Two lots with thread for a bracelet each: as a set of two they need one lot, so new thread."""
+    make_order(batch, colourway, quantity=2, matched_set="Pair")
+    first = make_plan(batch=batch, user=None)
+    for shade_row in first.shades.all():
+        shade = Shade.objects.get(code=shade_row.code)
+        half = shade_row.need_mm // 2
+        put_thread(shade, half, lot="one", kind="remnant")
+        put_thread(shade, half, lot="two", kind="remnant")
+        assert shade_row.bought
+    plan = make_plan(batch=batch, user=None)
+    text = page.get(reverse("plan_detail", args=[plan.pk])).content.decode()
+    assert "lots cost" in text
+    for row in plan.shades.all():
+        assert read_proof(row.proof).cost_without_lots == 0 < row.cost
+        opened = page.get(reverse("plan_shade", args=[plan.pk, row.pk])).content.decode()
+        assert "Keeping dye lots apart costs 1 more to buy, €1.20" in opened
+        assert "the shelf would do" in opened
