@@ -11,13 +11,15 @@ from planner.cutting.knapsack import Filler, Fullest, LongestFirst, MostValuable
 from planner.cutting.supplies import bought_supplies
 from planner.cutting.task import Plan, Task
 
-MOST_PIECES = 3_000
+MOST_PIECES = 500
 """With more pieces one order of the stock is tried only."""
 MOST_ARCS = 2_000
 MOST_ENDS = 3_000
 MOST_NODES = 100
 """Nodes of the search tree: work, not time, so that plans repeat."""
 LONGEST_S = 0.3
+SHARE = 0.15
+"""Of the time left: a shade of two lots is tidied in three parts."""
 
 
 def tidied(task: Task, plan: Plan) -> tuple[Plan, bool]:
@@ -84,7 +86,7 @@ class _Model:
 
     def improved(self, plan: Plan) -> tuple[Plan, bool]:
         """Waste first; then, with no more waste, the pieces that lie on the shelf afterwards."""
-        limits = self.task.limits.at_most(min(LONGEST_S, 0.3 * self.task.limits.left_s))
+        limits = self.task.limits.at_most(min(LONGEST_S, SHARE * self.task.limits.left_s))
         plan, is_least = self._better(plan, limits, None)
         if not is_least:
             return plan, False
