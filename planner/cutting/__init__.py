@@ -3,6 +3,8 @@
 Pure: neither Django nor a models module is imported here.
 """
 
+from planner.cutting.from_scraps import make_from_scraps, scraps_words
+from planner.cutting.from_scraps_problem import Makeable, ScrapsProblem, ScrapsResult
 from planner.cutting.lot_problem import (
     CutPiece,
     Group,
@@ -34,14 +36,19 @@ __all__ = [
     "Lot",
     "LotResult",
     "LotStock",
+    "Makeable",
     "Offer",
     "Opened",
     "Problem",
     "PutUp",
     "Result",
+    "ScrapsProblem",
+    "ScrapsResult",
     "StockPiece",
     "lower_bounds",
+    "make_from_scraps",
     "read_problem",
+    "scraps_words",
     "solve",
     "solve_with_lots",
 ]

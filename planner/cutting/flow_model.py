@@ -150,8 +150,21 @@ def cheapest_flow(
 
 
 @dataclass
-class _Part:
-    """The columns of one pool."""
+class PoolPart:
+    """The columns of one pool in a programme.
+
+    Parameters
+    ----------
+    pool
+        The stock.
+    made
+        For each kind the column that says how many are made from it; None where that is `fixed`.
+    fixed
+        How many of each kind where there is only one pool.
+    arcs, shelf, opened, bundles
+        Columns: of arcs (node, step), of shelf pieces opened by size, of put-ups opened and of
+        steps of packs bought by the put-up's index.
+    """
 
     pool: Pool
     made: list[int] | None
@@ -162,12 +175,14 @@ class _Part:
     bundles: dict[int, int] = field(default_factory=dict)
 
     def cost(self, values: Sequence[int]) -> int:
+        """Give what is spent on this pool [smallest units of money]."""
         return sum(
             self.pool.sold[index].bundle_price * values[column]
             for column, index in self.bundles.items()
         )
 
     def plan(self, values: Sequence[int]) -> PoolPlan:
+        """Take the flow apart; ValueError where rounded values do not fit together."""
         flow = {arc: values[column] for column, arc in self.arcs.items() if values[column]}
         counts = {size: values[column] for column, size in self.shelf.items() if values[column]}
         new = {index: values[column] for column, index in self.opened.items() if values[column]}
@@ -192,7 +207,7 @@ class _Part:
 @dataclass
 class _Model:
     programme: Programme
-    parts: list[_Part]
+    parts: list[PoolPart]
 
     @classmethod
     def of(
@@ -242,16 +257,16 @@ def _add_pool(
     money: int,
     unit: int,
     spread: list[int] | None,
-) -> _Part:
+) -> PoolPart:
     fixed = tuple(kind.count for kind in wanted)
     demand = _demand(wanted, pool.longest)
     if spread is None:
         rows = {length: programme.row(count, count) for length, count in demand.items()}
-        part = _Part(pool, None, fixed)
+        part = PoolPart(pool, None, fixed)
     else:
         rows = {length: programme.row(0, 0) for length in demand}
-        part = _Part(pool, _add_made(programme, wanted, pool, rows, spread), fixed)
-    _add_flow(programme, part, graph, rows, money, unit)
+        part = PoolPart(pool, _add_made(programme, wanted, pool, rows, spread), fixed)
+    add_flow(programme, part, graph, rows, money, unit)
     return part
 
 
@@ -273,14 +288,31 @@ def _add_made(
     return made
 
 
-def _add_flow(
+def add_flow(
     programme: Programme,
-    part: _Part,
+    part: PoolPart,
     graph: FlowGraph,
     rows: Mapping[int, int],
     money: int,
     unit: int,
 ) -> None:
+    """Add the columns of a pool's graph, its stock and its put-ups.
+
+    Parameters
+    ----------
+    programme
+        What they are added to.
+    part
+        The pool; it learns its columns.
+    graph
+        Its graph, for lengths up to its longest stock piece.
+    rows
+        Length [cells] to the row that counts how often it is cut.
+    money
+        The row of all that is spent [units]; not used where nothing is sold.
+    unit
+        Smallest units of money in a unit of that row.
+    """
     sizes = {*part.pool.shelf, *(item.size for item in part.pool.sold)}
     points = sorted({*graph.nodes, *sizes} - {0})
     balance = {0: programme.row(0, 0)} | {point: programme.row(0, 0) for point in points}
@@ -302,7 +334,7 @@ def _add_flow(
 
 def _add_put_up(
     programme: Programme,
-    part: _Part,
+    part: PoolPart,
     index: int,
     item: SoldAs,
     opened: dict[int, float],

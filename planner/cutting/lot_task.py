@@ -64,7 +64,7 @@ class LotTask:
                 suppliers[offer.supplier].append(_sold_as(offer, number, cell_mm, money))
         return cls(
             Counter(kind_of(group, cell_mm) for group in groups if group.pieces_mm),
-            [(lot, _supplies(lot, cell_mm)) for lot in lots],
+            [(lot, supplies_of(lot, cell_mm)) for lot in lots],
             {supplier: worth_buying(sold) for supplier, sold in suppliers.items()},
             cell_mm,
             money,
@@ -182,7 +182,21 @@ def _sold_as(offer: Offer, number: int, cell_mm: int, money: Money) -> SoldAs:
     )
 
 
-def _supplies(lot: Lot, cell_mm: int) -> tuple[Supply, ...]:
+def supplies_of(lot: Lot, cell_mm: int) -> tuple[Supply, ...]:
+    """Give the stock of a lot in cells.
+
+    Parameters
+    ----------
+    lot
+        The lot.
+    cell_mm
+        Length of a cell [mm].
+
+    Returns
+    -------
+    tuple of Supply
+        By length; stock without length is left out.
+    """
     counts = Counter(stock.length_mm for stock in lot.stock if stock.length_mm)
     return tuple(Supply(mm, mm // cell_mm, count) for mm, count in sorted(counts.items()))
 

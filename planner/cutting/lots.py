@@ -81,7 +81,7 @@ def solve_with_lots(
     task = LotTask.of(groups, lots, offers, limits, keep_length_mm)
     search = _Search.begin(task)
     search.run()
-    plan = _tidied(task, search.best)
+    plan = tidied_plan(task, search.best)
     proven = search.is_closed and all(task.fits_nowhere(kind) for kind in plan.unplaced)
     cost, bought, bound = search.without_lots()
     opened, unplaced = Naming(task, groups, offers).of(plan)
@@ -246,8 +246,21 @@ def _counts(supplies: Sequence[Supply]) -> dict[int, int]:
     return dict(counts)
 
 
-def _tidied(task: LotTask, plan: LotPlan) -> LotPlan:
-    """Waste less in each lot, with its groups as they are."""
+def tidied_plan(task: LotTask, plan: LotPlan) -> LotPlan:
+    """Waste less in each lot, with its groups as they are.
+
+    Parameters
+    ----------
+    task
+        The shade.
+    plan
+        A plan for it.
+
+    Returns
+    -------
+    LotPlan
+        The same groups from the same lots and suppliers.
+    """
     supplies_of = {lot.key: supplies for lot, supplies in task.lots}
     shelf = []
     for part in plan.shelf:
