@@ -15,6 +15,7 @@ from planner.order_list.results import GoodLine
 from planner.orders.drafts import corrected
 from planner.planning.snapshot import Snapshot
 from planner.planning.watching import Watcher
+from planner.plans.from_scraps import MadeRow
 from planner.plans.store import store_snapshot
 from planner.plans.work_out import PlanError, work_out_plan
 
@@ -85,6 +86,25 @@ def save_lines(
     OrderLine.objects.bulk_update(lines.values(), list(LINE_FIELDS), batch_size=200)
     batch.lines.filter(pk__in=list(removed)).delete()
     append_lines(batch=batch, good=added)
+    return batch
+
+
+@transaction.atomic
+def order_from_scraps(*, rows: Sequence[MadeRow]) -> Batch:
+    """A batch for the stall, of what can be made without buying."""
+    batch = Batch.objects.create(name="For the stall, from scraps")
+    OrderLine.objects.bulk_create(
+        OrderLine(
+            batch=batch,
+            position=position,
+            pattern_id=row.wish.colourway.pattern_id,
+            colourway=row.wish.colourway,
+            size=row.wish.size,
+            ending=row.wish.ending,
+            quantity=row.count,
+        )
+        for position, row in enumerate(rows, start=1)
+    )
     return batch
 
 

@@ -2,7 +2,7 @@
 
 from django.urls import include, path
 
-from planner.views import batches, cards, home, lists, plans, runs, workshop
+from planner.views import batches, cards, home, lists, plans, runs, scraps, workshop
 
 urlpatterns = [
     path("", home.home, name="home"),
@@ -27,6 +27,8 @@ urlpatterns = [
     path("plans/<key:pk>/<slug:sheet>.<slug:ending>", plans.plan_sheet, name="plan_sheet"),
     path("plans/<key:plan_pk>/kinds/<key:pk>/card.pdf", cards.plan_card, name="plan_card"),
     path("b/<key:pk>/", plans.bracelet, name="bracelet"),
+    path("stall/from-scraps/", scraps.from_scraps, name="from_scraps"),
+    path("stall/from-scraps/order/", scraps.order_scraps, name="order_scraps"),
     path("patterns/<key:pk>/card.pdf", cards.knotting_card, name="knotting_card"),
     path("patterns/", include("patterns.urls")),
     path("shelf/", include("inventory.urls")),

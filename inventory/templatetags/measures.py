@@ -44,6 +44,11 @@ def money(context: Context, amount: Decimal) -> str:
     workshop = context.get("workshop")
     if not currency:
         currency = workshop.currency if workshop else "EUR"
+    return money_words(amount, currency)
+
+
+def money_words(amount: Decimal, currency: str) -> str:
+    """An amount as every page writes it."""
     return format_currency(amount, currency, locale="en_GB")
 
 

@@ -34,7 +34,9 @@ def plan_detail(request: HttpRequest, pk: int) -> HttpResponse:
 def plan_shade(request: HttpRequest, pk: int, shade_pk: int) -> HttpResponse:
     shade = get_object_or_404(PlanShade.objects.select_related("plan__batch"), pk=shade_pk, plan=pk)
     template = "planner/_plan_shade.html" if request.htmx else "planner/plan_shade.html"  # type: ignore[attr-defined]
-    response = render(request, template, shade_page(shade, request.GET.get("by"), request.GET.get("page")))
+    response = render(
+        request, template, shade_page(shade, request.GET.get("by"), request.GET.get("page"))
+    )
     response["Vary"] = "HX-Request"
     return response
 
