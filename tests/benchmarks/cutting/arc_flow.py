@@ -27,6 +27,7 @@ MOST_ARCS = 3_000_000
 class Graph:
     """Arcs from `tails` to `heads` (indices of places); `pieces` tells which length, -1 for a loss.
 
+    Arcs stand by length, longest first, then by tail; losses from each place to the next come last.
     `ends` are the stock lengths, `most` and `units` how many of each and what one costs.
     """
 
@@ -41,10 +42,12 @@ class Graph:
 
 
 def arc_flow_plan(problem: Problem, time_limit_s: float, seed: int = 0) -> ReferencePlan | None:
-    """Find the least money with single put-ups; None where it finds no plan in time."""
-    if any(
-        put_up.pack_size * put_up.minimum_packs * put_up.pack_step > 1 for put_up in problem.buy
-    ):
+    """Find the least money with single put-ups; None where it finds no plan in time.
+
+    HiGHS looks at its clock seldom: what it finds after the limit is taken as well. It is not given
+    a plan to start from: with one, its root took twenty seconds beyond a limit of one.
+    """
+    if any(sold.pack_size * sold.minimum_packs * sold.pack_step > 1 for sold in problem.buy):
         raise ValueError("The plain arc-flow model knows no packs.")
     deadline = time.monotonic() + time_limit_s
     graph = _graph(problem)
@@ -54,8 +57,8 @@ def arc_flow_plan(problem: Problem, time_limit_s: float, seed: int = 0) -> Refer
     highs.setOptionValue("time_limit", max(0.01, deadline - time.monotonic()))
     highs.run()
     status = highs.getModelStatus()
-    info = highs.getInfo()
-    if info.primal_solution_status != highspy.SolutionStatus.kSolutionStatusFeasible:
+    solution = highs.getInfo().primal_solution_status
+    if solution != highspy.SolutionStatus.kSolutionStatusFeasible:
         return None
     flow = np.rint(np.array(highs.getSolution().col_value)).astype(int)
     cuts = tuple(_cuts(graph, flow))

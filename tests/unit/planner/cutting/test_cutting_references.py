@@ -10,7 +10,7 @@ from planner.cutting import Problem, PutUp
 from tests.benchmarks.cutting.arc_flow import arc_flow_plan
 from tests.cutting_greedy import ReferenceCut, faults, greedy_plan, packs_for
 from tests.cutting_reference import cp_sat_plan
-from tests.cutting_samples import realistic_shade
+from tests.cutting_samples import realistic_shade, small_with_remnants
 from tests.unit.planner.cutting.cutting_helpers import (
     as_problem,
     first_fit_decreasing_cost,
@@ -32,6 +32,22 @@ def test_arc_flow_proves_the_published_optimum(name: str) -> None:
     assert plan is not None
     assert (plan.cost, plan.proven) == (OPTIMA[name], True)
     assert list(faults(problem, plan.cuts, plan.cost)) == []
+
+
+def test_arc_flow_agrees_with_cp_sat_where_remnants_are_about() -> None:
+    compared = 0
+    for seed in range(40):
+        problem = small_with_remnants(Random(seed))
+        if any(sold.pack_size * sold.minimum_packs > 1 for sold in problem.buy):
+            continue
+        plan, other = arc_flow_plan(problem, PATIENT_S), cp_sat_plan(problem, PATIENT_S)
+        assert plan is not None
+        assert other is not None
+        assert (plan.proven, other.proven) == (True, True), seed
+        assert plan.cost == other.cost, seed
+        assert list(faults(problem, plan.cuts, plan.cost)) == []
+        compared += 1
+    assert compared >= 10
 
 
 @pytest.mark.parametrize("name", [*SMALL, "remnants_zero_waste_mm"])
