@@ -30,8 +30,9 @@ class ScrapsForm(forms.Form):
     colourways = TicksField(
         label="Which bracelets?",
         queryset=Colourway.objects.none(),
-        error_messages={"required": "Tick at least one bracelet that you would make."},
+        required=False,
     )
+    every = forms.BooleanField(label="All of these", required=False)
     sizes = TicksField(
         label="In which sizes?",
         queryset=Size.objects.all(),
@@ -82,6 +83,10 @@ class ScrapsForm(forms.Form):
 
     def clean(self) -> dict[str, Any]:
         cleaned = super().clean() or self.cleaned_data
+        if cleaned.get("every"):
+            cleaned["colourways"] = self.rows
+        elif not cleaned.get("colourways") and "colourways" not in self.errors:
+            self.add_error("colourways", "Tick at least one bracelet that you would make.")
         colourways, sizes = cleaned.get("colourways"), cleaned.get("sizes")
         if cleaned.get("aim") == "money":
             for colourway in colourways or ():

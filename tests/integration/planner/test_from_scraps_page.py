@@ -12,7 +12,7 @@ from inventory.models import Shade, ShelfPiece
 from patterns.models import Colourway, Ending, Size
 from planner.actions import make_plan
 from planner.models import Batch
-from tests.factories import make_colourway, make_pattern, put_thread
+from tests.factories import make_colourway, make_pattern, make_workshop, put_thread
 
 pytestmark = pytest.mark.django_db
 ADDRESS = "/stall/from-scraps/"
@@ -38,8 +38,6 @@ def shelf(colourway: Colourway) -> Colourway:
 
 
 def test_page_before_anything_is_there_says_what_to_do(page: Client) -> None:
-    from tests.factories import make_workshop
-
     make_workshop()
     text = page.get(ADDRESS).content.decode()
     assert "There is no pattern with a colourway yet" in text
@@ -90,6 +88,14 @@ def test_found_is_ordered_and_its_plan_buys_nothing(page: Client, shelf: Colourw
     assert answer["Location"] == reverse("batch_detail", args=[batch.pk])
     assert batch.lines.bracelet_count() == found.result.count > 0
     assert make_plan(batch=batch, user=None).cost == 0
+
+
+def test_all_of_them_may_be_asked_at_once(page: Client, shelf: Colourway) -> None:
+    make_colourway(make_pattern("Spray"), "Dusk")
+    asked = {**choices(), "every": "on"}
+    found = page.post(ADDRESS, asked).context["found"]
+    assert found.result.count > 0
+    assert found.result.status == "optimal"
 
 
 BAD = [
