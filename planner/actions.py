@@ -13,6 +13,7 @@ from patterns.actions import load_defaults, note_planned
 from planner.models import Batch, OrderDraft, OrderLine, Plan
 from planner.order_list.results import GoodLine
 from planner.orders.drafts import corrected
+from planner.planning.choices import Choice
 from planner.planning.snapshot import Snapshot
 from planner.planning.watching import Watcher
 from planner.plans.from_scraps import MadeRow
@@ -175,7 +176,9 @@ def make_plan(*, batch: Batch, user: Any) -> Plan:
     return store_plan(snapshot=work_out_batch(batch=batch), batch=batch, user=user)
 
 
-def work_out_batch(*, batch: Batch, watcher: Watcher | None = None) -> Snapshot:
+def work_out_batch(
+    *, batch: Batch, watcher: Watcher | None = None, choice: Choice | None = None
+) -> Snapshot:
     """The plan of a batch as it stands, not yet saved; its number is given when it is."""
     workshop = Workshop.current()
     if workshop is None:
@@ -188,6 +191,7 @@ def work_out_batch(*, batch: Batch, watcher: Watcher | None = None) -> Snapshot:
         plan_number=1,
         today=timezone.localdate(),
         watcher=watcher,
+        choice=choice,
     )
 
 

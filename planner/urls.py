@@ -2,7 +2,7 @@
 
 from django.urls import include, path
 
-from planner.views import batches, cards, home, lists, plans, runs, scraps, workshop
+from planner.views import batches, cards, choices, home, lists, plans, runs, scraps, workshop
 
 urlpatterns = [
     path("", home.home, name="home"),
@@ -18,6 +18,13 @@ urlpatterns = [
     path("orders/<key:pk>/lists/<key:draft_pk>/", lists.list_check, name="list_check"),
     path("orders/<key:pk>/lists/<key:draft_pk>/add/", lists.list_confirm, name="list_confirm"),
     path("orders/<key:pk>/lists/<key:draft_pk>/discard/", lists.list_discard, name="list_discard"),
+    path("orders/<key:pk>/choices/", choices.choices, name="choices"),
+    path("orders/<key:pk>/choices/row/", choices.choice_row, name="choice_row"),
+    path(
+        "orders/<key:pk>/choices/substitutes/",
+        choices.choice_substitutes,
+        name="choice_substitutes",
+    ),
     path("orders/<key:pk>/plan/", runs.plan_new, name="plan_new"),
     path("runs/<key:pk>/", runs.run_detail, name="run_detail"),
     path("runs/<key:pk>/stop/", runs.run_stop, name="run_stop"),

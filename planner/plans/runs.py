@@ -13,6 +13,7 @@ from inventory.models import Shade
 from planner.actions import work_out_batch
 from planner.actions_runs import RunLost, fail_run, finish_run
 from planner.models import PlanRun
+from planner.planning.choices import read_choice
 from planner.plans.work_out import PlanError
 
 logger = logging.getLogger(__name__)
@@ -101,7 +102,8 @@ def carry_out(pk: int) -> None:
     run = PlanRun.objects.select_related("batch", "created_by").get(pk=pk)
     watcher = RunWatcher(pk)
     try:
-        snapshot = work_out_batch(batch=run.batch, watcher=watcher)
+        choice = read_choice(run.choice)
+        snapshot = work_out_batch(batch=run.batch, watcher=watcher, choice=choice)
         watcher.saving_begins()
         finish_run(run=run, snapshot=snapshot)
     except PlanError as reason:

@@ -1,17 +1,26 @@
 """Plan order lines against the workshop as it stands, without saving anything."""
 
 from collections.abc import Sequence
+from dataclasses import dataclass, replace
 from datetime import date
 
 from inventory.models import Workshop
 from planner.models import OrderLine
+from planner.planning.choices import (
+    Choice,
+    ChoiceError,
+    offers_for,
+    threads_for,
+    with_substitutes,
+)
 from planner.planning.compose import compose
 from planner.planning.demand import Bracelet, ExplodedKind, Order, explode
-from planner.planning.netting import NettedShade, net
+from planner.planning.netting import NettedShade, ShelfThread, ThreadOffer, net
 from planner.planning.snapshot import Snapshot
 from planner.planning.watching import Watcher
 from planner.planning.wording import WITHOUT_PLAN
-from planner.plans.load import habits_of, load_orders, load_shelf, orders_stamp
+from planner.plans.choose import choose
+from planner.plans.load import LoadedShelf, habits_of, load_orders, load_shelf, orders_stamp
 
 MOST_BRACELETS = 20_000
 # A plan is stored in one transaction, and whoever saves meanwhile waits for it: 90,000 pieces take
@@ -23,6 +32,77 @@ class PlanError(ValueError):
     """Nothing can be planned; the text says why."""
 
 
+@dataclass(frozen=True)
+class Prepared:
+    """Orders exploded, and the thread that a choice may use; nothing is cut yet."""
+
+    kinds: tuple[ExplodedKind, ...]
+    bracelets: tuple[Bracelet, ...]
+    shelf: LoadedShelf
+    threads: tuple[ShelfThread, ...]
+    offers: tuple[ThreadOffer, ...]
+    problems: tuple[str, ...]
+    orders_stamp: str
+    words: tuple[str, ...]
+
+    def net(
+        self, workshop: Workshop, *, time_limit_s: float = 10.0, watcher: Watcher | None = None
+    ) -> tuple[NettedShade, ...]:
+        """Cut every shade; PlanError where none could be worked out."""
+        netted = net(
+            self.kinds,
+            self.bracelets,
+            self.threads,
+            self.offers,
+            time_limit_s=time_limit_s,
+            keep_length_mm=workshop.keep_length_mm,
+            watcher=watcher,
+        )
+        _check_worked_out(netted)
+        return netted
+
+
+def prepare(
+    *,
+    lines: Sequence[OrderLine],
+    workshop: Workshop,
+    choice: Choice | None = None,
+    strict: bool = False,
+    row_numbers: Sequence[int] = (),
+) -> Prepared:
+    """Lines that cannot be planned are named in `problems`; `strict` refuses them instead.
+
+    The stamps stay those of the orders and the shelf as they are, whatever is chosen.
+    """
+    if not lines:
+        raise PlanError("There are no orders to plan yet. Add some first.")
+    choice = choice or Choice()
+    try:
+        chosen = choose(lines, choice)
+    except ChoiceError as reason:
+        raise PlanError(str(reason)) from None
+    loaded = load_orders(chosen.lines, workshop, row_numbers=row_numbers)
+    if strict and loaded.problems:
+        raise PlanError(" ".join(loaded.problems[:3]))
+    if not loaded.orders:
+        raise PlanError("None of the orders can be planned. " + " ".join(loaded.problems[:3]))
+    _check_bracelets(loaded.orders)
+    as_ordered = loaded.orders if choice.is_plain else load_orders(lines, workshop).orders
+    kinds, bracelets = explode(with_substitutes(loaded.orders, choice))
+    _check_pieces(kinds, bracelets)
+    shelf = load_shelf({shade for kind in kinds for _, shade in kind.kind.shades}, workshop)
+    return Prepared(
+        kinds=kinds,
+        bracelets=bracelets,
+        shelf=shelf,
+        threads=threads_for(shelf.threads, choice),
+        offers=offers_for(shelf.offers, choice),
+        problems=loaded.problems,
+        orders_stamp=orders_stamp(as_ordered),
+        words=chosen.words,
+    )
+
+
 def work_out_plan(
     *,
     lines: Sequence[OrderLine],
@@ -31,48 +111,34 @@ def work_out_plan(
     market_date: date | None,
     plan_number: int,
     today: date,
+    choice: Choice | None = None,
     strict: bool = False,
     row_numbers: Sequence[int] = (),
     watcher: Watcher | None = None,
 ) -> Snapshot:
-    """Lines that cannot be planned are named in the snapshot; `strict` refuses them instead."""
-    if not lines:
-        raise PlanError("There are no orders to plan yet. Add some first.")
-    loaded = load_orders(lines, workshop, row_numbers=row_numbers)
-    if strict and loaded.problems:
-        raise PlanError(" ".join(loaded.problems[:3]))
-    if not loaded.orders:
-        raise PlanError("None of the orders can be planned. " + " ".join(loaded.problems[:3]))
-    _check_bracelets(loaded.orders)
-    kinds, bracelets = explode(loaded.orders)
-    _check_pieces(kinds, bracelets)
-    shade_ids = {shade for kind in kinds for _, shade in kind.kind.shades}
-    shelf = load_shelf(shade_ids, workshop)
-    netted = net(
-        kinds,
-        bracelets,
-        shelf.threads,
-        shelf.offers,
-        keep_length_mm=workshop.keep_length_mm,
-        watcher=watcher,
+    """Work out a plan without saving it; PlanError says why there is none."""
+    prepared = prepare(
+        lines=lines, workshop=workshop, choice=choice, strict=strict, row_numbers=row_numbers
     )
-    _check_worked_out(netted)
-    return compose(
+    snapshot = compose(
         batch_name=batch_name,
         market_date=market_date,
         plan_number=plan_number,
         plan_date=today,
         habits=habits_of(workshop),
-        kinds=kinds,
-        bracelets=bracelets,
-        netted=netted,
-        names=shelf.names,
-        shelf=shelf.threads,
-        offers=shelf.offers,
-        problems=loaded.problems,
-        shelf_stamp=shelf.stamp,
-        orders_stamp=orders_stamp(loaded.orders),
+        kinds=prepared.kinds,
+        bracelets=prepared.bracelets,
+        netted=prepared.net(workshop, watcher=watcher),
+        names=prepared.shelf.names,
+        shelf=prepared.shelf.threads,
+        offers=prepared.shelf.offers,
+        problems=prepared.problems,
+        shelf_stamp=prepared.shelf.stamp,
+        orders_stamp=prepared.orders_stamp,
     )
+    if choice is None or choice.is_plain:
+        return snapshot
+    return replace(snapshot, choice={"choice": choice.as_json(), "words": list(prepared.words)})
 
 
 def _check_bracelets(orders: Sequence[Order]) -> None:

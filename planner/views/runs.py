@@ -9,16 +9,29 @@ from django.views.decorators.http import require_GET, require_POST
 
 from planner.actions_runs import start_run, stop_run
 from planner.models import Batch, PlanRun
+from planner.planning.choices import ChoiceError
+from planner.plans.posted_choice import posted_choice
 from planner.plans.runs import SAVING, begin
 
 
 @require_POST
 def plan_new(request: HttpRequest, pk: int) -> HttpResponse:
     batch = get_object_or_404(Batch, pk=pk)
-    run, is_new = start_run(batch=batch, user=request.user)
+    try:
+        choice = posted_choice(request.POST)
+    except ChoiceError as reason:
+        messages.error(request, str(reason))
+        return redirect("batch_detail", pk=pk)
+    run, is_new = start_run(batch=batch, user=request.user, choice=choice.as_json())
     if is_new:
         begin(run)
         run.refresh_from_db()
+    elif run.choice != choice.as_json():
+        messages.warning(
+            request,
+            "Another plan of this batch is being worked out. Wait for it, or stop it; then plan "
+            "your choice again.",
+        )
     if run.status == PlanRun.Status.FAILED:
         messages.error(request, run.message)
         return redirect("batch_detail", pk=pk)
