@@ -55,6 +55,13 @@ class WorkedOut:
     exchanges: tuple[Exchange, ...]
 
     @property
+    def words_beside_title(self) -> tuple[str, ...]:
+        """What the title of a usual way does not say already: which endings it takes."""
+        if self.way.choice.start or self.way not in usual_ways():
+            return self.words
+        return ()
+
+    @property
     def saves(self) -> Decimal:
         return -self.cost_more
 
