@@ -9,7 +9,7 @@ from typing import Any
 Row = dict[str, Any]
 HEAD = (
     f"{'':22}{'plans':>8}{'cheapest':>9}{'proven':>8}{'skeins':>8}{'waste mm':>10}"
-    f"{'median s':>10}{'worst s':>9}{'peak MB':>9}  |{'skeins':>7}{'waste':>7}{'seconds':>9}"
+    f"{'median s':>10}{'worst s':>9}{'peak MB':>9}  |{'skeins':>7}{'waste':>9}{'seconds':>9}"
 )
 
 
@@ -86,7 +86,7 @@ def _ratios(one: Answers, base: Answers) -> str:
         statistics.median(pair[place]["seconds"] for pair in pairs) if pairs else 0
         for place in (0, 1)
     ]
-    return f"  |{skeins:>7}{waste:>7}{_ratio(*medians, places=2):>9}"
+    return f"  |{skeins:>7}{waste:>9}{_ratio(*medians, places=2):>9}"
 
 
 def _ratio_of_sums(pairs: list[tuple[Row, Row]], name: str) -> str:
