@@ -1,7 +1,7 @@
 """The last resort where filling misses its bound: the linear bound, then an exact search."""
 
 from collections import Counter
-from collections.abc import Iterable, Iterator
+from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass, field, replace
 from math import gcd
 
@@ -10,17 +10,29 @@ from planner.cutting.filling import Filling
 from planner.cutting.flow_graph import counted
 from planner.cutting.flow_model import Pool, PoolPlan, Wanted, cheapest_flow
 from planner.cutting.linear import Column, linear_bound
-from planner.cutting.pattern_model import PatternPlan, cheapest_by_patterns
+from planner.cutting.pattern_model import (
+    MOST_PATTERNS,
+    QUICK_PATTERNS,
+    PatternPlan,
+    cheapest_by_patterns,
+)
 from planner.cutting.task import Plan, Task
 
 LINEAR_SHARE = 0.4
 """Share of the time left that the linear bound may take."""
-SEARCH_SHARE = 0.5
+SEARCH_SHARE = 0.3
 """The same for every search; HiGHS looks at the clock seldom, so a search may take longer."""
-PATTERN_SHARES = (0.05, 0.1, 0.3, 1.0)
+MOST_ARCS = 12_000
+"""Of larger models HiGHS runs on for seconds after its time is up (measured)."""
+PATTERN_SHARES = (0.003, 0.01, 0.03, 0.1, 0.3, 1.0)
 
 
-def proven_or_cheaper(task: Task, best: Plan | None, bounds: Bounds) -> tuple[Plan | None, Bounds]:
+def proven_or_cheaper(
+    task: Task,
+    best: Plan | None,
+    bounds: Bounds,
+    learn: Callable[[Plan, Bounds], Plan],
+) -> tuple[Plan | None, Bounds]:
     """Close the gap between a plan and its bound from both sides.
 
     Parameters
@@ -31,6 +43,9 @@ def proven_or_cheaper(task: Task, best: Plan | None, bounds: Bounds) -> tuple[Pl
         The plan so far; None where none was found.
     bounds
         What is proven so far.
+    learn
+        Looks for a cheaper plan by longer filling: tried between the quick searches and the long
+        ones, since each finds what the other does not (measured).
 
     Returns
     -------
@@ -39,8 +54,10 @@ def proven_or_cheaper(task: Task, best: Plan | None, bounds: Bounds) -> tuple[Pl
     """
     gap = _Gap(task, best, bounds)
     gap.bound_linearly()
-    if not gap.is_closed:
-        gap.search_patterns()
+    gap.search_patterns(QUICK_PATTERNS)
+    if gap.best is not None and not gap.is_closed:
+        gap.best = learn(gap.best, gap.bounds)
+    gap.search_patterns(MOST_PATTERNS)
     if not gap.is_closed:
         gap.search_arcs()
     return gap.best, gap.bounds
@@ -87,7 +104,7 @@ class _Gap:
             self.bounds = self.bounds.combined(found.bounds)
             self.weights = found.weights if found.value is not None else {}
 
-    def search_patterns(self) -> None:
+    def search_patterns(self, most_patterns: int) -> None:
         """First the patterns that spend little of the gap, at last all that a better plan can use."""
         for share in PATTERN_SHARES:
             if self.best is None or self.is_closed or not self.weights:
@@ -100,7 +117,10 @@ class _Gap:
                 self.most,
                 self.task.limits.at_most(SEARCH_SHARE * self.task.limits.left_s),
                 share=share,
+                most_patterns=most_patterns,
             )
+            if found is None:
+                return
             if found.opened:
                 self.offer(_trimmed(self.task, found))
             elif found.verdict == "impossible":
@@ -112,7 +132,9 @@ class _Gap:
         wanted = [Wanted({length: 1}, count) for length, count in self.task.demand.items()]
         pool = Pool(self.task.shelf_counts(), tuple(self.task.sold))
         limits = self.task.limits.at_most(SEARCH_SHARE * self.task.limits.left_s)
-        found = cheapest_flow(wanted, [pool], self.bounds.cost, self.most, limits)
+        found = cheapest_flow(
+            wanted, [pool], self.bounds.cost, self.most, limits, most_arcs=MOST_ARCS
+        )
         if found.pools:
             self.offer(fillings_of(self.task, found.pools[0]))
         if found.verdict == "impossible" and self.best is None:

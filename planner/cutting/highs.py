@@ -141,7 +141,13 @@ class Answer:
     bound: float
 
 
-def solve_whole(programme: Programme, limits: Limits, *, most_nodes: int | None = None) -> Answer:
+def solve_whole(
+    programme: Programme,
+    limits: Limits,
+    *,
+    most_nodes: int | None = None,
+    presolve: bool = True,
+) -> Answer:
     """Minimise an integer programme.
 
     Parameters
@@ -152,6 +158,8 @@ def solve_whole(programme: Programme, limits: Limits, *, most_nodes: int | None 
         When to stop.
     most_nodes
         Nodes of the search tree after which it stops, the same on every machine; None for no limit.
+    presolve
+        Whether HiGHS may reduce the programme first; of large ones it does not heed the time.
 
     Returns
     -------
@@ -165,6 +173,8 @@ def solve_whole(programme: Programme, limits: Limits, *, most_nodes: int | None 
     highs = quiet_highs(limits)
     if most_nodes is not None:
         highs.setOptionValue("mip_max_nodes", most_nodes)
+    if not presolve:
+        highs.setOptionValue("presolve", "off")
     highs.setOptionValue("mip_rel_gap", 0.0)
     highs.setOptionValue("mip_abs_gap", 1e-6)
     if highs.passModel(_model(programme)) == highspy.HighsStatus.kError:

@@ -29,6 +29,8 @@ if TYPE_CHECKING:
 
 MOST_PATTERNS = 20_000
 """Beyond so many HiGHS does not get far in seconds (measured)."""
+QUICK_PATTERNS = 4_000
+"""So many are settled in a second or so; of more, presolving runs on past its time (measured)."""
 
 
 @dataclass(frozen=True)
@@ -57,7 +59,8 @@ def cheapest_by_patterns(
     limits: Limits,
     *,
     share: float = 1.0,
-) -> PatternPlan:
+    most_patterns: int = MOST_PATTERNS,
+) -> PatternPlan | None:
     """Search for the cheapest plan that costs at most `most`.
 
     Parameters
@@ -77,15 +80,17 @@ def cheapest_by_patterns(
     share
         Only patterns that spend at most this share of the gap are looked at: below 1 a quick way to
         a plan, since a plan spends the gap once, but no proof.
+    most_patterns
+        With more patterns it is not tried.
 
     Returns
     -------
-    PatternPlan
-        ``"unknown"`` also where there are too many patterns.
+    PatternPlan or None
+        None where there are too many patterns, so that a larger share is not worth trying.
     """
-    columns = _columns(demand, shelf, sold, weights, most, limits, share)
+    columns = _columns(demand, shelf, sold, weights, most, limits, share, most_patterns)
     if columns is None:
-        return PatternPlan("unknown", ())
+        return None
     programme = Programme()
     rows = {length: programme.row(count, INFINITY) for length, count in demand.items()}
     opened_rows = {size: programme.row(0, count) for size, count in shelf.items()}
@@ -98,7 +103,7 @@ def cheapest_by_patterns(
         opened = opened_rows[column.size] if column.put_up is None else new_rows[column.put_up]
         entries: dict[int, float] = {rows[length]: count for length, count in column.pieces}
         programme.column({**entries, opened: 1})
-    answer = solve_whole(programme, limits)
+    answer = solve_whole(programme, limits, presolve=len(columns) <= QUICK_PATTERNS)
     used = zip(columns, answer.values[first:], strict=False)
     verdict = answer.verdict if share >= 1 or answer.verdict != "impossible" else "unknown"
     return PatternPlan(verdict, tuple((column, count) for column, count in used if count))
@@ -112,6 +117,7 @@ def _columns(
     most: int,
     limits: Limits,
     share: float,
+    most_patterns: int,
 ) -> list[Column] | None:
     """All patterns that a plan of at most that cost could use; None where there are too many."""
     lengths = sorted(demand)
@@ -135,7 +141,7 @@ def _columns(
         for pieces in walk.patterns(len(lengths), size, least):
             if pieces:
                 found.append(Column(size, put_up, pieces))
-            if len(found) > MOST_PATTERNS or limits.are_over:
+            if len(found) > most_patterns or limits.are_over:
                 return None
     return found
 

@@ -5,6 +5,7 @@ from collections import deque
 from collections.abc import Callable, Iterator
 from dataclasses import replace
 from decimal import Decimal
+from functools import partial
 
 from planner.cutting.bounds import Bounds, with_fewest
 from planner.cutting.exact import proven_or_cheaper
@@ -24,6 +25,8 @@ WORK_LIMIT = 1_000_000_000
 """Table cells the learning passes may fill, about two seconds: work, not time, so that plans repeat."""
 FIRST_WORK_LIMIT = 50_000_000
 """The same before the linear bound and the exact search are tried."""
+SEARCH_SHARE = 0.9
+"""Share of the time for the search; the rest is for what runs on a little, and for tidying."""
 LEARNING_PASSES = 1_000
 MOST_PURCHASES = 40
 
@@ -81,10 +84,10 @@ def solve(
     """
     started = time.monotonic()
     limits = Limits(started + max(0.0, time_limit_s), seed, stop)
-    task = Task.of(problem, limits, keep_length_mm)
+    task = Task.of(problem, limits.at_most(SEARCH_SHARE * time_limit_s), keep_length_mm)
     task.check_lengths()
     best, bounds = settled(task, work_limit=work_limit)
-    best, tidiest = tidied(task, best)
+    best, tidiest = tidied(replace(task, limits=limits), best)
     purchase = [0] * len(problem.buy)
     for item, count in zip(task.sold, best.bought, strict=True):
         purchase[item.number] = count
@@ -156,15 +159,14 @@ def settled(
         if not bounds.possible or (best is not None and best.cost == bounds.cost):
             break
     if thorough and bounds.possible and (best is None or best.cost > bounds.cost):
-        best, bounds = proven_or_cheaper(task, best, bounds)
-        if best is not None and best.cost > bounds.cost:
-            best = _learned(task, best, bounds, work_limit)
+        learn = partial(_learned, task, work_limit=work_limit)
+        best, bounds = proven_or_cheaper(task, best, bounds, learn)
     if best is None:
         raise CuttingError(_no_plan(bounds))
     return best, with_fewest(bounds, task.sold)
 
 
-def _learned(task: Task, best: Plan, bounds: Bounds, work_limit: int) -> Plan:
+def _learned(task: Task, best: Plan, bounds: Bounds, *, work_limit: int) -> Plan:
     for fillings in _learning_passes(task, bounds, work_limit, task.limits.seed + 1):
         best = _better(task, best, fillings) or best
         if best.cost == bounds.cost:
