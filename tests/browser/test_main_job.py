@@ -158,7 +158,7 @@ def test_empty_workshop_to_a_plan_with_one_order_by_hand(
     expect(page.get_by_text("2 skeins for €2.40. Cheaper is impossible.")).to_be_visible()
     axe(page)
     page.get_by_role("link", name="SP1 Sand").click()
-    expect(page.get_by_text("Cut, one skein after another")).to_be_visible()
+    expect(page.get_by_text("In which order do I cut?")).to_be_visible()
     axe(page)
     page.get_by_role("link", name="3 bracelets").click()
     axe(page)
