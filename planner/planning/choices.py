@@ -53,7 +53,8 @@ class Choice:
             raise ChoiceError("The start is folded or straight, or as ordered.")
         if self.lengths not in LENGTHS:
             raise ChoiceError("A bracelet is cut in 1 to 5 lengths, each its own, or as ordered.")
-        if not isinstance(self.supplier, str) or len(self.supplier) > LONGEST_NAME:
+        name = self.supplier
+        if not isinstance(name, str) or len(name) > LONGEST_NAME or "\x00" in name:
             raise ChoiceError("No supplier has such a name.")
         if len(self.substitutes) > MOST_SUBSTITUTES:
             raise ChoiceError(f"At most {MOST_SUBSTITUTES} shades can be replaced.")
