@@ -122,7 +122,7 @@ def _summed(
 ) -> tuple[Prepared, ChoiceSum]:
     """Kept for a while: each row is compared with the batch as it stands."""
     prepared = prepare(lines=lines, workshop=workshop, choice=choice)
-    content = [prepared.orders_stamp, prepared.shelf.stamp, choice.as_json()]
+    content = [prepared.chosen_stamp, prepared.shelf.stamp, choice.as_json()]
     key = "way-" + hashlib.sha256(json.dumps(content).encode()).hexdigest()
     sums = cache.get(key)
     if sums is None:

@@ -13,6 +13,7 @@ from patterns.pattern_file import read_pattern
 from patterns.pictures import band_picture
 from patterns.working import knotted_working
 from planner.models import Plan, PlanBracelet, PlanKind, PlanShade, PlanStock
+from planner.planning.choices import read_choice
 from planner.planning.wording import (
     bought_words,
     cost_of_lots,
@@ -22,6 +23,7 @@ from planner.planning.wording import (
 )
 from planner.plans.cut_pages import cuts_of_shade
 from planner.plans.load import load_orders, load_shelf, orders_stamp
+from planner.plans.posted_choice import choice_to_post
 from planner.plans.store import read_habits, read_kind, read_proof
 
 
@@ -52,6 +54,7 @@ def plan_page(plan: Plan) -> dict[str, Any]:
             read_kind(row).added_mm * row.bracelet_count
             for row in plan.kinds.annotate(bracelet_count=Count("bracelets"))
         ),
+        "choice_again": choice_to_post(read_choice(plan.choice.get("choice", {}))),
         "unplaced": [
             (shade, too_long_mm(shade))
             for shade in shades

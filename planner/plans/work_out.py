@@ -43,6 +43,7 @@ class Prepared:
     offers: tuple[ThreadOffer, ...]
     problems: tuple[str, ...]
     orders_stamp: str
+    chosen_stamp: str
     words: tuple[str, ...]
 
     def net(
@@ -72,7 +73,8 @@ def prepare(
 ) -> Prepared:
     """Lines that cannot be planned are named in `problems`; `strict` refuses them instead.
 
-    The stamps stay those of the orders and the shelf as they are, whatever is chosen.
+    `orders_stamp` and the shelf's stay those of orders and shelf as they are, whatever is chosen;
+    `chosen_stamp` tells when the orders as they would be made change.
     """
     if not lines:
         raise PlanError("There are no orders to plan yet. Add some first.")
@@ -88,7 +90,8 @@ def prepare(
         raise PlanError("None of the orders can be planned. " + " ".join(loaded.problems[:3]))
     _check_bracelets(loaded.orders)
     as_ordered = loaded.orders if choice.is_plain else load_orders(lines, workshop).orders
-    kinds, bracelets = explode(with_substitutes(loaded.orders, choice))
+    chosen_orders = with_substitutes(loaded.orders, choice)
+    kinds, bracelets = explode(chosen_orders)
     _check_pieces(kinds, bracelets)
     shelf = load_shelf({shade for kind in kinds for _, shade in kind.kind.shades}, workshop)
     return Prepared(
@@ -99,6 +102,7 @@ def prepare(
         offers=offers_for(shelf.offers, choice),
         problems=loaded.problems,
         orders_stamp=orders_stamp(as_ordered),
+        chosen_stamp=orders_stamp(chosen_orders),
         words=chosen.words,
     )
 

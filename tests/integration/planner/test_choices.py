@@ -195,3 +195,20 @@ def test_choice_is_the_same_there_and_back() -> None:
     assert posted_choice(choice_to_post(choice)) == choice
     assert posted_choice({}) == Choice()
     assert Choice().as_json() == choice_to_post(Choice()) == {}
+
+
+def test_row_is_worked_out_anew_when_the_ending_it_takes_changes(ordered: Batch) -> None:
+    before = worked_out(ordered, Choice(start="folded")).sums
+    for ending in Ending.objects.filter(start="folded"):
+        ending.end_tie_mm += 2_000
+        ending.save()
+    after = worked_out(ordered, Choice(start="folded")).sums
+    assert after.cost > before.cost
+
+
+def test_plan_made_anew_keeps_its_choice(page: Client, ordered: Batch) -> None:
+    page.post(reverse("plan_new", args=[ordered.pk]), {"supplier": "Harbour Row"})
+    ordered.lines.update(quantity=8)
+    text = page.get(reverse("plan_detail", args=[Plan.objects.get().pk])).content.decode()
+    assert "Make a new plan" in text
+    assert '<input type="hidden" name="supplier" value="Harbour Row">' in text
